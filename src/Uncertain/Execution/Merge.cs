@@ -1,0 +1,95 @@
+using System.Runtime.InteropServices;
+using Uncertain.Lineages;
+using Uncertain.Planning;
+
+namespace Uncertain.Execution;
+
+/// <summary>
+/// Set semantics: collects records and gives each distinct value once, in order of first appearance, with the disjunction of
+/// its lineages. Linear in the records; 12 bytes a record beside the values.
+/// </summary>
+internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
+{
+    private readonly Dictionary<Wrapped, int> _groupOf = new(new WrappedComparer(comparer ?? EqualityComparer<T>.Default));
+    private readonly List<T> _values = [];
+    private readonly List<int> _groups = [];
+    private readonly List<LineageRef> _lineages = [];
+
+    public static Merge<T> All(PlanNode<T> input, QueryRun run, IEqualityComparer<T>? comparer = null)
+    {
+        var merge = new Merge<T>(comparer);
+        foreach (Batch<T> batch in input.Run(run))
+        {
+            for (int i = 0; i < batch.Count; i++)
+            {
+                merge.Add(batch.Values[i], batch.Lineages[i]);
+            }
+        }
+
+        return merge;
+    }
+
+    public void Add(T value, LineageRef lineage)
+    {
+        ref int group = ref CollectionsMarshal.GetValueRefOrAddDefault(_groupOf, new Wrapped(value), out bool exists);
+        if (!exists)
+        {
+            group = _values.Count;
+            _values.Add(value);
+        }
+
+        _groups.Add(group);
+        _lineages.Add(lineage);
+    }
+
+    /// <summary>Distinct values with their lineages; values that are in no world are left out.</summary>
+    public IEnumerable<(T Value, LineageRef Lineage)> Records(LineageArena arena)
+    {
+        LineageRef[] grouped = GroupLineages(out int[] ends);
+        int start = 0;
+        for (int group = 0; group < ends.Length; group++)
+        {
+            LineageRef lineage = arena.Or(grouped.AsSpan(start, ends[group] - start));
+            start = ends[group];
+            if (lineage != LineageRef.False)
+            {
+                yield return (_values[group], lineage);
+            }
+        }
+    }
+
+    // A counting sort of the lineages by group, so that each group's are neighbours.
+    private LineageRef[] GroupLineages(out int[] ends)
+    {
+        ends = new int[_values.Count];
+        foreach (int group in _groups)
+        {
+            ends[group]++;
+        }
+
+        int start = 0;
+        for (int group = 0; group < ends.Length; group++)
+        {
+            start += ends[group];
+            ends[group] = start - ends[group];
+        }
+
+        var grouped = new LineageRef[_lineages.Count];
+        for (int i = 0; i < grouped.Length; i++)
+        {
+            grouped[ends[_groups[i]]++] = _lineages[i];
+        }
+
+        return grouped;
+    }
+
+    // Dictionary keys must not be null, values of a set may.
+    private readonly record struct Wrapped(T Value);
+
+    private sealed class WrappedComparer(IEqualityComparer<T> inner) : IEqualityComparer<Wrapped>
+    {
+        public bool Equals(Wrapped x, Wrapped y) => inner.Equals(x.Value, y.Value);
+
+        public int GetHashCode(Wrapped obj) => obj.Value is null ? 0 : inner.GetHashCode(obj.Value);
+    }
+}

@@ -1,0 +1,13 @@
+using Uncertain.Execution;
+
+namespace Uncertain.Planning;
+
+/// <summary>A step that gives records of one type.</summary>
+internal abstract class PlanNode<T>(WorldSpace worlds, params PlanNode[] inputs) : PlanNode(worlds, inputs)
+{
+    /// <summary>
+    /// The records with their lineages in the run's arena, in batches. The same value may come several times; its worlds are
+    /// then those of all its records together.
+    /// </summary>
+    public abstract IEnumerable<Batch<T>> Run(QueryRun run);
+}

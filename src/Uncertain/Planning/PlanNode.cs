@@ -1,0 +1,12 @@
+namespace Uncertain.Planning;
+
+/// <summary>One step of a query as written. Immutable.</summary>
+internal abstract class PlanNode(WorldSpace worlds, params PlanNode[] inputs)
+{
+    public WorldSpace Worlds { get; } = worlds;
+
+    public IReadOnlyList<PlanNode> Inputs { get; } = inputs;
+
+    /// <summary>The step in words, without its inputs: one line.</summary>
+    public abstract string Describe();
+}

@@ -1,0 +1,83 @@
+using System.Diagnostics;
+using System.Runtime.CompilerServices;
+using Uncertain.Execution;
+using Uncertain.Inference;
+using Uncertain.Lineages;
+using Uncertain.Planning;
+
+namespace Uncertain;
+
+/// <summary>
+/// A typed source or query under set semantics whose elements may or may not be there. Immutable and lazy: operators only
+/// build a plan, <c>Evaluate</c>, <c>EvaluateAsync</c> and <c>Derive</c> run it.
+/// </summary>
+/// <remarks>
+/// <para>C# query syntax binds to it: <c>from</c>, several <c>from</c>, <c>where</c>, <c>let</c>, <c>join</c> and <c>select</c>.
+/// <c>orderby</c>, <c>join into</c> and <c>group by</c> do not compile: a set has no order, and a group's content differs
+/// from world to world.</para>
+/// <para>The meaning is that of possible worlds: in each world the query is an ordinary one over the records that are there;
+/// an answer's lineage says in which worlds it comes out, its probability is their total chance.</para>
+/// <para>Thread safety: sets may be used from any thread.</para>
+/// </remarks>
+/// <typeparam name="T">Type of the values: class, struct, record, tuple or anonymous type. Equal values are one element.</typeparam>
+[DebuggerDisplay("{ToString(),nq}")]
+public sealed partial class UncertainSet<T>
+{
+    internal UncertainSet(PlanNode<T> node) => Node = node;
+
+    /// <summary>The world space of the sources.</summary>
+    public WorldSpace Worlds => Node.Worlds;
+
+    /// <summary>The plan: steps in words, and which evaluators can take it. Touches no data.</summary>
+    public QueryPlan Plan => new(Node);
+
+    internal PlanNode<T> Node { get; }
+
+    /// <summary>All answers with their probabilities, in order of first appearance.</summary>
+    /// <param name="options">What is asked and what it may cost; default: exact by the cheapest evaluator.</param>
+    /// <param name="cancellationToken">Cancels the evaluation.</param>
+    /// <exception cref="EvaluationRefusedException">The chosen evaluator cannot take the query, or a budget ran out.</exception>
+    /// <exception cref="InvalidInputException">A lambda of the query threw.</exception>
+    public IReadOnlyList<Answer<T>> Evaluate(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
+    {
+        options ??= EvaluationOptions.Default;
+        return [.. options.Evaluator.Evaluate(this, options, cancellationToken)];
+    }
+
+    /// <summary>All answers by a given evaluator; short for options that name it.</summary>
+    /// <param name="evaluator">The evaluator.</param>
+    /// <param name="cancellationToken">Cancels the evaluation.</param>
+    /// <exception cref="EvaluationRefusedException">The evaluator cannot take the query, or a budget ran out.</exception>
+    public IReadOnlyList<Answer<T>> Evaluate(IEvaluator evaluator, CancellationToken cancellationToken = default) =>
+        Evaluate(new EvaluationOptions { Evaluator = evaluator }, cancellationToken);
+
+    /// <summary>The answers as they come. The work is done on the thread pool, at most a few answers ahead of the reader.</summary>
+    /// <param name="options">What is asked and what it may cost; default: exact by the cheapest evaluator.</param>
+    /// <param name="cancellationToken">Cancels the evaluation; leaving the loop early does too.</param>
+    /// <exception cref="EvaluationRefusedException">The chosen evaluator cannot take the query, or a budget ran out.</exception>
+    public IAsyncEnumerable<Answer<T>> EvaluateAsync(
+        EvaluationOptions? options = null, CancellationToken cancellationToken = default) =>
+        Background.Stream(token => (options ?? EvaluationOptions.Default).Evaluator.Evaluate(
+            this, options ?? EvaluationOptions.Default, token), cancellationToken);
+
+    /// <summary>
+    /// Runs the query and gives each distinct value once with its lineage, in order of first appearance, without probabilities.
+    /// Cost: that of the joins as written; memory for every derivation.
+    /// </summary>
+    /// <param name="options">Budgets and progress.</param>
+    /// <param name="cancellationToken">Cancels the run.</param>
+    public IReadOnlyList<Record<T>> Derive(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
+    {
+        var run = new QueryRun(Worlds, options ?? EvaluationOptions.Default, cancellationToken);
+        var records = new List<Record<T>>();
+        foreach ((T value, LineageRef lineage) in Merge<T>.All(Node, run).Records(run.Arena))
+        {
+            records.Add(new Record<T>(value, new Lineage(run.Arena, lineage)));
+        }
+
+        return records;
+    }
+
+    /// <summary>One line; runs nothing.</summary>
+    public override string ToString() => $"uncertain set of {typeof(T).Name}: {Node.Describe()}";
+}

@@ -1,0 +1,55 @@
+using System.Globalization;
+
+namespace Uncertain.Worlds;
+
+/// <summary>Names of slots in printed lineages: an event's own name, or the source's with the record's number.</summary>
+/// <remarks>Written under the world space's lock; readers see names of the slots they hold.</remarks>
+internal sealed class SlotNames
+{
+    private readonly Lock _lock = new();
+    private readonly Dictionary<int, string> _events = [];
+    private readonly List<(int FirstSlot, string Source, int[]? RecordOfSlot)> _sources = [];
+
+    public void AddEvent(int slot, string name)
+    {
+        lock (_lock)
+        {
+            _events[slot] = name;
+        }
+    }
+
+    /// <summary>
+    /// Names the slots from <paramref name="firstSlot"/> on as records of a source; <paramref name="recordOfSlot"/> is null where
+    /// record i has slot firstSlot + i.
+    /// </summary>
+    public void AddSource(int firstSlot, string source, int[]? recordOfSlot)
+    {
+        lock (_lock)
+        {
+            _sources.Add((firstSlot, source, recordOfSlot));
+        }
+    }
+
+    public string NameOf(int slot)
+    {
+        lock (_lock)
+        {
+            if (_events.TryGetValue(slot, out string? name))
+            {
+                return name;
+            }
+
+            int low = 0;
+            int high = _sources.Count - 1;
+            while (low < high)
+            {
+                int middle = (low + high + 1) / 2;
+                (low, high) = _sources[middle].FirstSlot <= slot ? (middle, high) : (low, middle - 1);
+            }
+
+            (int first, string source, int[]? records) = _sources[low];
+            int record = records is null ? slot - first : records[slot - first];
+            return string.Create(CultureInfo.InvariantCulture, $"{source}[{record}]");
+        }
+    }
+}

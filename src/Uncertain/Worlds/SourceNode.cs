@@ -1,0 +1,56 @@
+using System.Linq.Expressions;
+using Uncertain.Execution;
+using Uncertain.Lineages;
+using Uncertain.Planning;
+
+namespace Uncertain.Worlds;
+
+/// <summary>A source: the records that may be there, each with its lineage in the world space's arena.</summary>
+internal sealed class SourceNode<T>(
+    WorldSpace worlds, string name, SourceKind kind, T[] records, LineageRef[] lineages, LambdaExpression? group, LambdaExpression? key)
+    : PlanNode<T>(worlds), ISource
+{
+    public string Name { get; } = name;
+
+    public SourceKind Kind { get; } = kind;
+
+    public LambdaExpression? Group { get; } = group;
+
+    public LambdaExpression? Key { get; } = key;
+
+    public T[] Records { get; } = records;
+
+    public LineageRef[] Lineages { get; } = lineages;
+
+    public override string Describe()
+    {
+        string what = Kind switch
+        {
+            SourceKind.Certain => "certain",
+            SourceKind.Independent => "independent",
+            SourceKind.Alternatives => $"exclusive alternatives by {PlanText.Body(Group!)}",
+            _ => "with lineages given",
+        };
+        string key = Key is null ? "" : $", key {PlanText.Body(Key)}";
+        return $"{Name}: {Records.Length:N0} records of {PlanText.TypeName(typeof(T))}, {what}{key}";
+    }
+
+    public override IEnumerable<Batch<T>> Run(QueryRun run)
+    {
+        var batch = new Batch<T>();
+        for (int i = 0; i < Records.Length; i++)
+        {
+            if (Lineages[i] != LineageRef.False)
+            {
+                batch.Add(Records[i], run.Take(Worlds.Arena, Lineages[i]));
+            }
+
+            if (batch.IsFull || i == Records.Length - 1)
+            {
+                run.Checkpoint(batch.Count);
+                yield return batch;
+                batch.Count = 0;
+            }
+        }
+    }
+}
