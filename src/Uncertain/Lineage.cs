@@ -17,7 +17,7 @@ namespace Uncertain;
 /// <para>Thread safety: values may be used from any thread.</para>
 /// </remarks>
 [DebuggerDisplay("{ToString(),nq}")]
-public readonly struct Lineage : IEquatable<Lineage>
+public readonly partial struct Lineage : IEquatable<Lineage>
 {
     private readonly LineageArena? _arena;
 

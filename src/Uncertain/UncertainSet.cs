@@ -21,7 +21,7 @@ namespace Uncertain;
 /// </remarks>
 /// <typeparam name="T">Type of the values: class, struct, record, tuple or anonymous type. Equal values are one element.</typeparam>
 [DebuggerDisplay("{ToString(),nq}")]
-public sealed partial class UncertainSet<T>
+public sealed partial class UncertainSet<T> : IPlanned
 {
     internal UncertainSet(PlanNode<T> node) => Node = node;
 
@@ -32,6 +32,8 @@ public sealed partial class UncertainSet<T>
     public QueryPlan Plan => new(Node);
 
     internal PlanNode<T> Node { get; }
+
+    PlanNode IPlanned.Node => Node;
 
     /// <summary>All answers with their probabilities, in order of first appearance.</summary>
     /// <param name="options">What is asked and what it may cost; default: exact by the cheapest evaluator.</param>

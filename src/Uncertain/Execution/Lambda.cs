@@ -2,23 +2,23 @@ using System.Linq.Expressions;
 
 namespace Uncertain.Execution;
 
-/// <summary>
-/// A caller's lambda: its tree for planning and its delegate for running, compiled on first use.
-/// </summary>
-internal sealed class Lambda<TDelegate>(Expression<TDelegate> tree, string operatorName)
-    where TDelegate : Delegate
+/// <summary>A caller's lambda of one argument: its tree for planning, its delegate for running, compiled on first use.</summary>
+internal sealed class Lambda<T, TResult>(Expression<Func<T, TResult>> tree, string operatorName)
 {
-    private TDelegate? _compiled;
+    private Func<T, TResult>? _compiled;
 
-    public Expression<TDelegate> Tree { get; } = tree;
+    public Expression<Func<T, TResult>> Tree { get; } = tree ?? throw new ArgumentNullException(nameof(tree));
 
-    public TDelegate Compiled => _compiled ??= Tree.Compile();
-
-    /// <summary>What to throw when the caller's code threw <paramref name="exception"/> on <paramref name="record"/>.</summary>
-    public Exception Failure(Exception exception, object? record) => exception is OperationCanceledException or UncertainException
-        ? exception
-        : new InvalidInputException(
-            $"The lambda '{Tree}' of {operatorName} threw {exception.GetType().Name} on the record '{record}': {exception.Message} "
-            + "Guard the lambda, or remove such records before the query.",
-            exception);
+    public TResult Invoke(T argument)
+    {
+        Func<T, TResult> compiled = _compiled ??= Tree.Compile();
+        try
+        {
+            return compiled(argument);
+        }
+        catch (Exception exception) when (LambdaFailure.IsCallers(exception))
+        {
+            throw LambdaFailure.Of(Tree, operatorName, argument, exception);
+        }
+    }
 }

@@ -10,7 +10,7 @@ namespace Uncertain.Execution;
 /// </summary>
 internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
 {
-    private readonly Dictionary<Wrapped, int> _groupOf = new(new WrappedComparer(comparer ?? EqualityComparer<T>.Default));
+    private readonly Dictionary<ValueTuple<T>, int> _groupOf = new(new KeyComparer<T>(comparer));
     private readonly List<T> _values = [];
     private readonly List<int> _groups = [];
     private readonly List<LineageRef> _lineages = [];
@@ -31,7 +31,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
 
     public void Add(T value, LineageRef lineage)
     {
-        ref int group = ref CollectionsMarshal.GetValueRefOrAddDefault(_groupOf, new Wrapped(value), out bool exists);
+        ref int group = ref CollectionsMarshal.GetValueRefOrAddDefault(_groupOf, new(value), out bool exists);
         if (!exists)
         {
             group = _values.Count;
@@ -58,6 +58,29 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
         }
     }
 
+    /// <summary>The distinct values in batches, for the next operator.</summary>
+    public IEnumerable<Batch<T>> Batches(QueryRun run)
+    {
+        var output = new Batch<T>();
+        foreach ((T value, LineageRef lineage) in Records(run.Arena))
+        {
+            output.Add(value, lineage);
+            if (output.IsFull)
+            {
+                run.Checkpoint(output.Count);
+                yield return output;
+                output.Count = 0;
+            }
+        }
+
+        run.Checkpoint(output.Count);
+        yield return output;
+    }
+
+    /// <summary>The distinct values with their lineages, to be looked up.</summary>
+    public Dictionary<ValueTuple<T>, LineageRef> ByValue(LineageArena arena) => Records(arena).ToDictionary(
+        record => new ValueTuple<T>(record.Value), record => record.Lineage, new KeyComparer<T>(null));
+
     // A counting sort of the lineages by group, so that each group's are neighbours.
     private LineageRef[] GroupLineages(out int[] ends)
     {
@@ -81,15 +104,5 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
         }
 
         return grouped;
-    }
-
-    // Dictionary keys must not be null, values of a set may.
-    private readonly record struct Wrapped(T Value);
-
-    private sealed class WrappedComparer(IEqualityComparer<T> inner) : IEqualityComparer<Wrapped>
-    {
-        public bool Equals(Wrapped x, Wrapped y) => inner.Equals(x.Value, y.Value);
-
-        public int GetHashCode(Wrapped obj) => obj.Value is null ? 0 : inner.GetHashCode(obj.Value);
     }
 }

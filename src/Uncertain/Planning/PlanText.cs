@@ -15,6 +15,9 @@ internal static partial class PlanText
     public static string Lambda(LambdaExpression lambda) =>
         Clean($"{string.Join(", ", lambda.Parameters.Select(parameter => parameter.Name))} => {lambda.Body}");
 
+    /// <summary>Any expression.</summary>
+    public static string Of(Expression expression) => Clean(expression.ToString());
+
     public static string TypeName(Type type) => type switch
     {
         { Name: var name } when name.StartsWith("<>", StringComparison.Ordinal) => "anonymous type",

@@ -2,6 +2,7 @@ using System.Linq.Expressions;
 using Uncertain.Execution;
 using Uncertain.Lineages;
 using Uncertain.Planning;
+using Uncertain.Planning.Calculus;
 
 namespace Uncertain.Worlds;
 
@@ -53,4 +54,6 @@ internal sealed class SourceNode<T>(
             }
         }
     }
+
+    public override Conjunction Translate() => Conjunction.Of(new SourceAtom(this, typeof(T)));
 }

@@ -1,0 +1,42 @@
+using System.Linq.Expressions;
+using Uncertain.Execution;
+using Uncertain.Lineages;
+using Uncertain.Planning;
+using Uncertain.Planning.Calculus;
+
+namespace Uncertain;
+
+/// <content>Anti-join.</content>
+public sealed partial class UncertainSet<T>
+{
+    /// <summary>
+    /// The elements of this set in the worlds where no element of the other set has the same key. Null keys never match, so an
+    /// element whose key is null stays as it is. Linear in both sets and the matches.
+    /// </summary>
+    /// <param name="inner">The other set, of the same world space.</param>
+    /// <param name="outerKeySelector">Key of an element of this set.</param>
+    /// <param name="innerKeySelector">Key of an element of the other set.</param>
+    /// <param name="comparer">Compares keys; default equality if null.</param>
+    /// <exception cref="WorldSpaceMismatchException">The other set belongs to another world space.</exception>
+    public UncertainSet<T> AntiJoin<TInner, TKey>(
+        UncertainSet<TInner> inner, Expression<Func<T, TKey>> outerKeySelector, Expression<Func<TInner, TKey>> innerKeySelector,
+        IEqualityComparer<TKey>? comparer = null) =>
+        new(new AntiJoinNode<TInner, TKey>(
+            new JoinInputs<T, TInner, TKey>(Node, inner, outerKeySelector, innerKeySelector, comparer, nameof(AntiJoin))));
+
+    private sealed class AntiJoinNode<TInner, TKey>(JoinInputs<T, TInner, TKey> sides)
+        : PlanNode<T>(sides.Outer.Worlds, sides.Outer, sides.Inner)
+    {
+        private readonly JoinInputs<T, TInner, TKey> _sides = sides;
+
+        public override string Describe() => $"anti-join {_sides.Describe()}";
+
+        public override IEnumerable<Batch<T>> Run(QueryRun run)
+        {
+            HashIndex<TKey, TInner> index = _sides.Index(run);
+            return MatchFilter.Run(_sides.Outer, run, outer => !index.AnyWith(_sides.KeyOf(outer), run.Arena));
+        }
+
+        public override Conjunction Translate() => _sides.TranslateWithout();
+    }
+}

@@ -1,0 +1,103 @@
+using System.Linq.Expressions;
+using Uncertain.Execution;
+using Uncertain.Lineages;
+using Uncertain.Planning;
+using Uncertain.Planning.Calculus;
+
+namespace Uncertain;
+
+/// <content>Products: several <c>from</c> clauses.</content>
+public sealed partial class UncertainSet<T>
+{
+    /// <summary>
+    /// For each element all elements of a set that may depend on it; a result is there where both are. A set that does not depend on
+    /// the element is run once, one that does is run for each element: where the dependence is an equality of keys, <see cref="Join"/>
+    /// is faster.
+    /// </summary>
+    /// <param name="collectionSelector">The set for an element, of the same world space.</param>
+    /// <param name="resultSelector">The result for a pair.</param>
+    public UncertainSet<TResult> SelectMany<TCollection, TResult>(
+        Expression<Func<T, UncertainSet<TCollection>>> collectionSelector, Expression<Func<T, TCollection, TResult>> resultSelector) =>
+        new(new SelectManyNode<TCollection, TResult>(Node, collectionSelector, resultSelector));
+
+    /// <summary>For each element all elements of a set that may depend on it; see the other overload.</summary>
+    /// <param name="selector">The set for an element, of the same world space.</param>
+    public UncertainSet<TResult> SelectMany<TResult>(Expression<Func<T, UncertainSet<TResult>>> selector) =>
+        SelectMany(selector, (element, result) => result);
+
+    private sealed class SelectManyNode<TCollection, TResult> : PlanNode<TResult>
+    {
+        private readonly PlanNode<T> _input;
+        private readonly PlanNode<TCollection>? _fixed;
+        private readonly Lambda<T, UncertainSet<TCollection>> _collection;
+        private readonly Lambda<T, TCollection, TResult> _result;
+
+        public SelectManyNode(
+            PlanNode<T> input, Expression<Func<T, UncertainSet<TCollection>>> collectionSelector,
+            Expression<Func<T, TCollection, TResult>> resultSelector)
+            : this(input, DependentSet.Fixed(collectionSelector), collectionSelector, resultSelector)
+        {
+        }
+
+        private SelectManyNode(
+            PlanNode<T> input, UncertainSet<TCollection>? fixedSet, Expression<Func<T, UncertainSet<TCollection>>> collectionSelector,
+            Expression<Func<T, TCollection, TResult>> resultSelector)
+            : base(input.Worlds, fixedSet is null ? [input] : [input, fixedSet.Node])
+        {
+            _input = input;
+            _fixed = fixedSet is null ? null : SameWorlds.Require(input.Worlds, fixedSet, nameof(SelectMany));
+            _collection = new Lambda<T, UncertainSet<TCollection>>(collectionSelector, nameof(SelectMany));
+            _result = new Lambda<T, TCollection, TResult>(resultSelector, nameof(SelectMany));
+        }
+
+        public override string Describe() => _fixed is null
+            ? $"for each element: {PlanText.Lambda(_collection.Tree)} into {PlanText.Lambda(_result.Tree)}"
+            : $"product into {PlanText.Lambda(_result.Tree)}";
+
+        public override IEnumerable<Batch<TResult>> Run(QueryRun run)
+        {
+            RecordList<TCollection>? shared = _fixed is null ? null : RecordList<TCollection>.Read(_fixed, run);
+            var output = new Batch<TResult>();
+            foreach (Batch<T> batch in _input.Run(run))
+            {
+                for (int i = 0; i < batch.Count; i++)
+                {
+                    RecordList<TCollection> inner = shared ?? RecordList<TCollection>.Read(SetFor(batch.Values[i]), run);
+                    for (int j = 0; j < inner.Count; j++)
+                    {
+                        LineageRef both = run.Arena.And(batch.Lineages[i], inner.Lineages[j]);
+                        if (both == LineageRef.False)
+                        {
+                            continue;
+                        }
+
+                        output.Add(_result.Invoke(batch.Values[i], inner.Values[j]), both);
+                        if (output.IsFull)
+                        {
+                            run.Checkpoint(output.Count);
+                            yield return output;
+                            output.Count = 0;
+                        }
+                    }
+                }
+            }
+
+            run.Checkpoint(output.Count);
+            yield return output;
+        }
+
+        public override Conjunction Translate()
+        {
+            Conjunction outer = _input.Translate();
+            Conjunction inner = _fixed?.Translate() ?? DependentSet.Translate(outer.Apply(_collection.Tree));
+            return outer.And(inner) with { Value = Substitution.Apply(_result.Tree, outer.Value, inner.Value) };
+        }
+
+        private PlanNode<TCollection> SetFor(T value) => SameWorlds.Require(
+            Worlds,
+            _collection.Invoke(value) ?? throw new InvalidInputException(
+                $"The lambda '{PlanText.Lambda(_collection.Tree)}' of SelectMany gave null for '{value}'. Give an empty set instead, "
+                + "for example WorldSpace.Certain of no records."),
+            nameof(SelectMany));
+    }
+}
