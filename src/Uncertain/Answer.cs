@@ -1,4 +1,5 @@
 using System.Diagnostics;
+using Uncertain.Execution;
 
 namespace Uncertain;
 
@@ -8,7 +9,7 @@ namespace Uncertain;
 [DebuggerDisplay("{ToString(),nq}")]
 public sealed class Answer<T>
 {
-    private readonly Lazy<Lineage>? _derived;
+    private readonly LineageSource<T>? _source;
     private readonly Lineage _lineage;
 
     /// <summary>Creates an answer; evaluators do.</summary>
@@ -23,10 +24,10 @@ public sealed class Answer<T>
         Probability = probability;
     }
 
-    internal Answer(T value, Lazy<Lineage> lineage, Probability probability)
+    internal Answer(T value, LineageSource<T> lineages, Probability probability)
     {
         Value = value;
-        _derived = lineage;
+        _source = lineages;
         Probability = probability;
     }
 
@@ -40,7 +41,7 @@ public sealed class Answer<T>
     /// The worlds in which <see cref="Value"/> is in the result. An evaluator that works from the plan builds no lineage;
     /// then the first access on any answer of that evaluation runs the query once more to derive the lineages of all.
     /// </summary>
-    public Lineage Lineage => _derived is null ? _lineage : _derived.Value;
+    public Lineage Lineage => _source?.Of(Value) ?? _lineage;
 
     /// <summary>Value and probability; does not derive a lineage.</summary>
     public override string ToString() => $"{Value}  {Probability}";

@@ -1,5 +1,4 @@
 using System.Diagnostics;
-using System.Runtime.CompilerServices;
 using Uncertain.Execution;
 using Uncertain.Inference;
 using Uncertain.Lineages;
@@ -43,7 +42,7 @@ public sealed partial class UncertainSet<T> : IPlanned
     public IReadOnlyList<Answer<T>> Evaluate(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
     {
         options ??= EvaluationOptions.Default;
-        return [.. options.Evaluator.Evaluate(this, options, cancellationToken)];
+        return [.. Answers(options, cancellationToken)];
     }
 
     /// <summary>All answers by a given evaluator; short for options that name it.</summary>
@@ -59,8 +58,7 @@ public sealed partial class UncertainSet<T> : IPlanned
     /// <exception cref="EvaluationRefusedException">The chosen evaluator cannot take the query, or a budget ran out.</exception>
     public IAsyncEnumerable<Answer<T>> EvaluateAsync(
         EvaluationOptions? options = null, CancellationToken cancellationToken = default) =>
-        Background.Stream(token => (options ?? EvaluationOptions.Default).Evaluator.Evaluate(
-            this, options ?? EvaluationOptions.Default, token), cancellationToken);
+        Background.Stream(token => Answers(options ?? EvaluationOptions.Default, token), cancellationToken);
 
     /// <summary>
     /// Runs the query and gives each distinct value once with its lineage, in order of first appearance, without probabilities.
@@ -79,6 +77,11 @@ public sealed partial class UncertainSet<T> : IPlanned
 
         return records;
     }
+
+    // What is in no world is not an answer; that a lineage holds in none may show only when it is evaluated.
+    private IEnumerable<Answer<T>> Answers(EvaluationOptions options, CancellationToken cancellationToken) =>
+        options.Evaluator.Evaluate(this, options, cancellationToken).Where(answer =>
+            answer.Probability.Guarantee.Kind != GuaranteeKind.Exact || answer.Probability.LogValue > double.NegativeInfinity);
 
     /// <summary>One line; runs nothing.</summary>
     public override string ToString() => $"uncertain set of {typeof(T).Name}: {Node.Describe()}";

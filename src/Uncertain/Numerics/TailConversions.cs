@@ -9,6 +9,9 @@ internal static class TailConversions
     /// </summary>
     public const double SafeRange = 1e-290;
 
+    /// <summary>Whether neither tail may have lost range.</summary>
+    public static bool IsInRange(Tails<double> tails) => tails.True is 0 or >= SafeRange && tails.False is 0 or >= SafeRange;
+
     public static Tails<double> FromChance(double chance) => new(chance, 1 - chance);
 
     public static Tails<ExtendedDouble> Widen(this Tails<double> tails) =>

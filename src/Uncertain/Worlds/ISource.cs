@@ -1,4 +1,6 @@
 using System.Linq.Expressions;
+using Uncertain.Inference.Safe.Codes;
+using Uncertain.Lineages;
 
 namespace Uncertain.Worlds;
 
@@ -14,4 +16,13 @@ internal interface ISource
 
     /// <summary>The declared key, as a lambda on a record; null if none.</summary>
     LambdaExpression? Key { get; }
+
+    /// <summary>The records that are in some world and satisfy all filters, by number.</summary>
+    int[] Choose(IReadOnlyList<LambdaExpression> filters, Action<int> tick);
+
+    /// <summary>Codes of a field for chosen records.</summary>
+    void Encode(Encoder encoder, LambdaExpression field, ReadOnlySpan<int> chosen, bool dropNulls, Span<int> codes);
+
+    /// <summary>A record's lineage; in sources without given lineages it is true or a positive literal.</summary>
+    LineageRef LineageOf(int record);
 }

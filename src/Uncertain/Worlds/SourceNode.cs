@@ -1,5 +1,6 @@
 using System.Linq.Expressions;
 using Uncertain.Execution;
+using Uncertain.Inference.Safe.Codes;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
@@ -56,4 +57,25 @@ internal sealed class SourceNode<T>(
     }
 
     public override Conjunction Translate() => Conjunction.Of(new SourceAtom(this, typeof(T)));
+
+    public int[] Choose(IReadOnlyList<LambdaExpression> filters, Action<int> tick)
+    {
+        Lambda<T, bool>[] conditions = [.. filters.Select(filter => new Lambda<T, bool>((Expression<Func<T, bool>>)filter, "Where"))];
+        var chosen = new List<int>(conditions.Length == 0 ? Records.Length : 16);
+        for (int i = 0; i < Records.Length; i++)
+        {
+            tick(i);
+            if (Lineages[i] != LineageRef.False && Array.TrueForAll(conditions, condition => condition.Invoke(Records[i])))
+            {
+                chosen.Add(i);
+            }
+        }
+
+        return [.. chosen];
+    }
+
+    public void Encode(Encoder encoder, LambdaExpression field, ReadOnlySpan<int> chosen, bool dropNulls, Span<int> codes) =>
+        encoder.Encode(Records, chosen, field, dropNulls, codes);
+
+    public LineageRef LineageOf(int record) => Lineages[record];
 }

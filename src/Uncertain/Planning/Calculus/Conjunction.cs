@@ -17,7 +17,7 @@ internal sealed record Conjunction(Expression Value)
 
     public ImmutableList<Absence> Absences { get; init; } = [];
 
-    public static Conjunction Of(Atom atom) => new(atom.Row) { Atoms = [atom] };
+    public static Conjunction Of(SourceAtom atom) => new(atom.Row) { Atoms = [atom] };
 
     /// <summary>A lambda's body with this conjunction's value for its parameter.</summary>
     public Expression Apply(LambdaExpression lambda) => Substitution.Apply(lambda, Value);

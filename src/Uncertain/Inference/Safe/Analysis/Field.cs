@@ -1,0 +1,41 @@
+using System.Linq.Expressions;
+using Uncertain.Planning.Calculus;
+
+namespace Uncertain.Inference.Safe.Analysis;
+
+/// <summary>
+/// An expression over one row that matters to the query: it is compared, projected or tested. Fields that are compared for equality
+/// are one variable.
+/// </summary>
+internal sealed class Field(Expression expression, ParameterExpression row)
+{
+    private Field? _same;
+
+    public Expression Expression { get; } = expression;
+
+    public ParameterExpression Row { get; } = row;
+
+    /// <summary>Null here means that the row joins with nothing.</summary>
+    public bool DropsNulls { get; set; }
+
+    /// <summary>The field that stands for all that are equal to this one.</summary>
+    public Field Representative => _same is null ? this : _same = _same.Representative;
+
+    /// <summary>Short name for people: the last member, else the expression.</summary>
+    public string Name => Expression switch
+    {
+        MemberExpression member => member.Member.Name,
+        ParameterExpression row => row.Name!,
+        _ => Planning.PlanText.Of(Expression),
+    };
+
+    public void MakeSame(Field other)
+    {
+        Field left = Representative;
+        Field right = other.Representative;
+        if (left != right)
+        {
+            right._same = left;
+        }
+    }
+}

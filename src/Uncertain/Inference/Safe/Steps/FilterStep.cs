@@ -1,0 +1,36 @@
+using Uncertain.Inference.Safe.Analysis;
+using Uncertain.Inference.Safe.Codes;
+using Uncertain.Planning;
+
+namespace Uncertain.Inference.Safe.Steps;
+
+/// <summary>Rows that satisfy a condition over several of their variables.</summary>
+internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(input.Variables, input)
+{
+    private readonly SafeStep _input = input;
+
+    public override string Describe() => $"where {PlanText.Of(condition.Body)}";
+
+    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    {
+        CodeTable<TNumber> input = _input.Run(run);
+        Func<int[], bool> holds = condition.Compile<bool>(input.Variables, run.EncoderOf);
+        var codes = new int[input.Variables.Count];
+        var rows = new List<int>();
+        for (int row = 0; row < input.Count; row++)
+        {
+            run.Tick(row);
+            for (int column = 0; column < codes.Length; column++)
+            {
+                codes[column] = input.Columns[column][row];
+            }
+
+            if (holds(codes))
+            {
+                rows.Add(row);
+            }
+        }
+
+        return run.Done(input.Rows(rows));
+    }
+}

@@ -1,0 +1,46 @@
+using System.Numerics;
+using System.Text;
+using Uncertain.Inference.Safe.Analysis;
+using Uncertain.Inference.Safe.Codes;
+
+namespace Uncertain.Inference.Safe.Steps;
+
+/// <summary>
+/// One step of a safe plan: distinct combinations of its variables with exact probabilities.
+/// </summary>
+internal abstract class SafeStep(IEnumerable<Field> variables, params SafeStep[] inputs)
+{
+    /// <summary>The variables of the result, one column each.</summary>
+    public IReadOnlyList<Field> Variables { get; } = [.. variables];
+
+    public IReadOnlyList<SafeStep> Inputs { get; } = inputs;
+
+    /// <summary>The step in words, without its inputs: one line.</summary>
+    public abstract string Describe();
+
+    public abstract CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>;
+
+    public override string ToString()
+    {
+        var text = new StringBuilder();
+        Append(text, 0);
+        return text.ToString();
+    }
+
+    protected static string Names(IEnumerable<Field> variables)
+    {
+        string names = string.Join(", ", variables.Select(variable => variable.Name));
+        return names.Length == 0 ? "nothing" : names;
+    }
+
+    private void Append(StringBuilder text, int depth)
+    {
+        text.Append(' ', 2 * depth).Append(Describe()).Append('\n');
+        foreach (SafeStep input in Inputs)
+        {
+            input.Append(text, depth + 1);
+        }
+    }
+}
