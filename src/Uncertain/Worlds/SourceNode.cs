@@ -65,7 +65,7 @@ internal sealed class SourceNode<T>(
         for (int i = 0; i < Records.Length; i++)
         {
             tick(i);
-            if (Lineages[i] != LineageRef.False && Array.TrueForAll(conditions, condition => condition.Invoke(Records[i])))
+            if (Lineages[i] != LineageRef.False && AllHold(conditions, Records[i]))
             {
                 chosen.Add(i);
             }
@@ -78,4 +78,17 @@ internal sealed class SourceNode<T>(
         encoder.Encode(Records, chosen, field, dropNulls, codes);
 
     public LineageRef LineageOf(int record) => Lineages[record];
+
+    private static bool AllHold(Lambda<T, bool>[] conditions, T record)
+    {
+        foreach (Lambda<T, bool> condition in conditions)
+        {
+            if (!condition.Invoke(record))
+            {
+                return false;
+            }
+        }
+
+        return true;
+    }
 }

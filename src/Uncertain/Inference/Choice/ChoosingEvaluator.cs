@@ -1,9 +1,114 @@
+using Uncertain.Execution;
+
 namespace Uncertain.Inference.Choice;
 
+/// <summary>
+/// The cheapest of the library's evaluators that delivers what was asked. A safe plan where there is one; otherwise each answer's
+/// lineage is compiled, and sampled where compiling would go over its budget and something less than exact is asked for, or is all that
+/// can be had; then the answer says so.
+/// </summary>
 internal sealed class ChoosingEvaluator : IEvaluator
 {
+    // Where sampling would do, compiling gets about as many nodes as sampling to two digits would visit in the same time.
+    private const int TrialNodes = 50_000;
+
+    // Of an answer's time, so much goes into compiling before sampling gets the rest.
+    private const double CompilingShare = 0.5;
+
+    private static readonly TimeSpan s_leastTime = TimeSpan.FromMilliseconds(1);
+
+    private static readonly Accuracy s_substitute = Accuracy.Within(0.01, 0.01);
+
     public string Name => "chooser";
 
-    public Probability Evaluate(Lineage lineage, EvaluationOptions options, CancellationToken cancellationToken) =>
-        throw new NotImplementedException();
+    public Suitability Examine(QueryPlan plan)
+    {
+        Suitability safe = Evaluators.SafePlan.Examine(plan);
+        return Suitability.Can(safe.IsSuitable
+            ? "takes the safe plan"
+            : $"compiles each answer's lineage, and samples what is over the budget (no safe plan: {safe.Reason})");
+    }
+
+    public Probability Evaluate(Lineage lineage, EvaluationOptions options, CancellationToken cancellationToken)
+    {
+        ArgumentNullException.ThrowIfNull(options);
+        return Evaluate(lineage, options, options.Deadline, cancellationToken);
+    }
+
+    public IEnumerable<Answer<T>> Evaluate<T>(UncertainSet<T> query, EvaluationOptions options, CancellationToken cancellationToken)
+    {
+        ArgumentNullException.ThrowIfNull(query);
+        ArgumentNullException.ThrowIfNull(options);
+        long start = options.Clock.GetTimestamp();
+        return Evaluators.SafePlan.Examine(query.Plan).IsSuitable && SafeAnswers(query, options, cancellationToken) is { } answers
+            ? answers
+            : LineageAnswers(query, options, start, cancellationToken);
+    }
+
+    // A safe plan may apply a condition to rows that the query as written joins away before. If the caller's lambda cannot take such
+    // a row, the query as written decides.
+    private static List<Answer<T>>? SafeAnswers<T>(
+        UncertainSet<T> query, EvaluationOptions options, CancellationToken cancellationToken)
+    {
+        try
+        {
+            return [.. Evaluators.SafePlan.Evaluate(query, options, cancellationToken)];
+        }
+        catch (InvalidInputException)
+        {
+            return null;
+        }
+    }
+
+    private static IEnumerable<Answer<T>> LineageAnswers<T>(
+        UncertainSet<T> query, EvaluationOptions options, long start, CancellationToken cancellationToken)
+    {
+        IReadOnlyList<Record<T>> records = query.Derive(options, cancellationToken);
+        int threads = Math.Min(options.Threads, Math.Max(1, records.Count));
+        EvaluationOptions single = options with { Threads = records.Count > 1 ? 1 : options.Threads };
+        var progress = new ProgressReporter(options);
+        int done = 0;
+        return OrderedParallel.Select(records, threads, Answer, cancellationToken);
+
+        Answer<T> Answer(Record<T> record, int index)
+        {
+            TimeSpan? share = (options.Deadline - options.Clock.GetElapsedTime(start)) * threads / (records.Count - index);
+            Probability probability = Evaluate(record.Lineage, single, share, cancellationToken);
+            progress.Report(EvaluationStage.Evaluating, Interlocked.Increment(ref done), records.Count);
+            return new Answer<T>(record.Value, record.Lineage, probability);
+        }
+    }
+
+    private static Probability Evaluate(
+        Lineage lineage, EvaluationOptions options, TimeSpan? time, CancellationToken cancellationToken)
+    {
+        long start = options.Clock.GetTimestamp();
+        Accuracy asked = options.Accuracy;
+        string reason;
+        try
+        {
+            EvaluationOptions trial = options with
+            {
+                Deadline = AtLeast(time * CompilingShare),
+                NodeBudget = asked.IsExact ? options.NodeBudget : Math.Min(options.NodeBudget, TrialNodes),
+            };
+            return Evaluators.Compilation.Evaluate(lineage, trial, cancellationToken);
+        }
+        catch (EvaluationRefusedException refusal)
+        {
+            reason = refusal.Message;
+        }
+
+        EvaluationOptions sampling = options with
+        {
+            Accuracy = asked.IsExact ? s_substitute : asked,
+            Deadline = AtLeast(time - options.Clock.GetElapsedTime(start)),
+        };
+        Probability estimate = Evaluators.Sampling.Evaluate(lineage, sampling, cancellationToken);
+        return asked.IsExact && estimate.Guarantee.Kind != GuaranteeKind.Exact
+            ? estimate.WithShortfall($"An exact figure was asked for; this is an estimate. {reason}")
+            : estimate;
+    }
+
+    private static TimeSpan? AtLeast(TimeSpan? time) => time < s_leastTime ? s_leastTime : time;
 }

@@ -25,7 +25,7 @@ internal sealed class Field(Expression expression, ParameterExpression row)
     public string Name => Expression switch
     {
         MemberExpression member => member.Member.Name,
-        ParameterExpression row => row.Name!,
+        ParameterExpression whole => $"{whole.Name} record",
         _ => Planning.PlanText.Of(Expression),
     };
 
