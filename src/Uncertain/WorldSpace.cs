@@ -100,7 +100,7 @@ public sealed partial class WorldSpace
     }
 
     /// <summary>Short description; touches no data.</summary>
-    public override string ToString() => $"WorldSpace with {VariableCount:N0} chance variables";
+    public override string ToString() => $"WorldSpace with {VariableCount} chance variables";
 
     /// <summary>
     /// Adds the variable of one group of exclusive outcomes and returns their literals. Outcomes of chance 0 are false

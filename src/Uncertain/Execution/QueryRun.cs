@@ -1,3 +1,4 @@
+using System.Globalization;
 using Uncertain.Lineages;
 
 namespace Uncertain.Execution;
@@ -8,6 +9,7 @@ internal sealed class QueryRun
     private readonly EvaluationOptions _options;
     private readonly ProgressReporter _progress;
     private readonly Dictionary<LineageArena, LineageImport> _imports = [];
+    private readonly long _start;
     private long _rows;
 
     public QueryRun(WorldSpace worlds, EvaluationOptions options, CancellationToken cancellationToken)
@@ -16,24 +18,34 @@ internal sealed class QueryRun
         _progress = new ProgressReporter(options);
         Cancellation = cancellationToken;
         Arena = new LineageArena(worlds);
+        _start = options.Clock.GetTimestamp();
     }
 
     public LineageArena Arena { get; }
 
     public CancellationToken Cancellation { get; }
 
-    /// <summary>To be called once for every batch that an operator produces: cancellation, memory budget and progress.</summary>
+    /// <summary>To be called once for every batch that an operator produces: cancellation, budgets and progress.</summary>
     public void Checkpoint(int rows)
     {
         Cancellation.ThrowIfCancellationRequested();
         _rows += rows;
         _progress.Report(EvaluationStage.Deriving, _rows, null);
+        if (_options.Deadline is { } deadline && _options.Clock.GetElapsedTime(_start) > deadline)
+        {
+            throw new EvaluationRefusedException(string.Create(
+                CultureInfo.InvariantCulture,
+                $"The query was still deriving lineages at its deadline of {deadline.TotalSeconds:0.###} s, after {_rows:N0} rows. "
+                + $"Allow a later EvaluationOptions.Deadline, or filter the sources first."));
+        }
+
         if (Arena.Bytes > _options.MemoryBudget)
         {
-            throw new EvaluationRefusedException(
+            throw new EvaluationRefusedException(string.Create(
+                CultureInfo.InvariantCulture,
                 $"The lineages took {Arena.Bytes:N0} bytes after {_rows:N0} rows, more than the memory budget of "
                 + $"{_options.MemoryBudget:N0}. Raise EvaluationOptions.MemoryBudget, filter the sources first, or use a query that "
-                + "has a safe plan, which builds no lineage.");
+                + $"has a safe plan, which builds no lineage."));
         }
     }
 

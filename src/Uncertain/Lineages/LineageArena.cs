@@ -1,4 +1,5 @@
 using System.Buffers;
+using System.Globalization;
 using System.Runtime.InteropServices;
 using Uncertain.Worlds;
 
@@ -295,9 +296,7 @@ internal sealed class LineageArena
         {
             if (_count >= LineageRef.IndexLimit)
             {
-                throw new EvaluationRefusedException(
-                    $"The lineage of this evaluation has more than {LineageRef.IndexLimit:N0} formula nodes, the limit of one "
-                    + "evaluation. Split the query, or filter its sources first.");
+                throw TooLarge(LineageRef.IndexLimit, "formula nodes");
             }
 
             Array.Resize(ref _nodes, (int)Math.Min((long)_nodes.Length * 3 / 2 + 16, LineageRef.IndexLimit));
@@ -314,9 +313,7 @@ internal sealed class LineageArena
             {
                 if (needed > Array.MaxLength)
                 {
-                    throw new EvaluationRefusedException(
-                        $"The lineage of this evaluation has more than {Array.MaxLength:N0} operands, the limit of one evaluation. "
-                        + "Split the query, or filter its sources first.");
+                    throw TooLarge(Array.MaxLength, "operands");
                 }
 
                 Array.Resize(ref _pool, (int)Math.Clamp(needed * 3 / 2, 64, Array.MaxLength));
@@ -329,6 +326,11 @@ internal sealed class LineageArena
 
         return _count++;
     }
+
+    private static EvaluationRefusedException TooLarge(int limit, string what) => new(string.Create(
+        CultureInfo.InvariantCulture,
+        $"The lineage of this evaluation has more than {limit:N0} {what}, the limit of one evaluation. Split the query, or filter its "
+        + $"sources first."));
 
     private void GrowTable()
     {

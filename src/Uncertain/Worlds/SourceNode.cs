@@ -1,3 +1,4 @@
+using System.Globalization;
 using System.Linq.Expressions;
 using Uncertain.Execution;
 using Uncertain.Inference.Safe.Codes;
@@ -34,7 +35,8 @@ internal sealed class SourceNode<T>(
             _ => "with lineages given",
         };
         string key = Key is null ? "" : $", key {PlanText.Body(Key)}";
-        return $"{Name}: {Records.Length:N0} records of {PlanText.TypeName(typeof(T))}, {what}{key}";
+        return string.Create(
+            CultureInfo.InvariantCulture, $"{Name}: {Records.Length:N0} records of {PlanText.TypeName(typeof(T))}, {what}{key}");
     }
 
     public override IEnumerable<Batch<T>> Run(QueryRun run)

@@ -1,3 +1,4 @@
+using System.Globalization;
 using Uncertain.Lineages;
 
 namespace Uncertain.Worlds;
@@ -75,9 +76,10 @@ internal sealed class VariableTable
         int first = SlotCount;
         if ((long)first + chances.Length > LineageRef.IndexLimit)
         {
-            throw new InvalidInputException(
+            throw new InvalidInputException(string.Create(
+                CultureInfo.InvariantCulture,
                 $"A world space holds at most {LineageRef.IndexLimit:N0} uncertain outcomes; this record would exceed it. "
-                + "Give records that are certain the chance 1, or split the data over several world spaces.");
+                + $"Give records that are certain the chance 1, or split the data over several world spaces."));
         }
 
         EnsureSlots(first + chances.Length);
