@@ -39,6 +39,31 @@ internal readonly struct ExtendedDouble :
 
     public static ExtendedDouble From(double value) => Normalize(value, 0, 0);
 
+    /// <summary>1 - value without rounding, for a value in [0, 1].</summary>
+    public static ExtendedDouble OneMinus(double value)
+    {
+        // Fast2Sum: the rounding error of 1 - value is itself a double.
+        double high = 1 - value;
+        return Normalize(high, (1 - high) - value, 0);
+    }
+
+    /// <summary>1 minus the sum of chances that are at most 1 together.</summary>
+    public static ExtendedDouble OneMinusSum(ReadOnlySpan<double> chances)
+    {
+        double high = 1;
+        double low = 0;
+        foreach (double chance in chances)
+        {
+            // TwoSum of high and -chance.
+            double sum = high - chance;
+            double taken = high - sum;
+            low += (high - (sum + taken)) + (taken - chance);
+            high = sum;
+        }
+
+        return Normalize(high, low, 0);
+    }
+
     public static ExtendedDouble operator *(ExtendedDouble left, ExtendedDouble right)
     {
         double high = left._high * right._high;

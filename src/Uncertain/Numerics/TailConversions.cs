@@ -14,6 +14,9 @@ internal static class TailConversions
 
     public static Tails<double> FromChance(double chance) => new(chance, 1 - chance);
 
+    public static Tails<ExtendedDouble> FromChanceExtended(double chance) =>
+        new(ExtendedDouble.From(chance), ExtendedDouble.OneMinus(chance));
+
     public static Tails<ExtendedDouble> Widen(this Tails<double> tails) =>
         new(ExtendedDouble.From(tails.True), ExtendedDouble.From(tails.False));
 

@@ -1,5 +1,6 @@
 using System.Globalization;
 using Uncertain.Lineages;
+using Uncertain.Numerics;
 
 namespace Uncertain.Worlds;
 
@@ -46,18 +47,18 @@ internal sealed class VariableTable
     public bool IsAlternative(int slot) => OutcomeCount(_variableOfSlot[slot]) > 1;
 
     /// <summary>The chance that no outcome with a slot happens; exactly 0 if the chances make up 1.</summary>
-    public double NoneChance(int variable)
-    {
-        int first = _firstSlot[variable];
-        return Remainder(_chance.AsSpan(first, OutcomeCount(variable)));
-    }
+    public double NoneChance(int variable) => NoneChanceExtended(variable).ToDouble();
 
-    /// <summary>1 minus the sum of the chances, 0 where they make up 1 within <see cref="SumTolerance"/>.</summary>
-    public static double Remainder(ReadOnlySpan<double> chances)
+    /// <summary>As <see cref="NoneChance"/>, with the digits that a sum of many chances needs.</summary>
+    public ExtendedDouble NoneChanceExtended(int variable) =>
+        Remainder(_chance.AsSpan(_firstSlot[variable], OutcomeCount(variable)));
+
+    /// <summary>1 minus the sum of the chances, 0 where several make up 1 within <see cref="SumTolerance"/>.</summary>
+    public static ExtendedDouble Remainder(ReadOnlySpan<double> chances)
     {
         if (chances.Length == 1)
         {
-            return 1 - chances[0];
+            return ExtendedDouble.OneMinus(chances[0]);
         }
 
         double sum = 0;
@@ -66,8 +67,7 @@ internal sealed class VariableTable
             sum += chance;
         }
 
-        double rest = 1 - sum;
-        return rest <= SumTolerance ? 0 : rest;
+        return 1 - sum <= SumTolerance ? default : ExtendedDouble.OneMinusSum(chances);
     }
 
     /// <summary>Adds one variable and returns its first slot. The caller has checked the chances.</summary>

@@ -5,6 +5,7 @@ using Uncertain.Inference.Safe.Codes;
 using Uncertain.Inference.Safe.Steps;
 using Uncertain.Numerics;
 using Uncertain.Planning;
+using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe;
 
@@ -61,14 +62,20 @@ internal sealed class SafePlanEvaluator : IEvaluator
         SafePlan plan, UncertainSet<T> query, EvaluationOptions options, CancellationToken cancellationToken)
     {
         long start = options.Clock.GetTimestamp();
-        var plain = new SafeRun<double>(query.Worlds, value => value, options, cancellationToken);
-        CodeTable<double> table = plan.Root.Run(plain);
-        if (table.Factors <= PlainFactorLimit && Array.TrueForAll(table.Tails, TailConversions.IsInRange))
+        VariableTable table = query.Worlds.Variables;
+        var plain = new SafeRun<double>(
+            new ChanceReader<double>(table, slot => TailConversions.FromChance(table.Chance(slot)), table.NoneChance),
+            options, cancellationToken);
+        CodeTable<double> plainResult = plan.Root.Run(plain);
+        if (plainResult.Factors <= PlainFactorLimit && Array.TrueForAll(plainResult.Tails, TailConversions.IsInRange))
         {
-            return Answers(plain, table, Probability.Exact);
+            return Answers(plain, plainResult, Probability.Exact);
         }
 
-        var extended = new SafeRun<ExtendedDouble>(query.Worlds, ExtendedDouble.From, options, cancellationToken);
+        var extended = new SafeRun<ExtendedDouble>(
+            new ChanceReader<ExtendedDouble>(
+                table, slot => TailConversions.FromChanceExtended(table.Chance(slot)), table.NoneChanceExtended),
+            options, cancellationToken);
         return Answers(extended, plan.Root.Run(extended), Probability.Exact);
 
         IEnumerable<Answer<T>> Answers<TNumber>(

@@ -37,7 +37,8 @@ internal static class SafePlanner
             : Eliminate(parts, known, open);
     }
 
-    // What follows from the known variables by keys.
+    // What follows from the known variables by keys. Where a source joined with it determines y by its x, a source that has x only is as
+    // good as one that has both.
     private static HashSet<Field> Closure(IReadOnlyList<Part> parts, IEnumerable<Field> asked, HashSet<Field> all)
     {
         HashSet<Field> known = [.. asked];
@@ -146,7 +147,9 @@ internal static class SafePlanner
         }
 
         List<SourcePart> chancy = [.. parts.SelectMany(part => part.Chancy)];
-        List<Field> separators = [.. open.Where(variable => chancy.TrueForAll(source => source.IsSeparatedBy(variable)))];
+        HashSet<Field> all = [.. known, .. open];
+        List<Field> separators = [.. open.Where(variable => chancy.TrueForAll(
+            source => Closure(parts, source.Independent, all).Contains(variable)))];
         if (separators.Count > 0)
         {
             return new ProjectStep(Build(parts, [.. known, .. separators]), known);
@@ -161,17 +164,18 @@ internal static class SafePlanner
                 new ScanStep(choice, choice.Variables), Build(beside, [.. known, .. choice.Variables]), known);
         }
 
-        throw new NoSafePlanException(ReasonFor(chancy, open));
+        throw new NoSafePlanException(ReasonFor(
+            chancy, open, (source, variable) => Closure(parts, source.Variables, all).Contains(variable)));
     }
 
-    private static string ReasonFor(List<SourcePart> chancy, List<Field> open)
+    private static string ReasonFor(List<SourcePart> chancy, List<Field> open, Func<SourcePart, Field, bool> dependsOn)
     {
         foreach (Field first in open)
         {
             foreach (Field second in open)
             {
-                List<SourcePart> ofFirst = chancy.FindAll(source => source.Variables.Contains(first));
-                List<SourcePart> ofSecond = chancy.FindAll(source => source.Variables.Contains(second));
+                List<SourcePart> ofFirst = chancy.FindAll(source => dependsOn(source, first));
+                List<SourcePart> ofSecond = chancy.FindAll(source => dependsOn(source, second));
                 SourcePart? common = ofFirst.Find(ofSecond.Contains);
                 if (common is not null && ofFirst.Except(ofSecond).Any() && ofSecond.Except(ofFirst).Any())
                 {
@@ -182,8 +186,8 @@ internal static class SafePlanner
 
         foreach (Field variable in open)
         {
-            SourcePart? loose = chancy.Find(source => !source.IsSeparatedBy(variable));
-            if (loose is not null && chancy.TrueForAll(source => source.Variables.Contains(variable)))
+            SourcePart? loose = chancy.Find(source => source.IsExclusive && !source.Group.Contains(variable));
+            if (loose is not null && chancy.TrueForAll(source => dependsOn(source, variable)))
             {
                 return $"not independent over {variable.Name}: the alternatives of one {Names(loose.Group)} of {loose.Source.Name} "
                     + $"differ in it and exclude each other";

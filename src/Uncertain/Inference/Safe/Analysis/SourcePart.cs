@@ -49,10 +49,8 @@ internal sealed class SourcePart(SourceAtom atom, FieldTable table) : Part
         ? []
         : PartsOf(Source.Group).Select(table.Of);
 
-    /// <summary>
-    /// Whether rows that differ in a variable are independent: for exclusive alternatives only if the variable belongs to the group.
-    /// </summary>
-    public bool IsSeparatedBy(Field variable) => Variables.Contains(variable) && (!IsExclusive || Group.Contains(variable));
+    /// <summary>Rows that differ in any of these variables are independent; exclusive alternatives are so by their group only.</summary>
+    public IReadOnlySet<Field> Independent => IsExclusive ? Group : Variables;
 
     /// <summary>Whether fixing the known variables fixes all of the row's.</summary>
     public bool IsDeterminedBy(IReadOnlySet<Field> known)

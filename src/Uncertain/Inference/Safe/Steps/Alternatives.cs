@@ -52,8 +52,8 @@ internal sealed class Alternatives<TNumber>
             run.Tick(i);
             LineageRef lineage = scan.Part.Source.LineageOf(rows[i]);
             bool certain = lineage == LineageRef.True;
-            chances[keyOf[i]] += certain ? TNumber.MultiplicativeIdentity : run.Number(run.Worlds.Variables.Chance(lineage.Index));
-            variableOf[keyOf[i]] = certain ? -1 - keyOf[i] : run.Worlds.Variables.VariableOf(lineage.Index);
+            chances[keyOf[i]] += certain ? TNumber.MultiplicativeIdentity : run.Chances.OfSlot(lineage.Index).True;
+            variableOf[keyOf[i]] = certain ? -1 - keyOf[i] : run.Chances.Variables.VariableOf(lineage.Index);
             if (!certain)
             {
                 chosen.Add(lineage.Index);
@@ -124,14 +124,14 @@ internal sealed class Alternatives<TNumber>
             return TNumber.AdditiveIdentity;
         }
 
-        VariableTable table = run.Worlds.Variables;
-        TNumber rest = run.Number(table.NoneChance(variable));
+        VariableTable table = run.Chances.Variables;
+        TNumber rest = run.Chances.OfNone(variable);
         int first = table.FirstSlot(variable);
         for (int slot = first; slot < first + table.OutcomeCount(variable); slot++)
         {
             if (!chosen.Contains(slot))
             {
-                rest += run.Number(table.Chance(slot));
+                rest += run.Chances.OfSlot(slot).True;
             }
         }
 

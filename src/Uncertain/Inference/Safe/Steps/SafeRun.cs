@@ -2,13 +2,12 @@ using System.Numerics;
 using Uncertain.Execution;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
-using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Safe.Steps;
 
 /// <summary>One run of a safe plan in one number type.</summary>
 internal sealed class SafeRun<TNumber>(
-    WorldSpace worlds, Func<double, TNumber> number, EvaluationOptions options, CancellationToken cancellationToken)
+    ChanceReader<TNumber> chances, EvaluationOptions options, CancellationToken cancellationToken)
     where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
@@ -19,14 +18,10 @@ internal sealed class SafeRun<TNumber>(
     private readonly ProgressReporter _progress = new(options);
     private readonly long _start = options.Clock.GetTimestamp();
 
-    public WorldSpace Worlds { get; } = worlds;
+    public ChanceReader<TNumber> Chances { get; } = chances;
 
     /// <summary>Rows that steps have produced so far.</summary>
     public long Rows { get; private set; }
-
-    public TNumber Number(double value) => number(value);
-
-    public Tails<TNumber> Tails(double chance, double complement) => new(number(chance), number(complement));
 
     public Encoder EncoderOf(Field variable)
     {

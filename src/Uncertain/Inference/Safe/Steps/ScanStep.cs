@@ -47,7 +47,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             LineageRef lineage = Part.IsGuard ? LineageRef.True : Part.Source.LineageOf(rows[i]);
             tails[keyOf[i]] |= lineage == LineageRef.True
                 ? Tails<TNumber>.Always
-                : run.Tails(run.Worlds.Variables.Chance(lineage.Index), 1 - run.Worlds.Variables.Chance(lineage.Index));
+                : run.Chances.OfSlot(lineage.Index);
             members[keyOf[i]]++;
         }
 

@@ -1,0 +1,13 @@
+using System.Numerics;
+using Uncertain.Numerics;
+using Uncertain.Worlds;
+
+namespace Uncertain.Inference.Safe.Steps;
+
+/// <summary>Reads chances from the variable table in one number type.</summary>
+/// <param name="Variables">The table.</param>
+/// <param name="OfSlot">Both tails of a slot's chance.</param>
+/// <param name="OfNone">The chance that a variable takes none of its outcomes with a slot.</param>
+internal sealed record ChanceReader<TNumber>(VariableTable Variables, Func<int, Tails<TNumber>> OfSlot, Func<int, TNumber> OfNone)
+    where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+        IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>;
