@@ -70,7 +70,7 @@ public sealed partial class UncertainSet<T> : IPlanned
     {
         var run = new QueryRun(Worlds, options ?? EvaluationOptions.Default, cancellationToken);
         var records = new List<Record<T>>();
-        foreach ((T value, LineageRef lineage) in Merge<T>.All(Node, run).Records(run.Arena))
+        foreach ((T value, LineageRef lineage) in Merge<T>.All(Node, run).Records(run))
         {
             records.Add(new Record<T>(value, new Lineage(run.Arena, lineage)));
         }

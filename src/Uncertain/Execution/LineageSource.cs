@@ -8,7 +8,7 @@ internal sealed class LineageSource<T>(UncertainSet<T> query)
     private readonly Lazy<(LineageArena Arena, Dictionary<ValueTuple<T>, LineageRef> ByValue)> _derived = new(() =>
     {
         var run = new QueryRun(query.Worlds, EvaluationOptions.Default, CancellationToken.None);
-        return (run.Arena, Merge<T>.All(query.Node, run).ByValue(run.Arena));
+        return (run.Arena, Merge<T>.All(query.Node, run).ByValue(run));
     });
 
     public Lineage Of(T value) =>

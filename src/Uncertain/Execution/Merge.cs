@@ -43,13 +43,14 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
     }
 
     /// <summary>Distinct values with their lineages; values that are in no world are left out.</summary>
-    public IEnumerable<(T Value, LineageRef Lineage)> Records(LineageArena arena)
+    public IEnumerable<(T Value, LineageRef Lineage)> Records(QueryRun run)
     {
         LineageRef[] grouped = GroupLineages(out int[] ends);
         int start = 0;
         for (int group = 0; group < ends.Length; group++)
         {
-            LineageRef lineage = arena.Or(grouped.AsSpan(start, ends[group] - start));
+            run.Tick(group);
+            LineageRef lineage = run.Arena.Or(grouped.AsSpan(start, ends[group] - start));
             start = ends[group];
             if (lineage != LineageRef.False)
             {
@@ -62,7 +63,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
     public IEnumerable<Batch<T>> Batches(QueryRun run)
     {
         var output = new Batch<T>();
-        foreach ((T value, LineageRef lineage) in Records(run.Arena))
+        foreach ((T value, LineageRef lineage) in Records(run))
         {
             output.Add(value, lineage);
             if (output.IsFull)
@@ -78,7 +79,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
     }
 
     /// <summary>The distinct values with their lineages, to be looked up.</summary>
-    public Dictionary<ValueTuple<T>, LineageRef> ByValue(LineageArena arena) => Records(arena).ToDictionary(
+    public Dictionary<ValueTuple<T>, LineageRef> ByValue(QueryRun run) => Records(run).ToDictionary(
         record => new ValueTuple<T>(record.Value), record => record.Lineage, new KeyComparer<T>(null));
 
     // A counting sort of the lineages by group, so that each group's are neighbours.

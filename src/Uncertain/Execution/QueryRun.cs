@@ -25,6 +25,15 @@ internal sealed class QueryRun
 
     public CancellationToken Cancellation { get; }
 
+    /// <summary>To be called for every item of a loop that produces no batches: looks at the token now and then.</summary>
+    public void Tick(int item)
+    {
+        if ((item & 1023) == 0)
+        {
+            Checkpoint(0);
+        }
+    }
+
     /// <summary>To be called once for every batch that an operator produces: cancellation, budgets and progress.</summary>
     public void Checkpoint(int rows)
     {

@@ -26,7 +26,7 @@ public sealed partial class UncertainSet<T>
 
         public override IEnumerable<Batch<T>> Run(QueryRun run)
         {
-            Dictionary<ValueTuple<T>, LineageRef> right = Merge<T>.All(_right, run).ByValue(run.Arena);
+            Dictionary<ValueTuple<T>, LineageRef> right = Merge<T>.All(_right, run).ByValue(run);
             return MatchFilter.Run(_left, run, value => right.GetValueOrDefault(new(value), LineageRef.False));
         }
 

@@ -14,7 +14,7 @@ internal sealed class NotNode(PlanNode<bool> input) : PlanNode<bool>(input.World
 
     public override IEnumerable<Batch<bool>> Run(QueryRun run)
     {
-        LineageRef yes = Merge<bool>.All(Input, run).ByValue(run.Arena).GetValueOrDefault(new(true), LineageRef.False);
+        LineageRef yes = Merge<bool>.All(Input, run).ByValue(run).GetValueOrDefault(new(true), LineageRef.False);
         var output = new Batch<bool>();
         output.Add(true, !yes);
         yield return output;
