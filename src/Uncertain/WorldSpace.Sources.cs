@@ -18,6 +18,8 @@ public sealed partial class WorldSpace
         [CallerArgumentExpression(nameof(records))] string? name = null)
     {
         T[] copy = SourceReader.Read(records);
+        name = SourceReader.NameOf<T>(name);
+        SourceReader.CheckKey(copy, key, name);
         return Create(name, SourceKind.Certain, copy, new LineageRef[copy.Length], null, key);
     }
 
@@ -35,6 +37,7 @@ public sealed partial class WorldSpace
         T[] copy = SourceReader.Read(records);
         name = SourceReader.NameOf<T>(name);
         double[] chances = SourceReader.Chances(copy, chance, name);
+        SourceReader.CheckKey(copy, key, name);
         return Create(name, SourceKind.Independent, copy, AddIndependent(chances, name), null, key);
     }
 
@@ -59,6 +62,7 @@ public sealed partial class WorldSpace
         name = SourceReader.NameOf<T>(name);
         double[] chances = SourceReader.Chances(copy, chance, name);
         AlternativeGroups groups = SourceReader.Groups(copy, group, chances, name);
+        SourceReader.CheckKey(copy, key, name);
         return Create(name, SourceKind.Alternatives, copy, AddAlternatives(chances, groups, name), group, key);
     }
 
@@ -125,12 +129,8 @@ public sealed partial class WorldSpace
         Alternatives(await SourceReader.ReadAsync(records, cancellationToken).ConfigureAwait(false), group, chance, key, name);
 
     private UncertainSet<T> Create<T>(
-        string? name, SourceKind kind, T[] records, LineageRef[] lineages, LambdaExpression? group, Expression<Func<T, object?>>? key)
-    {
-        name = SourceReader.NameOf<T>(name);
-        SourceReader.CheckKey(records, key, name);
-        return new UncertainSet<T>(new SourceNode<T>(this, name, kind, records, lineages, group, key));
-    }
+        string name, SourceKind kind, T[] records, LineageRef[] lineages, LambdaExpression? group, LambdaExpression? key) =>
+        new(new SourceNode<T>(this, name, kind, records, lineages, group, key));
 
     private LineageRef[] AddIndependent(double[] chances, string name)
     {

@@ -33,7 +33,7 @@ internal static class SafePlanner
 
         List<List<Part>> groups = Connect(parts, open);
         return open.Count == 0 || groups.Count > 1
-            ? Combine(groups, known)
+            ? Combine(parts, groups, known)
             : Eliminate(parts, known, open);
     }
 
@@ -84,11 +84,11 @@ internal static class SafePlanner
     }
 
     // Parts that share known variables only are independent: join those that give rows, then filter.
-    private static SafeStep Combine(List<List<Part>> groups, HashSet<Field> known)
+    private static SafeStep Combine(IReadOnlyList<Part> parts, List<List<Part>> groups, HashSet<Field> known)
     {
         List<SafeStep> producers = [.. groups
             .Where(group => group.Exists(part => part.ProducesRows))
-            .Select(group => group is [var single] ? Single(single, known) : Build(group, known))];
+            .Select(group => group is [var single] ? Single(single, known) : Build(WithGuards(group, parts), known))];
         if (producers.Count == 0)
         {
             throw new NoSafePlanException("a part of the query only excludes rows and gives none");
@@ -111,6 +111,24 @@ internal static class SafePlanner
         }
 
         return result;
+    }
+
+    // A condition or absence in one group may look at known variables of another: sources read as certain bring them in.
+    private static List<Part> WithGuards(List<Part> group, IReadOnlyList<Part> parts)
+    {
+        HashSet<Field> missing = [.. group.SelectMany(part => part.Variables)];
+        missing.ExceptWith(group.Where(part => part.ProducesRows).SelectMany(part => part.Variables));
+        List<Part> result = [.. group];
+        foreach (SourcePart source in parts.OfType<SourcePart>().Where(source => source.Variables.Overlaps(missing)))
+        {
+            result.Add(source.AsGuard());
+            missing.ExceptWith(source.Variables);
+        }
+
+        return missing.Count == 0
+            ? result
+            : throw new NoSafePlanException(
+                $"a condition or difference on {Names(missing)} of a union depends on other parts of the query; apply it to the union's sides");
     }
 
     private static SafeStep Single(Part part, HashSet<Field> known) => part switch
