@@ -93,7 +93,8 @@ public sealed class CompiledLineage
         {
             if (table.IsAlternative(slot))
             {
-                setting.CheckSum(table.VariableOf(slot), $"the alternatives of {Lineage.Worlds.Names.NameOf(slot)}");
+                double sum = setting.ChancesOf(table.VariableOf(slot)).Sum();
+                Chances.CheckSum(sum, $"the alternatives of {Lineage.Worlds.Names.NameOf(slot)}");
             }
         }
 

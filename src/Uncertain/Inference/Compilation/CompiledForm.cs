@@ -34,15 +34,28 @@ internal sealed class CompiledForm
     public long Bytes => (long)Words.Length * sizeof(int);
 
     /// <summary>Both tails under a setting of the chances; 1e-12 relative in each, at any size and range.</summary>
+    /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>
     public Probability Evaluate(ChanceSetting setting, string evaluator, Func<Cost> cost)
     {
-        if (!_roundsTooOften && DoublePass.TryEvaluate(this, setting, out Tails<double> tails))
+        if (!_roundsTooOften
+            && ForwardPass<double, DoubleChances>.TryEvaluate(this, new DoubleChances(setting), out Tails<double> tails))
         {
             return Probability.Exact(tails, evaluator, cost());
         }
 
-        Tails<ExtendedDouble> extended = ExtendedPass.Evaluate(this, setting);
-        return Probability.Exact(extended, evaluator, cost());
+        try
+        {
+            ForwardPass<ExtendedDouble, ExtendedChances>.TryEvaluate(
+                this, new ExtendedChances(setting), out Tails<ExtendedDouble> extended);
+            return Probability.Exact(extended, evaluator, cost());
+        }
+        catch (OverflowException exception)
+        {
+            throw new EvaluationRefusedException(
+                "A probability of this lineage is below 2^-2,000,000,000, beyond the range of the evaluator's numbers. "
+                + "Split the lineage into independent parts, and add up the logarithms of their probabilities.",
+                exception);
+        }
     }
 
     /// <summary>
