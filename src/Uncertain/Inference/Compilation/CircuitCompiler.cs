@@ -1,0 +1,153 @@
+using System.Runtime.InteropServices;
+using Uncertain.Lineages;
+
+namespace Uncertain.Inference.Compilation;
+
+/// <summary>
+/// Compiles a module that is no list of terms. Two variable orders compete, each with a growing share of the budget: along
+/// an elimination tree of the circuit, gates included, and by first occurrence from the outermost part inwards.
+/// </summary>
+internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
+{
+    private const long FirstTrial = 20_000;
+    private const int TrialGrowth = 4;
+
+    /// <summary>The edge to the compiled module.</summary>
+    public int Compile(ModuleFormula module)
+    {
+        List<int> variables = NumberVariables(module);
+        int[][] orders = [ByTree(module, variables), [.. Enumerable.Range(0, variables.Count)]];
+        long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
+        for (int trial = 0; ; trial++)
+        {
+            bool isLimited = budget.StartTrial(residuals);
+            if (!isLimited)
+            {
+                budget.StartTrial(null);
+            }
+
+            (int Words, int Nodes) mark = form.Mark();
+            (long Nodes, long Residuals) spent = budget.Mark();
+            try
+            {
+                return Run(module, variables, orders[trial % 2]);
+            }
+            catch (BudgetSpentException exception) when (exception.IsTrial)
+            {
+                form.ReturnTo(mark);
+                budget.Refund(spent);
+            }
+            finally
+            {
+                budget.StartTrial(null);
+            }
+
+            residuals *= trial % 2 == 0 ? 1 : TrialGrowth;
+        }
+    }
+
+    // Variables by first occurrence, in a walk from the outermost part inwards.
+    private List<int> NumberVariables(ModuleFormula module)
+    {
+        var variables = new List<int>();
+        int[] mark = workspace.VariableMark;
+        int[] vertex = workspace.VertexOfVariable;
+        int stamp = workspace.NextStamp();
+        bool[] seen = new bool[module.Count];
+        var pending = new Stack<int>();
+        pending.Push(module.Count - 1);
+        while (pending.TryPop(out int node))
+        {
+            ReadOnlySpan<LineageRef> operands = module.Operands(node);
+            for (int i = operands.Length - 1; i >= 0; i--)
+            {
+                LineageRef operand = operands[i];
+                if (operand.IsNode && !seen[operand.Index - 1])
+                {
+                    seen[operand.Index - 1] = true;
+                    pending.Push(operand.Index - 1);
+                }
+                else if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
+                {
+                    int variable = atoms.Variable(operand.Index);
+                    mark[variable] = stamp;
+                    vertex[variable] = variables.Count;
+                    variables.Add(variable);
+                }
+            }
+
+            budget.Step();
+        }
+
+        return variables;
+    }
+
+    private int[] ByTree(ModuleFormula module, List<int> variables)
+    {
+        int[] vertex = workspace.VertexOfVariable;
+        var pairs = new List<long>(module.OperandCount);
+        for (int node = 0; node < module.Count; node++)
+        {
+            foreach (LineageRef operand in module.Operands(node))
+            {
+                if (!operand.IsConstant)
+                {
+                    int other = operand.IsNode ? variables.Count + operand.Index - 1 : vertex[atoms.Variable(operand.Index)];
+                    pairs.Add(SparseGraph.Pair(other, variables.Count + node));
+                }
+            }
+        }
+
+        SparseGraph graph = SparseGraph.FromPairs(variables.Count + module.Count, pairs);
+        EliminationTree tree = EliminationTree.Build(graph, budget);
+        return TreeNumbering.Preorder(tree, variables.Count, TreeNumbering.Depths(tree));
+    }
+
+    private int Run(ModuleFormula module, List<int> variables, int[] order)
+    {
+        int[] variableOfRank = new int[order.Length];
+        int[] ranks = workspace.RankOfVariable;
+        for (int rank = 0; rank < order.Length; rank++)
+        {
+            variableOfRank[rank] = variables[order[rank]];
+            ranks[variableOfRank[rank]] = rank;
+        }
+
+        var arena = new ResidualArena(atoms, ranks, budget);
+        try
+        {
+            int root = Import(module, arena);
+            arena.StartDeciding();
+            return new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
+        }
+        finally
+        {
+            budget.Bytes(-arena.Bytes);
+        }
+    }
+
+    private int Import(ModuleFormula module, ResidualArena arena)
+    {
+        int[] made = new int[module.Count];
+        var operands = new List<int>();
+        for (int node = 0; node < module.Count; node++)
+        {
+            operands.Clear();
+            foreach (LineageRef operand in module.Operands(node))
+            {
+                int formula = operand switch
+                {
+                    { IsLiteral: true } => arena.Atom(operand.Index, negated: false),
+                    { IsNode: true } => made[operand.Index - 1],
+                    _ => ResidualArena.True,
+                };
+                operands.Add(formula ^ (operand.IsNegated ? 1 : 0));
+            }
+
+            budget.Step();
+            made[node] = Nesting.And(arena, CollectionsMarshal.AsSpan(operands));
+        }
+
+        return made[^1];
+    }
+}

@@ -1,0 +1,120 @@
+using System.Globalization;
+
+namespace Uncertain.Inference.Compilation;
+
+/// <summary>What one compilation may still spend: nodes, bytes, time; and whether the caller has cancelled it.</summary>
+/// <remarks>
+/// Counted are the nodes that decisions make. Those that mere factoring makes are never more than the lineage has itself.
+/// </remarks>
+internal sealed class CompilationBudget
+{
+    // Steps are a few hundred nanoseconds at most, so the clock is looked at every millisecond or so.
+    private const int StepsBetweenLooks = 2048;
+
+    // A residual formula takes about 45 bytes while compiling; two of them and a node are the 100 bytes a node.
+    private const int ResidualsPerNode = 2;
+
+    private readonly EvaluationOptions _options;
+    private readonly CancellationToken _cancellationToken;
+    private readonly long _start;
+    private readonly long _lineageBytes;
+    private int _stepsLeft = StepsBetweenLooks;
+    private long _nodes;
+    private long _residuals;
+    private long _trialEnd = long.MaxValue;
+    private long _bytes;
+
+    public CompilationBudget(EvaluationOptions options, long start, long lineageBytes, CancellationToken cancellationToken)
+    {
+        _options = options;
+        _start = start;
+        _lineageBytes = lineageBytes;
+        _cancellationToken = cancellationToken;
+        Look();
+    }
+
+    /// <summary>Some work was done that is not a node.</summary>
+    public void Step(int steps = 1)
+    {
+        _stepsLeft -= steps;
+        if (_stepsLeft <= 0)
+        {
+            Look();
+        }
+    }
+
+    /// <summary>A decision has added nodes to the form.</summary>
+    public void Nodes(int made)
+    {
+        _nodes += made;
+        if (_nodes > _options.NodeBudget)
+        {
+            throw SpentNodes();
+        }
+    }
+
+    /// <summary>A decision has made one more residual formula.</summary>
+    public void Residual()
+    {
+        _residuals++;
+        if (_residuals > _trialEnd)
+        {
+            throw new BudgetSpentException("", isTrial: true);
+        }
+
+        if (_residuals > (long)ResidualsPerNode * _options.NodeBudget)
+        {
+            throw SpentNodes();
+        }
+
+        Step();
+    }
+
+    /// <summary>Allows so many residual formulas until the next call; null for all that are left.</summary>
+    public bool StartTrial(long? residuals)
+    {
+        _trialEnd = residuals is null ? long.MaxValue : _residuals + residuals.Value;
+        return _trialEnd < (long)ResidualsPerNode * _options.NodeBudget;
+    }
+
+    /// <summary>Gives back what a given-up trial has taken.</summary>
+    public void Refund((long Nodes, long Residuals) mark) => (_nodes, _residuals) = mark;
+
+    public (long Nodes, long Residuals) Mark() => (_nodes, _residuals);
+
+    /// <summary>Memory is about to be taken, or was given back (negative).</summary>
+    public void Bytes(long taken)
+    {
+        _bytes += taken;
+        if (taken > 0 && _lineageBytes + _bytes > _options.MemoryBudget)
+        {
+            throw new BudgetSpentException(
+                Text($"Compiling this lineage needs more than the memory budget of {_options.MemoryBudget:N0} bytes ({Progress()}). ")
+                + "Raise EvaluationOptions.MemoryBudget, or ask for Accuracy.Within, or use Evaluators.Sampling.",
+                isTrial: false);
+        }
+    }
+
+    private void Look()
+    {
+        _stepsLeft = StepsBetweenLooks;
+        _cancellationToken.ThrowIfCancellationRequested();
+        if (_options.Deadline is { } deadline && _options.Clock.GetElapsedTime(_start) >= deadline)
+        {
+            throw new BudgetSpentException(
+                Text($"Compiling this lineage was not done by the deadline of {deadline.TotalSeconds:0.###} s ({Progress()}). ")
+                + "Allow a later EvaluationOptions.Deadline, or ask for Accuracy.Within, or use Evaluators.Sampling.",
+                isTrial: false);
+        }
+    }
+
+    private BudgetSpentException SpentNodes() => new(
+        Text($"Compiling this lineage needs more than the node budget of {_options.NodeBudget:N0} ({Progress()}). ")
+        + "Raise EvaluationOptions.NodeBudget, or ask for Accuracy.Within, or use Evaluators.Sampling.",
+        isTrial: false);
+
+    private string Progress() =>
+        Text($"{_nodes:N0} nodes and {_residuals:N0} residual formulas made in {_options.Clock.GetElapsedTime(_start).TotalSeconds:0.###} s");
+
+    private static string Text(FormattableString text) => text.ToString(CultureInfo.InvariantCulture);
+}

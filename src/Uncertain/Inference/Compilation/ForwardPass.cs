@@ -1,0 +1,109 @@
+using System.Buffers;
+using System.Numerics;
+using Uncertain.Numerics;
+
+namespace Uncertain.Inference.Compilation;
+
+/// <summary>One pass over a compiled form, from the first node to the last; both tails of each node.</summary>
+internal static class ForwardPass<TNumber, TChances>
+    where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+        IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    where TChances : struct, IChanceReader<TNumber>
+{
+    /// <summary>False if a number came near the end of its range; then the figure is not to be used.</summary>
+    public static bool TryEvaluate(CompiledForm form, TChances chances, out Tails<TNumber> result)
+    {
+        Tails<TNumber>[] values = ArrayPool<Tails<TNumber>>.Shared.Rent(form.NodeCount);
+        try
+        {
+            bool inRange = Run(form, chances, values);
+            result = inRange ? Edge(form.Root, values) : default;
+            return inRange;
+        }
+        finally
+        {
+            ArrayPool<Tails<TNumber>>.Shared.Return(values);
+        }
+    }
+
+    private static bool Run(CompiledForm form, TChances chances, Tails<TNumber>[] values)
+    {
+        var weights = new TNumber[]?[form.Distributions.Length];
+        values[0] = Tails<TNumber>.Always;
+        int[] words = form.Words;
+        int position = 0;
+        for (int node = 1; node < form.NodeCount; node++)
+        {
+            int header = words[position++];
+            int count = header >> 2;
+            Tails<TNumber> value;
+            switch ((FormNodeKind)(header & 3))
+            {
+                case FormNodeKind.Literal:
+                    value = chances.Literal(words[position++]);
+                    break;
+                case FormNodeKind.Conjunction:
+                    value = Conjunction(words.AsSpan(position, count), values);
+                    position += count;
+                    break;
+                case FormNodeKind.Decision:
+                    value = Decision(words.AsSpan(position, 3), values);
+                    position += 3;
+                    break;
+                default:
+                    int distribution = words[position++];
+                    value = Choice(
+                        words.AsSpan(position, count), weights[distribution] ??= chances.Weights(form.Distributions[distribution]),
+                        values);
+                    position += count;
+                    break;
+            }
+
+            if (chances.IsOutOfRange(value))
+            {
+                return false;
+            }
+
+            values[node] = value;
+        }
+
+        return true;
+    }
+
+    private static Tails<TNumber> Conjunction(ReadOnlySpan<int> edges, Tails<TNumber>[] values)
+    {
+        Tails<TNumber> all = Edge(edges[0], values);
+        foreach (int edge in edges[1..])
+        {
+            all &= Edge(edge, values);
+        }
+
+        return all;
+    }
+
+    private static Tails<TNumber> Decision(ReadOnlySpan<int> edges, Tails<TNumber>[] values)
+    {
+        Tails<TNumber> selector = Edge(edges[0], values);
+        Tails<TNumber> then = Edge(edges[1], values);
+        Tails<TNumber> otherwise = Edge(edges[2], values);
+        return new Tails<TNumber>(
+            (selector.True * then.True) + (selector.False * otherwise.True),
+            (selector.True * then.False) + (selector.False * otherwise.False));
+    }
+
+    private static Tails<TNumber> Choice(ReadOnlySpan<int> edges, TNumber[] weights, Tails<TNumber>[] values)
+    {
+        TNumber yes = TNumber.AdditiveIdentity;
+        TNumber no = TNumber.AdditiveIdentity;
+        for (int i = 0; i < edges.Length; i++)
+        {
+            Tails<TNumber> branch = Edge(edges[i], values);
+            yes += weights[i] * branch.True;
+            no += weights[i] * branch.False;
+        }
+
+        return new Tails<TNumber>(yes, no);
+    }
+
+    private static Tails<TNumber> Edge(int edge, Tails<TNumber>[] values) => values[edge >> 1].NegateIf((edge & 1) != 0);
+}

@@ -1,0 +1,230 @@
+using System.Numerics;
+
+namespace Uncertain.Inference.Compilation;
+
+/// <summary>
+/// Scratch formulas while one module is compiled: hash-consed conjunctions with negated edges over atoms whose variables
+/// have ranks. The rank says when a variable is decided; a formula knows the range of its ranks, so that formulas with
+/// disjoint ranges are known to be independent, and a formula contains the first undecided variable exactly if its range
+/// begins there.
+/// </summary>
+/// <remarks>References are node index * 2 + 1 if negated; node 0 is the constant true.</remarks>
+internal sealed class ResidualArena
+{
+    public const int True = 0;
+    public const int False = 1;
+
+    private readonly CompilationBudget _budget;
+    private readonly AtomTable _atoms;
+    private readonly int[] _rankOfVariable;
+    private readonly IntMap _nodeOfAtom = new(16);
+    private ResidualNode[] _nodes = new ResidualNode[64];
+    private int[] _pool = new int[128];
+    private int[] _table = new int[128];
+    private int _poolCount;
+    private bool _isBuilding = true;
+
+    /// <param name="atoms">The atoms.</param>
+    /// <param name="rankOfVariable">When each variable is decided; read when an atom is first used.</param>
+    /// <param name="budget">Pays for nodes and bytes.</param>
+    public ResidualArena(AtomTable atoms, int[] rankOfVariable, CompilationBudget budget)
+    {
+        _atoms = atoms;
+        _rankOfVariable = rankOfVariable;
+        _budget = budget;
+        _nodes[0] = new ResidualNode { Low = int.MaxValue, High = -1, Edge = FormBuilder.True };
+        Count = 1;
+        _budget.Bytes(Bytes);
+    }
+
+    public int Count { get; private set; }
+
+    public long Bytes => (32L * _nodes.Length) + (4L * _pool.Length) + (4L * _table.Length);
+
+    /// <summary>The node of an index, to be read and marked; valid until the next node is made.</summary>
+    public ref ResidualNode this[int index] => ref _nodes[index];
+
+    public ReadOnlySpan<int> Operands(int index) => _pool.AsSpan(_nodes[index].First, _nodes[index].Count);
+
+    /// <summary>From now on nodes are counted against the budget.</summary>
+    public void StartDeciding() => _isBuilding = false;
+
+    public int Atom(int atom, bool negated)
+    {
+        if (!_nodeOfAtom.TryGet(atom, out int index))
+        {
+            int rank = _rankOfVariable[_atoms.Variable(atom)];
+            index = Append(new ResidualNode
+            {
+                First = atom,
+                Low = rank,
+                High = rank,
+                WhenFalse = False,
+                WhenTrue = True,
+                Edge = _atoms.Edge(atom),
+            });
+            _nodeOfAtom.Add(atom, index);
+        }
+
+        return (index << 1) | (negated ? 1 : 0);
+    }
+
+    /// <summary>The conjunction, simplified by constants, repeats and contradictions; changes <paramref name="operands"/>.</summary>
+    public int And(Span<int> operands)
+    {
+        Sort(operands);
+        int kept = 0;
+        int previous = True;
+        foreach (int operand in operands)
+        {
+            if (operand == previous)
+            {
+                continue;
+            }
+
+            if ((operand ^ previous) == 1)
+            {
+                return False;
+            }
+
+            operands[kept++] = operand;
+            previous = operand;
+        }
+
+        return kept switch
+        {
+            0 => True,
+            1 => operands[0],
+            _ => Intern(operands[..kept]),
+        };
+    }
+
+    private static void Sort(Span<int> operands)
+    {
+        if (operands.Length > 24)
+        {
+            operands.Sort();
+            return;
+        }
+
+        for (int i = 1; i < operands.Length; i++)
+        {
+            int operand = operands[i];
+            int j = i - 1;
+            while (j >= 0 && operands[j] > operand)
+            {
+                operands[j + 1] = operands[j];
+                j--;
+            }
+
+            operands[j + 1] = operand;
+        }
+    }
+
+    private int Intern(ReadOnlySpan<int> operands)
+    {
+        uint hash = Hash(operands);
+        int mask = _table.Length - 1;
+        int bucket = (int)hash & mask;
+        for (int index = _table[bucket]; index != 0; index = _table[bucket])
+        {
+            ref ResidualNode node = ref _nodes[index];
+            if (node.Count == operands.Length && _pool.AsSpan(node.First, node.Count).SequenceEqual(operands))
+            {
+                return index << 1;
+            }
+
+            bucket = (bucket + 1) & mask;
+        }
+
+        int made = AppendConjunction(operands);
+        _table[bucket] = made;
+        if (Count * 3L > _table.Length * 2L)
+        {
+            GrowTable();
+        }
+
+        return made << 1;
+    }
+
+    private int AppendConjunction(ReadOnlySpan<int> operands)
+    {
+        if (!_isBuilding)
+        {
+            _budget.Residual();
+        }
+
+        long needed = (long)_poolCount + operands.Length;
+        if (needed > _pool.Length)
+        {
+            int size = (int)Math.Min(Math.Max(needed, _pool.Length * 2L), Array.MaxLength);
+            _budget.Bytes(4L * (size - _pool.Length));
+            Array.Resize(ref _pool, size);
+        }
+
+        var node = new ResidualNode
+        {
+            First = _poolCount,
+            Count = operands.Length,
+            Low = int.MaxValue,
+            High = -1,
+            WhenFalse = -1,
+            WhenTrue = -1,
+            Edge = -1,
+        };
+        foreach (int operand in operands)
+        {
+            ref ResidualNode child = ref _nodes[operand >> 1];
+            node.Low = Math.Min(node.Low, child.Low);
+            node.High = Math.Max(node.High, child.High);
+        }
+
+        operands.CopyTo(_pool.AsSpan(_poolCount));
+        _poolCount += operands.Length;
+        return Append(node);
+    }
+
+    private int Append(in ResidualNode node)
+    {
+        if (Count == _nodes.Length)
+        {
+            _budget.Bytes(32L * _nodes.Length);
+            Array.Resize(ref _nodes, _nodes.Length * 2);
+        }
+
+        _nodes[Count] = node;
+        return Count++;
+    }
+
+    private void GrowTable()
+    {
+        _budget.Bytes(4L * _table.Length);
+        _table = new int[_table.Length * 2];
+        int mask = _table.Length - 1;
+        for (int index = 1; index < Count; index++)
+        {
+            if (_nodes[index].Count > 0)
+            {
+                int bucket = (int)Hash(Operands(index)) & mask;
+                while (_table[bucket] != 0)
+                {
+                    bucket = (bucket + 1) & mask;
+                }
+
+                _table[bucket] = index;
+            }
+        }
+    }
+
+    private static uint Hash(ReadOnlySpan<int> operands)
+    {
+        ulong hash = (ulong)operands.Length;
+        foreach (int operand in operands)
+        {
+            hash = (hash ^ (uint)operand) * 0xD6E8FEB86659FD93;
+            hash = BitOperations.RotateLeft(hash, 29);
+        }
+
+        return (uint)((hash * 0x9E3779B97F4A7C15) >> 32);
+    }
+}

@@ -1,0 +1,167 @@
+using System.Runtime.InteropServices;
+
+namespace Uncertain.Inference.Compilation;
+
+/// <summary>
+/// Compiles a list of terms by decisions: the variables are ordered by an elimination tree of the graph that joins variables
+/// of one term, and the terms are nested along that tree.
+/// </summary>
+internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
+{
+    // Up to here all pairs of a term's variables are joined; beyond, the terms become vertices between them.
+    private const long JoinedPairs = 4_000_000;
+
+    /// <summary>The edge to the compiled disjunction.</summary>
+    public int Compile(TermList terms)
+    {
+        int[] variables = workspace.NumberVariables(terms);
+        int[] homes = new int[terms.Count];
+        EliminationTree tree = BuildTree(terms, variables.Length, homes);
+        int[] depths = TreeNumbering.Depths(tree);
+        int[] firstNeeded = FindHomes(terms, variables.Length, tree, depths, homes);
+        int[] order = TreeNumbering.Preorder(tree, variables.Length, firstNeeded);
+        int[] variableOfRank = new int[order.Length];
+        int[] ranks = workspace.RankOfVariable;
+        for (int rank = 0; rank < order.Length; rank++)
+        {
+            variableOfRank[rank] = variables[order[rank]];
+            ranks[variableOfRank[rank]] = rank;
+        }
+
+        var arena = new ResidualArena(atoms, ranks, budget);
+        int root = Nest(arena, terms, tree, homes);
+        arena.StartDeciding();
+        int edge = new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
+        budget.Bytes(-arena.Bytes);
+        return edge ^ 1;
+    }
+
+    private EliminationTree BuildTree(TermList terms, int variables, int[] homes)
+    {
+        long joined = 0;
+        for (int i = 0; i < terms.Count; i++)
+        {
+            joined += (long)terms[i].Length * terms[i].Length / 2;
+        }
+
+        bool joins = joined <= Math.Max(JoinedPairs, 4L * terms.LiteralCount);
+        int[] vertex = workspace.VertexOfVariable;
+        var pairs = new List<long>();
+        for (int i = 0; i < terms.Count; i++)
+        {
+            ReadOnlySpan<int> term = terms[i];
+            homes[i] = joins ? -1 : variables + i;
+            for (int j = 0; j < term.Length; j++)
+            {
+                int v = vertex[atoms.Variable(term[j] >> 1)];
+                if (!joins)
+                {
+                    pairs.Add(SparseGraph.Pair(v, variables + i));
+                    continue;
+                }
+
+                for (int k = 0; k < j; k++)
+                {
+                    int u = vertex[atoms.Variable(term[k] >> 1)];
+                    if (u != v)
+                    {
+                        pairs.Add(SparseGraph.Pair(u, v));
+                    }
+                }
+            }
+
+            budget.Step();
+        }
+
+        SparseGraph graph = SparseGraph.FromPairs(joins ? variables : variables + terms.Count, pairs);
+        return EliminationTree.Build(graph, budget);
+    }
+
+    /// <summary>
+    /// The vertex where each term is placed: its deepest variable, unless it is a vertex itself. Returns, for each vertex, the
+    /// depth of the first variable that a term in its branch has.
+    /// </summary>
+    private int[] FindHomes(TermList terms, int variables, EliminationTree tree, int[] depths, int[] homes)
+    {
+        int[] vertex = workspace.VertexOfVariable;
+        int[] firstNeeded = new int[tree.Order.Length];
+        Array.Fill(firstNeeded, int.MaxValue);
+        for (int i = 0; i < terms.Count; i++)
+        {
+            int first = int.MaxValue;
+            int deepest = -1;
+            foreach (int literal in terms[i])
+            {
+                int v = vertex[atoms.Variable(literal >> 1)];
+                first = Math.Min(first, depths[v]);
+                deepest = deepest < 0 || depths[v] > depths[deepest] ? v : deepest;
+            }
+
+            homes[i] = homes[i] < variables ? deepest : homes[i];
+            firstNeeded[homes[i]] = Math.Min(firstNeeded[homes[i]], first);
+        }
+
+        foreach (int v in tree.Order)
+        {
+            if (tree.Parents[v] >= 0)
+            {
+                ref int above = ref firstNeeded[tree.Parents[v]];
+                above = Math.Min(above, firstNeeded[v]);
+            }
+        }
+
+        return firstNeeded;
+    }
+
+    /// <summary>The conjunction of the negated terms, those of each branch of the tree together.</summary>
+    private int Nest(ResidualArena arena, TermList terms, EliminationTree tree, int[] homes)
+    {
+        int vertices = tree.Order.Length;
+        int[] last = new int[vertices + 1];
+        Array.Fill(last, -1);
+        int[] previous = new int[terms.Count + vertices];
+        for (int i = terms.Count - 1; i >= 0; i--)
+        {
+            previous[i] = last[homes[i]];
+            last[homes[i]] = i;
+        }
+
+        int[] branch = new int[vertices];
+        var operands = new List<int>();
+        var literals = new List<int>();
+        for (int i = 0; i <= vertices; i++)
+        {
+            int v = i < vertices ? tree.Order[i] : vertices;
+            operands.Clear();
+            for (int item = last[v]; item >= 0; item = previous[item])
+            {
+                operands.Add(item < terms.Count ? Clause(arena, terms[item], literals) : branch[item - terms.Count]);
+            }
+
+            budget.Step();
+            int nested = Nesting.And(arena, CollectionsMarshal.AsSpan(operands));
+            if (i == vertices)
+            {
+                return nested;
+            }
+
+            branch[v] = nested;
+            int parent = tree.Parents[v] < 0 ? vertices : tree.Parents[v];
+            previous[terms.Count + v] = last[parent];
+            last[parent] = terms.Count + v;
+        }
+
+        return ResidualArena.True;
+    }
+
+    private static int Clause(ResidualArena arena, ReadOnlySpan<int> term, List<int> literals)
+    {
+        literals.Clear();
+        foreach (int literal in term)
+        {
+            literals.Add(arena.Atom(literal >> 1, (literal & 1) != 0));
+        }
+
+        return arena.And(CollectionsMarshal.AsSpan(literals)) ^ 1;
+    }
+}
