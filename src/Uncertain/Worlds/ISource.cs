@@ -21,7 +21,7 @@ internal interface ISource
     int[] Choose(IReadOnlyList<LambdaExpression> filters, Action<int> tick);
 
     /// <summary>Codes of a field for chosen records.</summary>
-    void Encode(Encoder encoder, LambdaExpression field, ReadOnlySpan<int> chosen, bool dropNulls, Span<int> codes);
+    void Encode(Encoder encoder, LambdaExpression field, int[] chosen, bool dropNulls, int[] codes, Action<int> tick);
 
     /// <summary>A record's lineage; in sources without given lineages it is true or a positive literal.</summary>
     LineageRef LineageOf(int record);

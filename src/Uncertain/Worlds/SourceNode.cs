@@ -76,8 +76,8 @@ internal sealed class SourceNode<T>(
         return [.. chosen];
     }
 
-    public void Encode(Encoder encoder, LambdaExpression field, ReadOnlySpan<int> chosen, bool dropNulls, Span<int> codes) =>
-        encoder.Encode(Records, chosen, field, dropNulls, codes);
+    public void Encode(Encoder encoder, LambdaExpression field, int[] chosen, bool dropNulls, int[] codes, Action<int> tick) =>
+        encoder.Encode(Records, chosen.Length == Records.Length ? null : chosen, field, dropNulls, codes, tick);
 
     public LineageRef LineageOf(int record) => Lineages[record];
 

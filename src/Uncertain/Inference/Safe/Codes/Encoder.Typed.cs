@@ -4,20 +4,26 @@ using Uncertain.Execution;
 
 namespace Uncertain.Inference.Safe.Codes;
 
+#pragma warning disable CS8714 // Nulls never reach the dictionary: they have a code of their own.
+
 /// <summary>The encoder for values of one type, by their default equality.</summary>
 internal sealed class Encoder<TValue> : Encoder
 {
-    private readonly Dictionary<ValueTuple<TValue>, int> _codes = new(new KeyComparer<TValue>(null));
+    private readonly Dictionary<TValue, int> _codes = [];
     private readonly List<TValue> _values = [];
+    private int _nullCode = Dropped;
+
+    public override int Count => _values.Count;
 
     public override void Encode<TRow>(
-        TRow[] rows, ReadOnlySpan<int> chosen, LambdaExpression field, bool dropNulls, Span<int> codes)
+        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action<int> tick)
     {
         var lambda = new Lambda<TRow, TValue>((Expression<Func<TRow, TValue>>)field, "a field");
-        for (int i = 0; i < chosen.Length; i++)
+        for (int i = 0; i < codes.Length; i++)
         {
-            TValue value = lambda.Invoke(rows[chosen[i]]);
-            codes[i] = value is null && dropNulls ? Dropped : CodeOf(value);
+            tick(i);
+            TValue value = lambda.Invoke(rows[chosen is null ? i : chosen[i]]);
+            codes[i] = value is not null ? CodeOf(value) : dropNulls ? Dropped : NullCode();
         }
     }
 
@@ -26,7 +32,7 @@ internal sealed class Encoder<TValue> : Encoder
 
     private int CodeOf(TValue value)
     {
-        ref int code = ref CollectionsMarshal.GetValueRefOrAddDefault(_codes, new(value), out bool exists);
+        ref int code = ref CollectionsMarshal.GetValueRefOrAddDefault(_codes, value, out bool exists);
         if (!exists)
         {
             code = _values.Count;
@@ -34,5 +40,16 @@ internal sealed class Encoder<TValue> : Encoder
         }
 
         return code;
+    }
+
+    private int NullCode()
+    {
+        if (_nullCode == Dropped)
+        {
+            _nullCode = _values.Count;
+            _values.Add(default!);
+        }
+
+        return _nullCode;
     }
 }

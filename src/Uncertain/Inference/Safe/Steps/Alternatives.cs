@@ -42,8 +42,8 @@ internal sealed class Alternatives<TNumber>
     public static Alternatives<TNumber> Of(ScanStep scan, SafeRun<TNumber> run)
     {
         int[] rows = scan.Read(run, out int[][] columns);
-        RowKeys keys = RowKeys.Of(columns, rows.Length, out int[] keyOf);
-        int count = rows.Length == 0 ? 0 : keys.Count;
+        RowKeys keys = RowKeys.Of(columns, run.RangesOf(scan.Variables), rows.Length, out int[] keyOf);
+        int count = keys.Count;
         var chances = new TNumber[count];
         var variableOf = new int[count];
         var chosen = new HashSet<int>();

@@ -18,7 +18,7 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
         CodeTable<TNumber> left = _left.Run(run);
         CodeTable<TNumber> right = _right.Run(run);
         List<Field> common = [.. left.Variables.Intersect(right.Variables)];
-        RowKeys keys = RowKeys.Of(right.ColumnsOf(common), right.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(right.ColumnsOf(common), run.RangesOf(common), right.Count, out int[] keyOf);
 
         // Rows of one key form a chain, the latest first; walking rows backwards makes it come out in order.
         var first = new int[keys.Count];

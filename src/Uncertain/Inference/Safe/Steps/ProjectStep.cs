@@ -28,8 +28,8 @@ internal sealed class ProjectStep(SafeStep input, IEnumerable<Field> variables) 
             System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
     {
         int[][] columns = input.ColumnsOf(variables);
-        RowKeys keys = RowKeys.Of(columns, input.Count, out int[] keyOf);
-        var tails = new Tails<TNumber>[input.Count == 0 ? 0 : keys.Count];
+        RowKeys keys = RowKeys.Of(columns, run.RangesOf(variables), input.Count, out int[] keyOf);
+        var tails = new Tails<TNumber>[keys.Count];
         var members = new long[tails.Length];
         Array.Fill(tails, Tails<TNumber>.Never);
         for (int row = 0; row < input.Count; row++)

@@ -33,6 +33,9 @@ internal sealed class SafeRun<TNumber>(
         return encoder;
     }
 
+    /// <summary>For each variable a number that all its codes are smaller than, as far as they are known now.</summary>
+    public int[] RangesOf(IEnumerable<Field> variables) => [.. variables.Select(variable => EncoderOf(variable).Count)];
+
     /// <summary>To be called for every row: looks at the token and the deadline now and then.</summary>
     public void Tick(int row)
     {

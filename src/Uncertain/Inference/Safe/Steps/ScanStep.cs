@@ -37,8 +37,8 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         }
 
         int[] rows = Read(run, out int[][] columns);
-        RowKeys keys = RowKeys.Of(columns, rows.Length, out int[] keyOf);
-        var tails = new Tails<TNumber>[rows.Length == 0 ? 0 : keys.Count];
+        RowKeys keys = RowKeys.Of(columns, run.RangesOf(Variables), rows.Length, out int[] keyOf);
+        var tails = new Tails<TNumber>[keys.Count];
         var members = new int[tails.Length];
         Array.Fill(tails, Tails<TNumber>.Never);
         for (int i = 0; i < rows.Length; i++)
@@ -75,9 +75,16 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             }
 
             var column = new int[rows.Length];
-            source.Encode(run.EncoderOf(variable), Expression.Lambda(field.Expression, Part.Atom.Row), rows, field.DropsNulls, column);
-            run.Checkpoint();
+            source.Encode(
+                run.EncoderOf(variable), Expression.Lambda(field.Expression, Part.Atom.Row), rows, field.DropsNulls, column, run.Tick);
             codes.Add((variable, column));
+        }
+
+        if (codes.Count == codes.Select(column => column.Variable).Distinct().Count()
+            && !Part.Fields.Any(field => field.DropsNulls && CanBeNull(field.Expression.Type)))
+        {
+            columns = [.. Variables.Select(variable => codes.Find(column => column.Variable == variable).Codes)];
+            return rows;
         }
 
         var kept = new List<int>(rows.Length);
@@ -94,6 +101,8 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         columns = kept.Count == rows.Length ? all : [.. all.Select(column => kept.Select(i => column[i]).ToArray())];
         return kept.Count == rows.Length ? rows : [.. kept.Select(i => rows[i])];
     }
+
+    private static bool CanBeNull(Type type) => !type.IsValueType || Nullable.GetUnderlyingType(type) is not null;
 
     /// <summary>One row for each key.</summary>
     public static int[][] Compact(int[][] columns, int[] keyOf, int keys)

@@ -19,7 +19,7 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
     {
         CodeTable<TNumber> input = _input.Run(run);
         CodeTable<TNumber> absent = _absent.Run(run);
-        RowKeys keys = RowKeys.Of(absent.Columns, absent.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(absent.Columns, run.RangesOf(absent.Variables), absent.Count, out int[] keyOf);
         var rowOfKey = new int[absent.Count];
         for (int row = 0; row < absent.Count; row++)
         {
@@ -31,7 +31,7 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
         for (int row = 0; row < tails.Length; row++)
         {
             run.Tick(row);
-            int key = absent.Count == 0 ? -1 : keys.Find(columns, row);
+            int key = keys.Find(columns, row);
             if (key >= 0)
             {
                 tails[row] &= !absent.Tails[rowOfKey[key]];

@@ -1,0 +1,56 @@
+namespace Uncertain.Inference.Safe.Codes;
+
+/// <summary>Hash table from pairs of codes to dense numbers in order of first appearance: open addressing, 16 bytes an entry.</summary>
+internal sealed class PairTable
+{
+    private (long Pair, int Number)[] _entries = new (long, int)[32];
+    private int _shift = 64 - 5;
+
+    public int Count { get; private set; }
+
+    public int NumberOf(long pair)
+    {
+        int bucket = BucketOf(pair);
+        if (_entries[bucket].Number == 0)
+        {
+            _entries[bucket] = (pair, ++Count);
+            if (Count * 2 > _entries.Length)
+            {
+                Grow();
+            }
+
+            return Count - 1;
+        }
+
+        return _entries[bucket].Number - 1;
+    }
+
+    /// <summary>The number of a pair, or -1.</summary>
+    public int Find(long pair) => _entries[BucketOf(pair)].Number - 1;
+
+    // The bucket that holds the pair, or the empty one where it belongs. Numbers are stored plus one, so that 0 means empty.
+    private int BucketOf(long pair)
+    {
+        int bucket = (int)(unchecked((ulong)pair * 0x9E3779B97F4A7C15) >> _shift);
+        while (_entries[bucket].Number != 0 && _entries[bucket].Pair != pair)
+        {
+            bucket = (bucket + 1) & (_entries.Length - 1);
+        }
+
+        return bucket;
+    }
+
+    private void Grow()
+    {
+        (long Pair, int Number)[] old = _entries;
+        _entries = new (long, int)[old.Length * 2];
+        _shift--;
+        foreach ((long Pair, int Number) entry in old)
+        {
+            if (entry.Number != 0)
+            {
+                _entries[BucketOf(entry.Pair)] = entry;
+            }
+        }
+    }
+}
