@@ -92,7 +92,7 @@ public sealed class CaseChecker
         return missing.Count == 0 ? null : $"no lineage for {string.Join(", ", missing.Keys)}";
     }
 
-    private string? CheckSafePlan(Expectation expected, IBuiltQuery built)
+    internal string? CheckSafePlan(Expectation expected, IBuiltQuery built)
     {
         Suitability suitability = built.Plan.Examine(Evaluators.SafePlan);
         if (suitability.Reason.Length == 0)

@@ -63,7 +63,8 @@ public sealed record TestCase(
         var text = new StringBuilder();
         for (int i = 0; i < Shared.Count; i++)
         {
-            text.Append(CultureInfo.InvariantCulture, $"var v{i} = worlds.Choice(\"v{i}\", {string.Join(", ", Shared[i])});\n");
+            string method = Shared[i].Length == 1 ? "Event" : "Choice";
+            text.Append(CultureInfo.InvariantCulture, $"var v{i} = worlds.{method}(\"v{i}\", {string.Join(", ", Shared[i])});\n");
         }
 
         for (int i = 0; i < Sources.Count; i++)

@@ -50,7 +50,7 @@ public static class Terms
 
     public static IReadOnlyList<RowLambda<IEnumerable<int>>> Items { get; } =
     [
-        new(x => Enumerable.Range(0, x.B)),
+        new(x => Enumerable.Range(0, Math.Max(0, x.B))),
         new(x => new[] { x.B, x.B % 2 }),
         new(x => s_listed),
     ];
