@@ -1,0 +1,9 @@
+namespace Uncertain.Tests.Queries.Cases;
+
+public enum SourceForm
+{
+    Certain,
+    Independent,
+    Alternatives,
+    WithLineage,
+}

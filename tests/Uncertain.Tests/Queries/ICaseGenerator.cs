@@ -1,0 +1,6 @@
+namespace Uncertain.Tests.Queries;
+
+public interface ICaseGenerator
+{
+    TestCase Next(Random random);
+}

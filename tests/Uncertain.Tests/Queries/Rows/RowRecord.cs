@@ -1,0 +1,3 @@
+namespace Uncertain.Tests.Queries.Rows;
+
+public sealed record RowRecord(int? A, int B, string? C);

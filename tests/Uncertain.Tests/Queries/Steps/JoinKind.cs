@@ -1,0 +1,9 @@
+namespace Uncertain.Tests.Queries.Steps;
+
+public enum JoinKind
+{
+    Join,
+    LeftJoin,
+    SemiJoin,
+    AntiJoin,
+}

@@ -1,0 +1,8 @@
+namespace Uncertain.Tests.Queries.Steps;
+
+public enum SetOperation
+{
+    Union,
+    Intersect,
+    Except,
+}
