@@ -1,0 +1,56 @@
+using Uncertain.ReferenceCheck.Cases;
+using Uncertain.ReferenceCheck.Solving;
+
+namespace Uncertain.ReferenceCheck.Questions;
+
+/// <summary>Number of true events among independent ones, and runs of failures.</summary>
+internal static class CountQuestion
+{
+    private const int MostEvents = 1_000_000;
+
+    public static IReadOnlyList<Figure> Ask(Field input, Solver solver)
+    {
+        var worlds = new WorldSpace();
+        Lineage[] events = [worlds.Never, .. Chances(input["p"]).Select((chance, i) => chance.NewEvent(worlds, $"event {i}"))];
+        return new Distribution([.. Enumerable.Range(0, events.Length).Select(k => (long)k)], Between).Ask(input, solver);
+
+        Lineage Between(long least, long most)
+        {
+            int from = (int)Math.Clamp(least, 0, events.Length);
+            int to = (int)Math.Clamp(most, -1, events.Length);
+            return from == to
+                ? Lineage.Exactly(from, events)
+                : Lineage.AtLeast(from, events) & !Lineage.AtLeast(to + 1, events);
+        }
+    }
+
+    /// <summary>No k components in a row have failed, on a line or a circle.</summary>
+    public static Figure AskConsecutive(Field input, Solver solver)
+    {
+        int n = input["n"].Integer(1, MostEvents);
+        int k = input["k"].Integer(1, MostEvents);
+        bool isCircular = input.Flag("circular");
+        var worlds = new WorldSpace();
+        Lineage[] works = Elements.Events(worlds, "component", n, input, "p", null);
+        int windows = k > n ? 0 : isCircular ? n : n - k + 1;
+        return solver.Chance(Lineage.All([worlds.Always, .. Enumerable.Range(0, windows)
+            .Select(first => Lineage.Any([.. Enumerable.Range(first, k).Select(i => works[i % n])]))]));
+    }
+
+    private static IEnumerable<Chance> Chances(Field field)
+    {
+        if (field.IsList)
+        {
+            return field.Items().Select(item => item.Chance);
+        }
+
+        int n = field["n"].Integer(0, MostEvents);
+        return field["rule"].Text switch
+        {
+            "constant" => Enumerable.Repeat(field["p"].Chance, n),
+            "harmonic" => Enumerable.Range(1, n).Select(i => Chance.Of(new Rational(1, i))),
+            "linear" => Enumerable.Range(1, n).Select(i => Chance.Of(new Rational(i, n + 1))),
+            _ => throw field["rule"].Wrong("constant, harmonic or linear"),
+        };
+    }
+}

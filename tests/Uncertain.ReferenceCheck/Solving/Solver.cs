@@ -1,0 +1,44 @@
+using System.Diagnostics;
+using Uncertain.Inference;
+
+namespace Uncertain.ReferenceCheck.Solving;
+
+/// <summary>Evaluates the lineages and questions of one case by the chosen evaluator within the case's time.</summary>
+internal sealed class Solver(IEvaluator evaluator, TimeSpan limit, CancellationToken cancellationToken)
+{
+    // One estimate in a billion may miss its bounds, so that a miss is a fault and not bad luck.
+    private static readonly Accuracy s_sampled = Accuracy.Within(0.002, 1e-9);
+
+    private readonly Stopwatch _watch = Stopwatch.StartNew();
+
+    public CancellationToken CancellationToken => cancellationToken;
+
+    public Figure Chance(Lineage lineage) => Figure.Of(lineage.Evaluate(Options(), cancellationToken));
+
+    public Figure Chance(YesNoQuestion question) => Figure.Of(question.Evaluate(Options(), cancellationToken).Probability);
+
+    /// <summary>P(<paramref name="lineage"/> | <paramref name="given"/>).</summary>
+    public Figure Chance(Lineage lineage, Lineage given)
+    {
+        Figure whole = Chance(given);
+        return double.IsNegativeInfinity(whole.Log)
+            ? throw new LeftOutException("the condition has probability 0")
+            : Chance(lineage & given) / whole;
+    }
+
+    /// <summary>To be called now and then while a large lineage is built.</summary>
+    public void Checkpoint() => cancellationToken.ThrowIfCancellationRequested();
+
+    private EvaluationOptions Options()
+    {
+        Checkpoint();
+        TimeSpan left = limit - _watch.Elapsed;
+        return new EvaluationOptions
+        {
+            Evaluator = evaluator,
+            Accuracy = evaluator == Evaluators.Sampling ? s_sampled : Accuracy.Exact,
+            Deadline = left > TimeSpan.Zero ? left : TimeSpan.FromMilliseconds(1),
+            NodeBudget = 20_000_000, // Time is the limit here.
+        };
+    }
+}
