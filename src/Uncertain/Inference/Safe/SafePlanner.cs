@@ -33,7 +33,7 @@ internal static class SafePlanner
 
         List<List<Part>> groups = Connect(parts, open);
         return open.Count == 0 || groups.Count > 1
-            ? Combine(parts, groups, known)
+            ? Combine(parts, groups, known, open)
             : Eliminate(parts, known, open);
     }
 
@@ -84,11 +84,13 @@ internal static class SafePlanner
     }
 
     // Parts that share known variables only are independent: join those that give rows, then filter.
-    private static SafeStep Combine(IReadOnlyList<Part> parts, List<List<Part>> groups, HashSet<Field> known)
+    private static SafeStep Combine(IReadOnlyList<Part> parts, List<List<Part>> groups, HashSet<Field> known, List<Field> open)
     {
         List<SafeStep> producers = [.. groups
             .Where(group => group.Exists(part => part.ProducesRows))
-            .Select(group => group is [var single] ? Single(single, known) : Build(WithGuards(group, parts), known))];
+            .Select(group => group is [var single] && single.Variables.IsSubsetOf(known)
+                ? Whole(single)
+                : Eliminate(WithGuards(group, parts), known, open))];
         if (producers.Count == 0)
         {
             throw new NoSafePlanException("a part of the query only excludes rows and gives none");
@@ -131,12 +133,9 @@ internal static class SafePlanner
                 $"a condition or difference on {Names(missing)} of a union depends on other parts of the query; apply it to the union's sides");
     }
 
-    private static SafeStep Single(Part part, HashSet<Field> known) => part switch
-    {
-        SourcePart source when part.Variables.IsSubsetOf(known) => new ScanStep(source, part.Variables),
-        UnionPart union when part.Variables.IsSubsetOf(known) => Union(union, part.Variables),
-        _ => Build([part], known),
-    };
+    private static SafeStep Whole(Part part) => part is SourcePart source
+        ? new ScanStep(source, part.Variables)
+        : Union((UnionPart)part, part.Variables);
 
     private static SafeStep Absent(AbsencePart absence) => Plan(absence.Of, absence.Variables);
 
@@ -146,9 +145,13 @@ internal static class SafePlanner
         return new UnionStep(Plan(union.Left, columns), Plan(union.Right, columns), columns);
     }
 
-    // One group of parts connected by open variables.
-    private static SafeStep Eliminate(IReadOnlyList<Part> parts, HashSet<Field> known, List<Field> open)
+    // One group of parts connected by open variables, of all that are open in the query. Every way out makes more variables known or
+    // leaves fewer parts, so planning ends.
+    private static SafeStep Eliminate(IReadOnlyList<Part> parts, HashSet<Field> allKnown, List<Field> allOpen)
     {
+        HashSet<Field> used = [.. parts.SelectMany(part => part.Variables)];
+        HashSet<Field> known = [.. allKnown.Where(used.Contains)];
+        List<Field> open = allOpen.FindAll(used.Contains);
         if (parts is [var only])
         {
             List<Field> columns = [.. only.Variables.Where(known.Contains)];
