@@ -7,12 +7,12 @@ namespace Uncertain.Tests.Sampling;
 public class BoundsTests
 {
     [Fact]
-    public void Quantile_AnyTail_IsAtMostOnePercentAboveTheNormalQuantile()
+    public void Quantile_AnyTail_IsJustAboveTheNormalQuantile()
     {
         foreach (double tail in new[] { 0.49, 0.3, 0.1, 0.01, 1e-3, 1e-6, 1e-12, 1e-15 })
         {
             double expected = -Normal.InvCDF(0, 1, tail);
-            Assert.InRange(NormalTail.Quantile(tail), expected, (expected * 1.01) + 1e-2);
+            Assert.InRange(NormalTail.Quantile(tail), expected, expected + 0.05);
         }
     }
 
@@ -33,7 +33,7 @@ public class BoundsTests
                 double upper = k == n ? 1 : BetaQuantile(k + 1, n - k, 1 - (delta / 2));
                 Assert.InRange(interval.Lower, 0, lower * (1 + 1e-9));
                 Assert.InRange(interval.Upper, upper * (1 - 1e-9), 1);
-                double slack = k is > 20 && k < n - 20 ? 0.06 : 0.7;
+                double slack = k is > 20 && k < n - 20 ? (delta < 0.1 ? 0.06 : 0.2) : 0.7;
                 Assert.True(interval.Upper - interval.Lower <= (upper - lower) * (1 + slack), $"{n} {k} {interval} {lower} {upper}");
                 Assert.Equal(1, interval.Lower + interval.LowerComplement, 1e-15);
                 Assert.Equal(1, interval.Upper + interval.UpperComplement, 1e-15);

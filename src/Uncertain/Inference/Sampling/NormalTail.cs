@@ -4,7 +4,7 @@ namespace Uncertain.Inference.Sampling;
 internal static class NormalTail
 {
     /// <summary>
-    /// A z, at most about 1 % too large, beyond which the standard normal distribution has at most the weight
+    /// A z, at most 0.05 too large, beyond which the standard normal distribution has at most the weight
     /// <paramref name="tail"/>.
     /// </summary>
     /// <remarks>

@@ -6,6 +6,9 @@ namespace Uncertain.Inference.Sampling;
 /// <param name="pieceSize">Worlds that a worker takes at a time; a multiple of 64.</param>
 internal sealed class Team(Func<IWorker> create, int threads, long pieceSize)
 {
+    // Below this many pieces, about a millisecond, starting a thread takes as long as it saves.
+    private const int PiecesWorthAHelper = 8;
+
     private readonly IWorker?[] _workers = new IWorker?[threads];
 
     /// <summary>Evaluates a range of worlds.</summary>
@@ -17,11 +20,14 @@ internal sealed class Team(Func<IWorker> create, int threads, long pieceSize)
         long pieces = (to - from + pieceSize - 1) / pieceSize;
         long next = -1;
         bool stopped = false;
-        var helpers = new Task[(int)Math.Min(threads, pieces) - 1];
+        var helpers = new Task[(int)Math.Clamp(pieces / PiecesWorthAHelper, 0, threads - 1)];
         for (int i = 0; i < helpers.Length; i++)
         {
             int number = i + 1;
-            helpers[i] = Task.Run(() => Work(number));
+
+            // A stage may take long: threads of its own, so that the pool stays free for timers and continuations.
+            helpers[i] = Task.Factory.StartNew(
+                () => Work(number), CancellationToken.None, TaskCreationOptions.LongRunning, TaskScheduler.Default);
         }
 
         Work(0);
