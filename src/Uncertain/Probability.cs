@@ -158,6 +158,17 @@ public sealed class Probability : IFormattable
             cost, null);
     }
 
+    /// <summary>An estimate of which an evaluator knows the logarithms too, below the range of double.</summary>
+    internal static Probability Estimated(
+        double estimate, double complement, double logValue, double logComplement, double lower, double upper, double delta,
+        string evaluator, ulong seed, Cost cost)
+    {
+        CheckBounds(lower, estimate, upper);
+        return new Probability(
+            estimate, Unit(complement), logValue, logComplement, lower, upper, Guarantee.Confidence(delta), evaluator, seed, cost,
+            null);
+    }
+
     private static Probability Inexact(
         double value, double complement, double lower, double upper, Guarantee guarantee, string evaluator, ulong? seed, Cost cost) =>
         new(value, complement, LogOf(value, complement), LogOf(complement, value), lower, upper, guarantee, evaluator, seed, cost, null);

@@ -1,0 +1,132 @@
+using Uncertain.Worlds;
+
+namespace Uncertain.Inference.Sampling;
+
+/// <summary>The chance variables of a program, and how their rows of bits are drawn: one row for each slot.</summary>
+/// <remarks>
+/// A many-outcome variable has a row for each slot up to the last one in use. Outcome i is drawn given that none before it
+/// happened, with chance c_i / (c_i + c_i+1 + ... + none): sums of non-negative numbers, so that rounding is at most some units
+/// in the last place. The bits of a slot depend on the seed, the slot and the world only, whatever else a program holds.
+/// </remarks>
+internal sealed class Draws
+{
+    private readonly VariableTable _variables;
+    private readonly int[] _slotOfRow;
+    private readonly int[] _firstRow;
+    private readonly BiasedBits[] _bits;
+    private readonly Dictionary<int, int> _rowOfSlot;
+
+    /// <param name="variables">The chances.</param>
+    /// <param name="slots">The slots in use, in any order.</param>
+    /// <param name="seed">Seed of the worlds.</param>
+    public Draws(VariableTable variables, IEnumerable<int> slots, ulong seed)
+    {
+        _variables = variables;
+        Seed = seed;
+        var rows = new List<int>();
+        var starts = new List<int>();
+        int[] sorted = [.. slots];
+        Array.Sort(sorted);
+        for (int i = 0; i < sorted.Length; i++)
+        {
+            int variable = variables.VariableOf(sorted[i]);
+            if (i + 1 == sorted.Length || variables.VariableOf(sorted[i + 1]) != variable)
+            {
+                starts.Add(rows.Count);
+                for (int slot = variables.FirstSlot(variable); slot <= sorted[i]; slot++)
+                {
+                    rows.Add(slot);
+                }
+            }
+        }
+
+        starts.Add(rows.Count);
+        _slotOfRow = [.. rows];
+        _firstRow = [.. starts];
+        _bits = new BiasedBits[rows.Count];
+        _rowOfSlot = new Dictionary<int, int>(rows.Count);
+        for (int variable = 0; variable < VariableCount; variable++)
+        {
+            AddVariable(variable);
+        }
+    }
+
+    public ulong Seed { get; }
+
+    /// <summary>Number of rows; they come first in a program.</summary>
+    public int RowCount => _slotOfRow.Length;
+
+    public int VariableCount => _firstRow.Length - 1;
+
+    public int RowOf(int slot) => _rowOfSlot[slot];
+
+    public int SlotOf(int row) => _slotOfRow[row];
+
+    public int FirstRow(int variable) => _firstRow[variable];
+
+    public int EndRow(int variable) => _firstRow[variable + 1];
+
+    /// <summary>Draws the rows of one variable for the worlds from 64 * <paramref name="firstPlace"/> on.</summary>
+    public void Draw<TVector>(int variable, ulong firstPlace, Span<ulong> words, int width)
+        where TVector : struct, IWordVector<TVector>
+    {
+        int row = FirstRow(variable);
+        Span<ulong> target = words.Slice(row * width, width);
+        _bits[row].Fill<TVector>(firstPlace, target);
+        if (row + 1 < EndRow(variable))
+        {
+            DrawFurtherOutcomes<TVector>(row + 1, EndRow(variable), firstPlace, words, width);
+        }
+    }
+
+    private void DrawFurtherOutcomes<TVector>(int row, int end, ulong firstPlace, Span<ulong> words, int width)
+        where TVector : struct, IWordVector<TVector>
+    {
+        Span<ulong> open = stackalloc ulong[width];
+        Span<ulong> previous = words.Slice((row - 1) * width, width);
+        for (int i = 0; i < width; i++)
+        {
+            open[i] = ~previous[i];
+        }
+
+        for (; row < end; row++)
+        {
+            Span<ulong> target = words.Slice(row * width, width);
+            if (!open.ContainsAnyExcept(0UL))
+            {
+                target.Clear();
+                continue;
+            }
+
+            _bits[row].Fill<TVector>(firstPlace, target);
+            for (int i = 0; i < width; i++)
+            {
+                target[i] &= open[i];
+                open[i] &= ~target[i];
+            }
+        }
+    }
+
+    private void AddVariable(int variable)
+    {
+        int first = FirstRow(variable);
+        int firstSlot = _slotOfRow[first];
+        int owner = _variables.VariableOf(firstSlot);
+        double remaining = _variables.NoneChance(owner);
+        bool isLast = remaining == 0;
+        for (int slot = firstSlot + _variables.OutcomeCount(owner) - 1; slot >= firstSlot; slot--)
+        {
+            double chance = _variables.Chance(slot);
+            remaining += chance;
+            int row = first + slot - firstSlot;
+            if (row < EndRow(variable))
+            {
+                double given = isLast && slot == firstSlot + _variables.OutcomeCount(owner) - 1
+                    ? 1
+                    : slot == firstSlot ? chance : Math.Min(1, chance / remaining);
+                _bits[row] = new BiasedBits(given, SplitMixStream.Of(Seed, StreamKeys.Slot(slot)));
+                _rowOfSlot.Add(slot, row);
+            }
+        }
+    }
+}

@@ -1,0 +1,47 @@
+using System.Runtime.CompilerServices;
+using System.Runtime.Intrinsics;
+
+namespace Uncertain.Inference.Sampling;
+
+/// <summary>8 words in one hardware vector of 512 bits.</summary>
+internal readonly struct EightWords(Vector512<ulong> value) : IWordVector<EightWords>
+{
+    private readonly Vector512<ulong> _value = value;
+
+    public static int Count => 8;
+
+    public bool IsZero => _value == Vector512<ulong>.Zero;
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator &(EightWords left, EightWords right) => new(left._value & right._value);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator |(EightWords left, EightWords right) => new(left._value | right._value);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator ^(EightWords left, EightWords right) => new(left._value ^ right._value);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator +(EightWords left, EightWords right) => new(left._value + right._value);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator *(EightWords left, EightWords right) => new(left._value * right._value);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator >>>(EightWords value, int shift) => new(value._value >>> shift);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords AndNot(EightWords left, EightWords right) => new(Vector512.AndNot(left._value, right._value));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords Create(ulong word) => new(Vector512.Create(word));
+
+    public static EightWords Ramp(ulong first, ulong step) =>
+        new(Vector512.Create(first) + (Vector512<ulong>.Indices * Vector512.Create(step)));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords Load(ref ulong source) => new(Vector512.LoadUnsafe(ref source));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public void Store(ref ulong target) => _value.StoreUnsafe(ref target);
+}

@@ -1,0 +1,105 @@
+using System.Runtime.CompilerServices;
+
+namespace Uncertain.Inference.Sampling;
+
+/// <summary>The inner loop of sampling: conjunctions of rows of bits, each row optionally negated.</summary>
+/// <remarks>
+/// Code of one conjunction: the number of operands, then for each one 2 * row + (1 if negated). Row r takes the words
+/// from r * width on.
+/// </remarks>
+internal static class GateKernel
+{
+    /// <summary>Evaluates the conjunctions of <paramref name="code"/> one after the other into rows from <paramref name="row"/> on.</summary>
+    /// <returns>The row after the last one written.</returns>
+    public static int Run<TVector>(ReadOnlySpan<int> code, int row, ref ulong words, int width)
+        where TVector : struct, IWordVector<TVector>
+    {
+        int position = 0;
+        while (position < code.Length)
+        {
+            ReadOnlySpan<int> operands = code.Slice(position + 1, code[position]);
+            ref ulong target = ref Unsafe.Add(ref words, (nint)row * width);
+            int column = 0;
+            for (; column + (4 * TVector.Count) <= width; column += 4 * TVector.Count)
+            {
+                FourColumns<TVector>(operands, ref Unsafe.Add(ref words, column), width, ref Unsafe.Add(ref target, column));
+            }
+
+            for (; column < width; column += TVector.Count)
+            {
+                OneColumn<TVector>(operands, ref Unsafe.Add(ref words, column), width).Store(ref Unsafe.Add(ref target, column));
+            }
+
+            position += 1 + operands.Length;
+            row++;
+        }
+
+        return row;
+    }
+
+    /// <summary>
+    /// Adds to <paramref name="union"/>, of <paramref name="width"/> words, the worlds in which some conjunction of
+    /// <paramref name="code"/> holds.
+    /// </summary>
+    public static void Unite<TVector>(ReadOnlySpan<int> code, ref ulong union, ref ulong words, int width)
+        where TVector : struct, IWordVector<TVector>
+    {
+        for (int column = 0; column < width; column += TVector.Count)
+        {
+            ref ulong source = ref Unsafe.Add(ref words, column);
+            ref ulong target = ref Unsafe.Add(ref union, column);
+            TVector sum = TVector.Load(ref target);
+            int position = 0;
+            while (position < code.Length)
+            {
+                ReadOnlySpan<int> operands = code.Slice(position + 1, code[position]);
+                sum |= OneColumn<TVector>(operands, ref source, width);
+                position += 1 + operands.Length;
+            }
+
+            sum.Store(ref target);
+        }
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static TVector OneColumn<TVector>(ReadOnlySpan<int> operands, ref ulong words, int width)
+        where TVector : struct, IWordVector<TVector>
+    {
+        TVector all = TVector.Create(ulong.MaxValue);
+        foreach (int operand in operands)
+        {
+            all &= TVector.Load(ref Unsafe.Add(ref words, (nint)(operand >> 1) * width)) ^ Sign<TVector>(operand);
+        }
+
+        return all;
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static void FourColumns<TVector>(ReadOnlySpan<int> operands, ref ulong words, int width, ref ulong target)
+        where TVector : struct, IWordVector<TVector>
+    {
+        // Four accumulators hide the latency of the loads and share the decoding of the operand.
+        TVector first = TVector.Create(ulong.MaxValue);
+        TVector second = first;
+        TVector third = first;
+        TVector fourth = first;
+        foreach (int operand in operands)
+        {
+            ref ulong source = ref Unsafe.Add(ref words, (nint)(operand >> 1) * width);
+            TVector sign = Sign<TVector>(operand);
+            first &= TVector.Load(ref source) ^ sign;
+            second &= TVector.Load(ref Unsafe.Add(ref source, TVector.Count)) ^ sign;
+            third &= TVector.Load(ref Unsafe.Add(ref source, 2 * TVector.Count)) ^ sign;
+            fourth &= TVector.Load(ref Unsafe.Add(ref source, 3 * TVector.Count)) ^ sign;
+        }
+
+        first.Store(ref target);
+        second.Store(ref Unsafe.Add(ref target, TVector.Count));
+        third.Store(ref Unsafe.Add(ref target, 2 * TVector.Count));
+        fourth.Store(ref Unsafe.Add(ref target, 3 * TVector.Count));
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static TVector Sign<TVector>(int operand)
+        where TVector : struct, IWordVector<TVector> => TVector.Create((ulong)-(long)(operand & 1));
+}

@@ -1,0 +1,39 @@
+namespace Uncertain.Inference.Sampling;
+
+/// <summary>
+/// Some 64-bit words side by side. The kernels are written once over this; the type argument picks the instructions, never the
+/// figures.
+/// </summary>
+/// <typeparam name="TSelf">The implementing type.</typeparam>
+internal interface IWordVector<TSelf>
+    where TSelf : struct, IWordVector<TSelf>
+{
+    static abstract int Count { get; }
+
+    bool IsZero { get; }
+
+    static abstract TSelf operator &(TSelf left, TSelf right);
+
+    static abstract TSelf operator |(TSelf left, TSelf right);
+
+    static abstract TSelf operator ^(TSelf left, TSelf right);
+
+    static abstract TSelf operator +(TSelf left, TSelf right);
+
+    static abstract TSelf operator *(TSelf left, TSelf right);
+
+    static abstract TSelf operator >>>(TSelf value, int shift);
+
+    /// <summary>The bits of <paramref name="left"/> that are not in <paramref name="right"/>.</summary>
+    static abstract TSelf AndNot(TSelf left, TSelf right);
+
+    /// <summary>The same word everywhere.</summary>
+    static abstract TSelf Create(ulong word);
+
+    /// <summary>first, first + step, first + 2 step ...</summary>
+    static abstract TSelf Ramp(ulong first, ulong step);
+
+    static abstract TSelf Load(ref ulong source);
+
+    void Store(ref ulong target);
+}
