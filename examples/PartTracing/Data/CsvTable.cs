@@ -1,0 +1,69 @@
+using System.Globalization;
+using nietras.SeparatedValues;
+
+namespace PartTracing.Data;
+
+/// <summary>One CSV file (RFC 4180, one header row), read row by row with errors that a person can act on.</summary>
+internal static class CsvTable
+{
+    public delegate T RowReader<T>(Row row);
+
+    /// <summary>Reads all rows of a file.</summary>
+    /// <exception cref="FerryDataException">The file is missing or malformed, or a value is not what its column asks for.</exception>
+    public static List<T> Read<T>(string folder, string file, RowReader<T> read)
+    {
+        string path = Path.Combine(folder, file);
+        if (!File.Exists(path))
+        {
+            throw new FerryDataException(
+                $"{file} is missing in the data folder '{folder}'. Name a folder that holds all files of examples/PartTracing/data "
+                + "(only truth/ may be left out) with --data.");
+        }
+
+        try
+        {
+            using SepReader reader = Sep.New(',').Reader(options => options with { Unescape = true }).FromFile(path);
+            var rows = new List<T>();
+            foreach (SepReader.Row row in reader)
+            {
+                rows.Add(read(new Row(row, reader.Header, file)));
+            }
+
+            return rows;
+        }
+        catch (Exception e) when (e is InvalidDataException or ArgumentException or IOException or UnauthorizedAccessException)
+        {
+            throw new FerryDataException($"{file} cannot be read as comma-separated values: {e.Message}", e);
+        }
+    }
+
+    /// <summary>A row whose columns are asked for by name.</summary>
+    public readonly ref struct Row(SepReader.Row row, SepReaderHeader header, string file)
+    {
+        private readonly SepReader.Row _row = row;
+
+        public string Text(string column) => header.TryIndexOf(column, out int index)
+            ? _row[index].ToString()
+            : throw new FerryDataException(
+                $"{file} has no column '{column}'; its columns are: {string.Join(", ", header.ColNames)}. Add the column.");
+
+        public string Name(string column) =>
+            Text(column) is { Length: > 0 } text ? text : throw Malformed(column, "a text that is not empty");
+
+        public int Count(string column) =>
+            int.TryParse(Text(column), NumberStyles.None, CultureInfo.InvariantCulture, out int count)
+                ? count
+                : throw Malformed(column, "a whole number");
+
+        public double Score(string column) =>
+            double.TryParse(Text(column), NumberStyles.AllowDecimalPoint, CultureInfo.InvariantCulture, out double score) && score <= 100
+                ? score
+                : throw Malformed(column, "a score from 0 to 100");
+
+        public bool Flag(string column) =>
+            bool.TryParse(Text(column), out bool flag) ? flag : throw Malformed(column, "true or false");
+
+        private FerryDataException Malformed(string column, string expected) =>
+            new($"{file}, line {_row.LineNumberFrom}: column '{column}' holds '{Text(column)}', but {expected} is needed.");
+    }
+}

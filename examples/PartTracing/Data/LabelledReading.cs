@@ -1,0 +1,4 @@
+namespace PartTracing.Data;
+
+/// <summary>A reading that a clerk compared with the paper.</summary>
+internal sealed record LabelledReading(Reading Reading, bool IsCorrect);
