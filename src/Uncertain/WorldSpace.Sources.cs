@@ -20,7 +20,7 @@ public sealed partial class WorldSpace
         T[] copy = SourceReader.Read(records);
         name = SourceReader.NameOf<T>(name);
         SourceReader.CheckKey(copy, key, name);
-        return Create(name, SourceKind.Certain, copy, new LineageRef[copy.Length], null, key);
+        return Create(name, SourceKind.Certain, copy, LineageColumn.Certain, null, key);
     }
 
     /// <summary>A set whose records are there or not, each independently of all else.</summary>
@@ -63,7 +63,7 @@ public sealed partial class WorldSpace
         double[] chances = SourceReader.Chances(copy, chance, name);
         AlternativeGroups groups = SourceReader.Groups(copy, group, chances, name);
         SourceReader.CheckKey(copy, key, name);
-        return Create(name, SourceKind.Alternatives, copy, AddAlternatives(chances, groups, name), group, key);
+        return Create(name, SourceKind.Alternatives, copy, LineageColumn.Given(AddAlternatives(chances, groups, name)), group, key);
     }
 
     /// <summary>A set whose records have lineages of the caller's: shared events, or answers of other queries.</summary>
@@ -88,7 +88,7 @@ public sealed partial class WorldSpace
             }
         }
 
-        return Create(name, SourceKind.Formulas, copy, lineages, null, null);
+        return Create(name, SourceKind.Formulas, copy, LineageColumn.Given(lineages), null, null);
     }
 
     /// <summary>Reads an asynchronous sequence to its end and makes a set as <see cref="Certain{T}"/> does.</summary>
@@ -129,29 +129,34 @@ public sealed partial class WorldSpace
         Alternatives(await SourceReader.ReadAsync(records, cancellationToken).ConfigureAwait(false), group, chance, key, name);
 
     private UncertainSet<T> Create<T>(
-        string name, SourceKind kind, T[] records, LineageRef[] lineages, LambdaExpression? group, LambdaExpression? key) =>
+        string name, SourceKind kind, T[] records, LineageColumn lineages, LambdaExpression? group, LambdaExpression? key) =>
         new(new SourceNode<T>(this, name, kind, records, lineages, group, key));
 
-    private LineageRef[] AddIndependent(double[] chances, string name)
+    private LineageColumn AddIndependent(double[] chances, string name)
     {
-        var lineages = new LineageRef[chances.Length];
-        lock (Gate)
+        if (!chances.AsSpan().ContainsAny(0.0, 1.0))
         {
-            int first = Variables.SlotCount;
-            var records = new List<int>(chances.Length);
-            for (int i = 0; i < chances.Length; i++)
+            lock (Gate)
             {
-                lineages[i] = AddGroup([chances[i]])[0];
-                if (lineages[i].IsLiteral)
-                {
-                    records.Add(i);
-                }
+                int slots = Variables.AddEach(chances);
+                Names.AddSource(slots, name, null);
+                return LineageColumn.Consecutive(slots);
             }
-
-            Names.AddSource(first, name, records.Count == chances.Length ? null : [.. records]);
         }
 
-        return lineages;
+        int[] uncertain = [.. Enumerable.Range(0, chances.Length).Where(i => chances[i] is not (0 or 1))];
+        lock (Gate)
+        {
+            LineageRef[] lineages = Array.ConvertAll(chances, chance => chance == 1 ? LineageRef.True : LineageRef.False);
+            int first = Variables.AddEach(Array.ConvertAll(uncertain, i => chances[i]));
+            Names.AddSource(first, name, uncertain);
+            for (int i = 0; i < uncertain.Length; i++)
+            {
+                lineages[uncertain[i]] = LineageRef.Literal(first + i);
+            }
+
+            return LineageColumn.Given(lineages);
+        }
     }
 
     private LineageRef[] AddAlternatives(double[] chances, AlternativeGroups groups, string name)

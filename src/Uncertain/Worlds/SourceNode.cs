@@ -10,7 +10,7 @@ namespace Uncertain.Worlds;
 
 /// <summary>A source: the records that may be there, each with its lineage in the world space's arena.</summary>
 internal sealed class SourceNode<T>(
-    WorldSpace worlds, string name, SourceKind kind, T[] records, LineageRef[] lineages, LambdaExpression? group, LambdaExpression? key)
+    WorldSpace worlds, string name, SourceKind kind, T[] records, LineageColumn lineages, LambdaExpression? group, LambdaExpression? key)
     : PlanNode<T>(worlds), ISource
 {
     public string Name { get; } = name;
@@ -23,7 +23,7 @@ internal sealed class SourceNode<T>(
 
     public T[] Records { get; } = records;
 
-    public LineageRef[] Lineages { get; } = lineages;
+    public LineageColumn Lineages { get; } = lineages;
 
     public override string Describe()
     {

@@ -10,11 +10,14 @@ namespace Uncertain.Worlds;
 /// </summary>
 /// <remarks>
 /// <code>
-/// slot:      double chance, int variable       12 bytes
-/// variable:  int first slot                     4 bytes     (its slots end where the next variable's begin)
+/// slot:      double chance                                8 bytes
+/// from the first variable with several outcomes on, also
+/// slot:      int variable                                 4 bytes
+/// variable:  int first slot                               4 bytes     (its slots end where the next variable's begin)
 /// </code>
-/// A two-outcome variable has one slot and so takes 8 bytes beside its chance. Add-only; one writer at a time
-/// (under the world space's lock), any number of readers of what was there when they got their reference.
+/// Before that, slots and variables are the same numbers. A two-outcome variable has one slot and so takes at most 8 bytes beside its
+/// chance. Add-only; one writer at a time (under the world space's lock), any number of readers of what was there when they got their
+/// reference.
 /// </remarks>
 internal sealed class VariableTable
 {
@@ -25,8 +28,11 @@ internal sealed class VariableTable
     public const double SumTolerance = 1e-12;
 
     private double[] _chance = new double[16];
-    private int[] _variableOfSlot = new int[16];
-    private int[] _firstSlot = new int[17];
+
+    // The leading slots, each of which is a variable of its own; the other two arrays begin after them.
+    private int _plain;
+    private int[] _variableOfSlot = [];
+    private int[] _firstSlot = [0];
 
     public int VariableCount { get; private set; }
 
@@ -37,21 +43,22 @@ internal sealed class VariableTable
 
     public double Chance(int slot) => _chance[slot];
 
-    public int VariableOf(int slot) => _variableOfSlot[slot];
+    public int VariableOf(int slot) => slot < _plain ? slot : _variableOfSlot[slot - _plain];
 
-    public int FirstSlot(int variable) => _firstSlot[variable];
+    public int FirstSlot(int variable) => variable < _plain ? variable : _firstSlot[variable - _plain];
 
     /// <summary>Number of slots of a variable: 1 for a two-outcome variable.</summary>
-    public int OutcomeCount(int variable) => _firstSlot[variable + 1] - _firstSlot[variable];
+    public int OutcomeCount(int variable) =>
+        variable < _plain ? 1 : _firstSlot[variable - _plain + 1] - _firstSlot[variable - _plain];
 
-    public bool IsAlternative(int slot) => OutcomeCount(_variableOfSlot[slot]) > 1;
+    public bool IsAlternative(int slot) => slot >= _plain && OutcomeCount(VariableOf(slot)) > 1;
 
     /// <summary>The chance that no outcome with a slot happens; exactly 0 if the chances make up 1.</summary>
     public double NoneChance(int variable) => NoneChanceExtended(variable).ToDouble();
 
     /// <summary>As <see cref="NoneChance"/>, with the digits that a sum of many chances needs.</summary>
     public ExtendedDouble NoneChanceExtended(int variable) =>
-        Remainder(_chance.AsSpan(_firstSlot[variable], OutcomeCount(variable)));
+        Remainder(_chance.AsSpan(FirstSlot(variable), OutcomeCount(variable)));
 
     /// <summary>1 minus the sum of the chances, 0 where several make up 1 within <see cref="SumTolerance"/>.</summary>
     public static ExtendedDouble Remainder(ReadOnlySpan<double> chances)
@@ -73,36 +80,78 @@ internal sealed class VariableTable
     /// <summary>Adds one variable and returns its first slot. The caller has checked the chances.</summary>
     public int Add(ReadOnlySpan<double> chances)
     {
-        int first = SlotCount;
-        if ((long)first + chances.Length > LineageRef.IndexLimit)
+        int first = Append(chances);
+        if (HasAlternatives || chances.Length > 1)
         {
-            throw new InvalidInputException(string.Create(
-                CultureInfo.InvariantCulture,
-                $"A world space holds at most {LineageRef.IndexLimit:N0} uncertain outcomes; this record would exceed it. "
-                + $"Give records that are certain the chance 1, or split the data over several world spaces."));
+            HasAlternatives = true;
+            AddVariable(chances.Length);
+        }
+        else
+        {
+            _plain++;
         }
 
-        EnsureSlots(first + chances.Length);
-        chances.CopyTo(_chance.AsSpan(first));
-        _variableOfSlot.AsSpan(first, chances.Length).Fill(VariableCount);
-        if (VariableCount + 2 > _firstSlot.Length)
-        {
-            Array.Resize(ref _firstSlot, _firstSlot.Length * 3 / 2);
-        }
-
-        SlotCount += chances.Length;
-        _firstSlot[++VariableCount] = SlotCount;
-        HasAlternatives |= chances.Length > 1;
+        VariableCount++;
         return first;
     }
 
-    private void EnsureSlots(int needed)
+    /// <summary>Adds a two-outcome variable for each chance and returns the first one's slot; the others follow.</summary>
+    public int AddEach(ReadOnlySpan<double> chances)
     {
-        if (needed > _chance.Length)
+        int first = Append(chances);
+        if (HasAlternatives)
         {
-            int size = (int)Math.Min(Math.Max((long)needed, (long)_chance.Length * 3 / 2), LineageRef.IndexLimit);
-            Array.Resize(ref _chance, size);
-            Array.Resize(ref _variableOfSlot, size);
+            SlotCount = first;
+            foreach (double _ in chances)
+            {
+                SlotCount++;
+                AddVariable(1);
+                VariableCount++;
+            }
+        }
+        else
+        {
+            _plain += chances.Length;
+            VariableCount += chances.Length;
+        }
+
+        return first;
+    }
+
+    private int Append(ReadOnlySpan<double> chances)
+    {
+        int first = SlotCount;
+        long needed = (long)first + chances.Length;
+        if (needed > LineageRef.IndexLimit)
+        {
+            throw new InvalidInputException(string.Create(
+                CultureInfo.InvariantCulture,
+                $"A world space holds at most {LineageRef.IndexLimit:N0} uncertain outcomes; these records would exceed it. "
+                + $"Give records that are certain the chance 1, or split the data over several world spaces."));
+        }
+
+        Reserve(ref _chance, needed);
+        chances.CopyTo(_chance.AsSpan(first));
+        SlotCount = (int)needed;
+        return first;
+    }
+
+    // The variable of the slots that were added last.
+    private void AddVariable(int outcomes)
+    {
+        int variable = VariableCount - _plain;
+        Reserve(ref _variableOfSlot, SlotCount - _plain);
+        Reserve(ref _firstSlot, variable + 2);
+        _variableOfSlot.AsSpan(SlotCount - _plain - outcomes, outcomes).Fill(VariableCount);
+        _firstSlot[variable] = SlotCount - outcomes;
+        _firstSlot[variable + 1] = SlotCount;
+    }
+
+    private static void Reserve<T>(ref T[] array, long needed)
+    {
+        if (needed > array.Length)
+        {
+            Array.Resize(ref array, (int)Math.Min(Math.Max(needed, (long)array.Length * 3 / 2), LineageRef.IndexLimit));
         }
     }
 }

@@ -1,0 +1,31 @@
+using Uncertain.Lineages;
+
+namespace Uncertain.Worlds;
+
+/// <summary>
+/// The lineages of a source's records: all true, or the literals of consecutive slots, or given one by one at 4 bytes a record.
+/// </summary>
+internal readonly struct LineageColumn
+{
+    private readonly LineageRef[]? _given;
+    private readonly int _firstSlot;
+
+    private LineageColumn(LineageRef[]? given, int firstSlot)
+    {
+        _given = given;
+        _firstSlot = firstSlot;
+    }
+
+    /// <summary>Every record is there in every world.</summary>
+    public static LineageColumn Certain => new(null, -1);
+
+    /// <summary>The slot of record 0, where record i has slot FirstSlot + i; else -1.</summary>
+    public int FirstSlot => _given is null ? _firstSlot : -1;
+
+    public LineageRef this[int record] =>
+        _given is not null ? _given[record] : _firstSlot < 0 ? LineageRef.True : LineageRef.Literal(_firstSlot + record);
+
+    public static LineageColumn Given(LineageRef[] lineages) => new(lineages, -1);
+
+    public static LineageColumn Consecutive(int firstSlot) => new(null, firstSlot);
+}
