@@ -1,4 +1,4 @@
-using PartTracing.Data;
+using PartTracing.Input;
 using PartTracing.Queries;
 using Uncertain;
 

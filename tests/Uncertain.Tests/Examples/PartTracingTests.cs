@@ -1,6 +1,6 @@
 using System.Globalization;
 using PartTracing.Chances;
-using PartTracing.Data;
+using PartTracing.Input;
 using PartTracing.Queries;
 
 namespace Uncertain.Tests.Examples;

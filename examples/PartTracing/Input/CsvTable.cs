@@ -1,7 +1,7 @@
 using System.Globalization;
 using nietras.SeparatedValues;
 
-namespace PartTracing.Data;
+namespace PartTracing.Input;
 
 /// <summary>One CSV file (RFC 4180, one header row), read row by row with errors that a person can act on.</summary>
 internal static class CsvTable

@@ -1,4 +1,4 @@
-namespace PartTracing.Data;
+namespace PartTracing.Input;
 
 /// <summary>What is really on the paper. For the closing check and for tests only, never for a chance.</summary>
 internal static class Truth

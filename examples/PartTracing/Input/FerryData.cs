@@ -1,4 +1,4 @@
-namespace PartTracing.Data;
+namespace PartTracing.Input;
 
 /// <summary>What Norrvik Ferries has on file: the slips as read, the clerk's sample, and the exact lists.</summary>
 internal sealed class FerryData
