@@ -3,23 +3,28 @@ namespace PartTracing.Input;
 /// <summary>What Norrvik Ferries has on file: the slips as read, the clerk's sample, and the exact lists.</summary>
 internal sealed class FerryData
 {
+    private static readonly string[] s_readingColumns = ["document_id", "field", "alternative_no", "text", "raw_score"];
+
     private FerryData(string folder)
     {
         Folder = folder;
-        Vessels = CsvTable.Read(folder, "vessels.csv", row => new Vessel(row.Name("vessel"), row.Name("class"), row.Flag("in_service")));
-        var parts = CsvTable.Read(folder, "parts.csv", row => (Number: row.Name("part_no"), Description: row.Name("description")))
+        Vessels = CsvTable.Read(
+            folder, "vessels.csv", ["vessel", "class", "in_service"], row => new Vessel(row.Name(0), row.Name(1), row.Flag(2)));
+        ILookup<string, string> parts = CsvTable
+            .Read(folder, "parts.csv", ["part_no", "description"], row => (Number: row.Name(0), Description: row.Name(1)))
             .ToLookup(part => part.Number, part => part.Description);
-        Lots = CsvTable.Read(folder, "lots.csv", row =>
-            new Lot(row.Name("lot_code"), parts[row.Name("part_no")].FirstOrDefault(row.Name("part_no"))));
-        Depots = CsvTable.Read(folder, "depots.csv", row => row.Name("depot"));
+        Lots = CsvTable.Read(
+            folder, "lots.csv", ["lot_code", "part_no"], row => new Lot(row.Name(0), parts[row.Name(1)].FirstOrDefault(row.Name(1))));
+        Depots = NamesIn("depots.csv", "depot");
         Lists = new ClosedLists(Lots, Vessels, Depots);
 
-        Bulletin1 = CsvTable.Read(folder, "bulletin.csv", row => row.Name("lot_code")).ToHashSet();
-        Bulletin2 = CsvTable.Read(folder, "bulletin_2.csv", row => row.Name("lot_code")).ToHashSet();
-        Notes = CsvTable.Read(folder, "deliveries_read.csv", row => row.Name("note_id")).ToHashSet();
-        Cards = CsvTable.Read(folder, "fittings_read.csv", row => row.Name("card_id")).ToHashSet();
-        Readings = [.. CsvTable.Read(folder, "readings.csv", ReadingOf).Where(Lists.Covers)];
-        Sample = [.. CsvTable.Read(folder, "labelled_sample.csv", row => new LabelledReading(ReadingOf(row), row.Flag("is_correct")))
+        Bulletin1 = NamesIn("bulletin.csv", "lot_code");
+        Bulletin2 = NamesIn("bulletin_2.csv", "lot_code");
+        Notes = NamesIn("deliveries_read.csv", "note_id");
+        Cards = NamesIn("fittings_read.csv", "card_id");
+        Readings = [.. CsvTable.Read(folder, "readings.csv", s_readingColumns, ReadingOf).Where(Lists.Covers)];
+        Sample = [.. CsvTable
+            .Read(folder, "labelled_sample.csv", [.. s_readingColumns, "is_correct"], row => new LabelledReading(ReadingOf(row), row.Flag(5)))
             .Where(labelled => Lists.Covers(labelled.Reading))];
         if (!Sample.Any(labelled => Lists.Lists(labelled.Reading)))
         {
@@ -34,7 +39,7 @@ internal sealed class FerryData
 
     public IReadOnlyList<Lot> Lots { get; }
 
-    public IReadOnlyList<string> Depots { get; }
+    public IReadOnlySet<string> Depots { get; }
 
     public ClosedLists Lists { get; }
 
@@ -55,6 +60,8 @@ internal sealed class FerryData
     /// <exception cref="FerryDataException">A file is missing or malformed.</exception>
     public static FerryData Load(string folder) => new(folder);
 
-    private static Reading ReadingOf(CsvTable.Row row) => new(
-        row.Name("document_id"), row.Name("field"), row.Count("alternative_no"), row.Name("text"), row.Score("raw_score"));
+    private static Reading ReadingOf(CsvTable.Row row) => new(row.Name(0), row.Name(1), row.Count(2), row.Name(3), row.Score(4));
+
+    private HashSet<string> NamesIn(string file, string column) =>
+        [.. CsvTable.Read(Folder, file, [column], row => row.Name(0))];
 }

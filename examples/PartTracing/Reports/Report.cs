@@ -20,6 +20,11 @@ internal sealed class Report(Page page, double cut)
             + $"{data.Readings.Count:N0} alternative readings of lots, vessels and depots. Exact are the lists of {data.Vessels.Count:N0} "
             + $"vessels, {data.Lots.Count:N0} lots and {data.Depots.Count:N0} depots. Suspect are {data.Bulletin1.Count} lots by the "
             + $"first bulletin and {data.Bulletin2.Count} by the second.");
+        string[] unknown = [.. data.Bulletin1.Union(data.Bulletin2).Except(data.Lots.Select(lot => lot.Code))];
+        if (unknown.Length > 0)
+        {
+            page.Text($"Beware: {string.Join(", ", unknown)} of the bulletins are not in lots.csv, so no reading can be one of them.");
+        }
     }
 
     public void Chances(FerryData data, Calibration calibration)

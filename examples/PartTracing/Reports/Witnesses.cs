@@ -26,6 +26,11 @@ internal sealed class Witnesses
     public string StrongestOf(Finding finding)
     {
         Lineage answer = finding.Lineage();
+        if (answer.Kind is LineageKind.True or LineageKind.False)
+        {
+            return answer.Kind == LineageKind.True ? "certain" : "none";
+        }
+
         (Lineage strongest, double chance) = Derivations(answer)
             .Select(derivation => (derivation, Chance: (derivation & answer).Evaluate().Value))
             .MaxBy(pair => pair.Chance);
