@@ -1,6 +1,5 @@
 using PartTracing.Input;
 using PartTracing.Queries;
-using Uncertain;
 
 namespace PartTracing.Reports;
 
@@ -18,13 +17,9 @@ internal sealed class TruthCheck
     {
         _page = page;
         _fleet = [.. data.Vessels.Where(vessel => vessel.InService).Select(vessel => vessel.Name)];
-        _truth = CertainAnswers(Archive.OfTruth(data, truth), data);
-        _cuts = [.. new[] { 0, cut, 80, 90 }.Distinct().Order().Select(score => (score, CertainAnswers(Archive.CutAt(data, score), data)))];
+        _truth = Questions.CertainAnswers(Archive.OfTruth(data, truth), data);
+        _cuts = [.. new[] { 0, cut, 80, 90 }.Distinct().Order().Select(score => (score, Questions.CertainAnswers(Archive.CutAt(data, score), data)))];
     }
-
-    /// <summary>Asks all questions of an archive whose records are certain.</summary>
-    public static IReadOnlyList<IReadOnlySet<string>> CertainAnswers(Archive archive, FerryData data) =>
-        [.. Questions.Over(archive, data).Select(question => question.Ask(EvaluationOptions.Default).Certain)];
 
     public void Print(IReadOnlyList<Question> questions, IReadOnlyList<Reply> replies)
     {

@@ -211,7 +211,7 @@ public class PartTracingTests
     {
         FerryData data = FerryData.Load(ExampleRun.DataFolder);
         IReadOnlyList<Reading> truth = Truth.Load(ExampleRun.DataFolder)!;
-        IEnumerable<string> found = Questions.Over(Archive.OfTruth(data, truth), data)[question].Ask(EvaluationOptions.Default).Certain;
+        IEnumerable<string> found = Questions.CertainAnswers(Archive.OfTruth(data, truth), data)[question];
 
         IEnumerable<string> expected = File.ReadLines(Path.Combine(ExampleRun.DataFolder, "truth", file)).Skip(1).Select(line => line.Split(',')[0]);
         Assert.Equal(expected.Order(StringComparer.Ordinal), found.Order(StringComparer.Ordinal));
@@ -221,8 +221,8 @@ public class PartTracingTests
     public void Bulletin1_AgainstTheTruth_IsCloserThanAnyCut()
     {
         FerryData data = FerryData.Load(ExampleRun.DataFolder);
-        HashSet<string> affected = [.. Questions.Over(Archive.OfTruth(data, Truth.Load(ExampleRun.DataFolder)!), data)[0]
-            .Ask(EvaluationOptions.Default).Certain];
+        IReadOnlySet<string> affected = Questions.CertainAnswers(
+            Archive.OfTruth(data, Truth.Load(ExampleRun.DataFolder)!), data)[0];
         double Brier(Archive archive)
         {
             Dictionary<string, double> said = Questions.Over(archive, data)[0].Ask(EvaluationOptions.Default).Findings
