@@ -62,7 +62,8 @@ internal sealed class Calibration
         .SelectMany(field => field.Zip(Chances(Features(field), _weights), (reading, chance) => new CalibratedReading(reading, chance)));
 
     public override string ToString() =>
-        $"log-odds against none = {_weights[0]:0.00} {_weights[1]:+ 0.00;- 0.00} score/100 {_weights[2]:+ 0.00;- 0.00} if not the best reading";
+        $"log-odds against none = {_weights[0]:0.00} {_weights[1]:+ 0.00;- 0.00} score/100 "
+        + $"{_weights[2]:+ 0.00;- 0.00} if not the best reading";
 
     private static double[][] Features(IEnumerable<Reading> alternatives) =>
         [.. alternatives.Select(reading => (double[])[1, reading.RawScore / 100, reading.AlternativeNo > 1 ? 1 : 0])];

@@ -24,7 +24,9 @@ internal sealed class FerryData
         Cards = NamesIn("fittings_read.csv", "card_id");
         Readings = [.. CsvTable.Read(folder, "readings.csv", s_readingColumns, ReadingOf).Where(Lists.Covers)];
         Sample = [.. CsvTable
-            .Read(folder, "labelled_sample.csv", [.. s_readingColumns, "is_correct"], row => new LabelledReading(ReadingOf(row), row.Flag(5)))
+            .Read(
+                folder, "labelled_sample.csv", [.. s_readingColumns, "is_correct"],
+                row => new LabelledReading(ReadingOf(row), row.Flag(5)))
             .Where(labelled => Lists.Covers(labelled.Reading))];
         if (!Sample.Any(labelled => Lists.Lists(labelled.Reading)))
         {

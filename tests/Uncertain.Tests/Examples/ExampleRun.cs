@@ -36,7 +36,8 @@ internal sealed class ExampleRun
     public string Answers { get; }
 
     /// <summary>The cells of its rows without the header. No value of the example's data needs quotes.</summary>
-    public IEnumerable<string[]> Rows => Answers.Split("\r\n", StringSplitOptions.RemoveEmptyEntries).Skip(1).Select(line => line.Split(','));
+    public IEnumerable<string[]> Rows =>
+        Answers.Split("\r\n", StringSplitOptions.RemoveEmptyEntries).Skip(1).Select(line => line.Split(','));
 
     public Dictionary<(string Query, string Value), double> Probabilities =>
         Rows.ToDictionary(row => (row[0], row[1]), row => double.Parse(row[2], CultureInfo.InvariantCulture));

@@ -186,7 +186,9 @@ public class PartTracingTests
         var none = new Dictionary<(string Query, string Value), double>();
         foreach (IGrouping<string, CalibratedReading> card in cards)
         {
-            double suspect = card.Where(c => c.Reading.Field == ClosedLists.LotCode && data.Bulletin1.Contains(c.Reading.Text)).Sum(c => c.Chance);
+            double suspect = card
+                .Where(c => c.Reading.Field == ClosedLists.LotCode && data.Bulletin1.Contains(c.Reading.Text))
+                .Sum(c => c.Chance);
             foreach (CalibratedReading c in card.Where(c => c.Reading.Field == ClosedLists.Vessel && inService.Contains(c.Reading.Text)))
             {
                 if (suspect > 0)
@@ -213,7 +215,8 @@ public class PartTracingTests
         IReadOnlyList<Reading> truth = Truth.Load(ExampleRun.DataFolder)!;
         IEnumerable<string> found = Questions.CertainAnswers(Archive.OfTruth(data, truth), data)[question];
 
-        IEnumerable<string> expected = File.ReadLines(Path.Combine(ExampleRun.DataFolder, "truth", file)).Skip(1).Select(line => line.Split(',')[0]);
+        IEnumerable<string> expected = File.ReadLines(Path.Combine(ExampleRun.DataFolder, "truth", file))
+            .Skip(1).Select(line => line.Split(',')[0]);
         Assert.Equal(expected.Order(StringComparer.Ordinal), found.Order(StringComparer.Ordinal));
     }
 
