@@ -1,5 +1,5 @@
 using PartTracing.Chances;
-using PartTracing.Data;
+using PartTracing.Input;
 using PartTracing.Queries;
 using PartTracing.Reports;
 using Uncertain;
@@ -56,10 +56,10 @@ internal static class Program
         // The same questions, once over uncertain sets and once over the readings that reach the cut.
         var archive = Archive.WithChances(data, calibration);
         var questions = Questions.Over(archive, data);
-        var cutAnswers = Questions.Over(Archive.CutAt(data, options.Cut), data).Select(q => q.Ask(EvaluationOptions.Default).Certain).ToList();
+        var cutAnswers = Questions.CertainAnswers(Archive.CutAt(data, options.Cut), data);
 
-        var witnesses = new Witnesses(archive);
         var replies = questions.Select(question => question.Ask(options.Evaluation)).ToList();
+        var witnesses = new Witnesses(archive);
         for (int i = 0; i < questions.Count; i++)
         {
             report.Answers(i + 1, questions[i], replies[i], cutAnswers[i], witnesses);

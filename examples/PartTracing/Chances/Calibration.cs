@@ -1,4 +1,4 @@
-using PartTracing.Data;
+using PartTracing.Input;
 
 namespace PartTracing.Chances;
 
@@ -13,8 +13,8 @@ namespace PartTracing.Chances;
 /// </remarks>
 internal sealed class Calibration
 {
-    // Pulls the weights towards 0: with it even a sample without any error gives no chance of 1. Of 0.03, 0.1, 0.3 and 1 the
-    // one with nearly the lowest cross-validated log loss on the sample.
+    // Pulls the weights towards 0, so that even a sample without any error gives no chance of 1. Of 0.03, 0.1, 0.3 and 1 it
+    // has the lowest cross-validated log loss on the sample.
     private const double Ridge = 0.1;
     private const int Steps = 2000;
 
@@ -62,7 +62,8 @@ internal sealed class Calibration
         .SelectMany(field => field.Zip(Chances(Features(field), _weights), (reading, chance) => new CalibratedReading(reading, chance)));
 
     public override string ToString() =>
-        $"log-odds against none = {_weights[0]:0.00} {_weights[1]:+ 0.00;- 0.00} score/100 {_weights[2]:+ 0.00;- 0.00} if not the best reading";
+        $"log-odds against none = {_weights[0]:0.00} {_weights[1]:+ 0.00;- 0.00} score/100 "
+        + $"{_weights[2]:+ 0.00;- 0.00} if not the best reading";
 
     private static double[][] Features(IEnumerable<Reading> alternatives) =>
         [.. alternatives.Select(reading => (double[])[1, reading.RawScore / 100, reading.AlternativeNo > 1 ? 1 : 0])];

@@ -1,4 +1,4 @@
-using PartTracing.Data;
+using PartTracing.Input;
 
 namespace PartTracing.Chances;
 

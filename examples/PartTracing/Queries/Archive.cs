@@ -1,5 +1,5 @@
 using PartTracing.Chances;
-using PartTracing.Data;
+using PartTracing.Input;
 using Uncertain;
 
 namespace PartTracing.Queries;

@@ -39,7 +39,11 @@ internal sealed class Question
         {
             Finding[] findings = [.. _ask(options)];
             TimeSpan time = clock.Elapsed;
-            return new Reply([.. findings.OrderBy(f => f.Probability.Complement).ThenBy(f => f.Value, StringComparer.Ordinal)], null, time);
+            IEnumerable<Finding> mostProbableFirst = findings
+                .OrderBy(f => f.Probability.Complement)
+                .ThenByDescending(f => f.Probability.Value)
+                .ThenBy(f => f.Value, StringComparer.Ordinal);
+            return new Reply([.. mostProbableFirst], null, time);
         }
         catch (EvaluationRefusedException e)
         {

@@ -1,4 +1,4 @@
-using PartTracing.Data;
+using PartTracing.Input;
 using Uncertain;
 
 namespace PartTracing.Queries;
@@ -12,19 +12,27 @@ internal static class Questions
         UncertainSet<string> second = WithPartFrom(archive, data.Bulletin2);
         return
         [
-            Question.Which("bulletin-1", "Which vessels in service carry a lot of the first bulletin?", first),
-            Question.Which("bulletin-2", "Which vessels in service carry a lot of the second bulletin?", second),
-            Question.Which("only-bulletin-1", "Which carry one of the first bulletin and none of the second?", first.Except(second)),
+            Question.Which("bulletin-1", "Which vessels in service carry a part from a lot of the first bulletin?", first),
+            Question.Which("bulletin-2", "Which vessels in service carry a part from a lot of the second bulletin?", second),
+            Question.Which(
+                "only-bulletin-1",
+                "Which vessels in service carry a part from a lot of the first bulletin and none from a lot of the second?",
+                first.Except(second)),
             Question.Which(
                 "delivery-on-file",
-                "Which carry one of the first whose delivery to that depot is on file?",
+                "Which vessels in service carry a part from a lot of the first bulletin, with a delivery note on file of the same lot to "
+                + "the same depot?",
                 WithDeliveryOnFile(archive, data.Bulletin1)),
             Question.IsIt(
                 "barge-liner",
-                "Does any barge in service carry a cylinder liner of the first bulletin?",
+                "Does any barge in service carry a cylinder liner from a lot of the first bulletin?",
                 AnyWithPart(archive, data.Bulletin1, "Barge", "Cylinder liner")),
         ];
     }
+
+    /// <summary>The answers to all questions over an archive whose records are all certain.</summary>
+    public static IReadOnlyList<IReadOnlySet<string>> CertainAnswers(Archive archive, FerryData data) =>
+        [.. Over(archive, data).Select(question => question.Ask(EvaluationOptions.Default).Certain)];
 
     // A card names a suspect lot and a vessel in service. Cards are independent of each other, so a safe plan exists.
     private static UncertainSet<string> WithPartFrom(Archive archive, IReadOnlySet<string> bulletin) =>

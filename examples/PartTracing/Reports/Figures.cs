@@ -14,12 +14,11 @@ internal static class Figures
         _ => $"{probability:0.000}",
     };
 
-    /// <summary>The figure, with its bounds if it is not exact.</summary>
-    public static string Of(Probability probability)
+    /// <summary>The figure if it is exact; otherwise with its bounds.</summary>
+    public static string Of(Probability probability) => probability.Guarantee.Kind switch
     {
-        string value = probability.Complement is > 0 and < 0.0005 ? ">0.999" : Of(probability.Value);
-        return probability.Guarantee.Kind == GuaranteeKind.Exact
-            ? value
-            : $"{value} ({probability.Lower:0.000}-{probability.Upper:0.000})";
-    }
+        GuaranteeKind.Exact when probability.Complement is > 0 and < 0.0005 => ">0.999",
+        GuaranteeKind.Exact => Of(probability.Value),
+        _ => $"{probability.Value:0.000} ({probability.Lower:0.000}-{probability.Upper:0.000})",
+    };
 }

@@ -1,5 +1,5 @@
 using PartTracing.Chances;
-using PartTracing.Data;
+using PartTracing.Input;
 using PartTracing.Queries;
 
 namespace PartTracing.Reports;
@@ -20,6 +20,11 @@ internal sealed class Report(Page page, double cut)
             + $"{data.Readings.Count:N0} alternative readings of lots, vessels and depots. Exact are the lists of {data.Vessels.Count:N0} "
             + $"vessels, {data.Lots.Count:N0} lots and {data.Depots.Count:N0} depots. Suspect are {data.Bulletin1.Count} lots by the "
             + $"first bulletin and {data.Bulletin2.Count} by the second.");
+        string[] unknown = [.. data.Bulletin1.Union(data.Bulletin2).Except(data.Lots.Select(lot => lot.Code))];
+        if (unknown.Length > 0)
+        {
+            page.Text($"Beware: {string.Join(", ", unknown)} of the bulletins are not in lots.csv, so no reading can be one of them.");
+        }
     }
 
     public void Chances(FerryData data, Calibration calibration)
@@ -51,15 +56,42 @@ internal sealed class Report(Page page, double cut)
 
     public void Answers(int number, Question question, Reply reply, IReadOnlySet<string> cutAnswers, Witnesses witnesses)
     {
-        page.Heading($"3.{number} {question.Name}: {question.Words}");
-        string plan = question.Plan.Explain();
-        page.Lines(_plans.TryAdd(plan, question.Name) ? plan : $"plan and evaluators: as for {_plans[plan]}", indent: 2);
-        if (reply.Refusal is not null)
+        page.Heading($"3.{number} {question.Name}");
+        page.Text(question.Words);
+        if (reply.Refusal is null)
         {
+            Table(question, reply, cutAnswers, witnesses);
+        }
+        else
+        {
+            page.Blank();
             page.Text($"Not answered, and not in answers.csv: {reply.Refusal}");
-            return;
+            page.Blank();
         }
 
+        string plan = question.Plan.Explain();
+        if (_plans.TryAdd(plan, question.Name))
+        {
+            page.Text("The plan, and which evaluators can take it:");
+            page.Lines(plan, indent: 2);
+        }
+        else
+        {
+            page.Text($"The plan is that of {_plans[plan]}.");
+        }
+    }
+
+    public void Caution(string answerFile)
+    {
+        page.Heading("5. Caution");
+        page.Text("A decision about safety follows the operator's own rules and licensed practice. These probabilities rest on the "
+            + "calibration and on what could be read. Nothing here clears a vessel, least of all one that has no answer.");
+        page.Blank();
+        page.Text($"All answers: {answerFile}");
+    }
+
+    private void Table(Question question, Reply reply, IReadOnlySet<string> cutAnswers, Witnesses witnesses)
+    {
         bool Disputed(Finding f) => f.Probability.Value >= 0.5 != cutAnswers.Contains(f.Value);
         Finding[] top = [.. reply.Findings.Take(TopRows)];
         Finding[] disputed = [.. reply.Findings.Skip(TopRows).Where(Disputed)];
@@ -80,16 +112,8 @@ internal sealed class Report(Page page, double cut)
                 + $"{Others(disputed.Length)}; answers.csv has them all.");
             page.Text($"Believing best readings of raw score {cut:0.##} and above would report {cutAnswers.Count} vessels. Against a "
                 + $"probability of 0.5 it misses {Names(missed)} and adds {Names(added)}.");
+            page.Blank();
         }
-    }
-
-    public void Caution(string answerFile)
-    {
-        page.Heading("5. Caution");
-        page.Text("A decision about safety follows the operator's own rules and licensed practice. These probabilities rest on the "
-            + "calibration and on what could be read. Nothing here clears a vessel, least of all one that has no answer.");
-        page.Blank();
-        page.Text($"All answers: {answerFile}");
     }
 
     private static string Others(int disputed) => disputed switch

@@ -43,7 +43,10 @@ internal static class SideBySide
         Dictionary<string, double> expected = first.ToDictionary(f => f.Value, f => f.Probability.Value);
         string? closest = first.MinBy(f => Math.Abs(f.Probability.Value - 0.5))?.Value;
         Finding? call = findings.FirstOrDefault(f => f.Value == closest);
-        double difference = findings.Select(f => Math.Abs(f.Probability.Value - expected.GetValueOrDefault(f.Value))).DefaultIfEmpty().Max();
+        double difference = findings
+            .Select(f => Math.Abs(f.Probability.Value - expected.GetValueOrDefault(f.Value)))
+            .DefaultIfEmpty()
+            .Max();
         Guarantee? weakest = findings.MaxBy(f => f.Probability.Guarantee.Delta)?.Probability.Guarantee;
         return
         [

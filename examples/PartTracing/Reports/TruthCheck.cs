@@ -1,6 +1,5 @@
-using PartTracing.Data;
+using PartTracing.Input;
 using PartTracing.Queries;
-using Uncertain;
 
 namespace PartTracing.Reports;
 
@@ -18,13 +17,10 @@ internal sealed class TruthCheck
     {
         _page = page;
         _fleet = [.. data.Vessels.Where(vessel => vessel.InService).Select(vessel => vessel.Name)];
-        _truth = CertainAnswers(Archive.OfTruth(data, truth), data);
-        _cuts = [.. new[] { 0, cut, 80, 90 }.Distinct().Order().Select(score => (score, CertainAnswers(Archive.CutAt(data, score), data)))];
+        _truth = Questions.CertainAnswers(Archive.OfTruth(data, truth), data);
+        _cuts = [.. new[] { 0, cut, 80, 90 }.Distinct().Order()
+            .Select(score => (score, Questions.CertainAnswers(Archive.CutAt(data, score), data)))];
     }
-
-    /// <summary>Asks all questions of an archive whose records are certain.</summary>
-    public static IReadOnlyList<IReadOnlySet<string>> CertainAnswers(Archive archive, FerryData data) =>
-        [.. Questions.Over(archive, data).Select(question => question.Ask(EvaluationOptions.Default).Certain)];
 
     public void Print(IReadOnlyList<Question> questions, IReadOnlyList<Reply> replies)
     {
@@ -44,7 +40,8 @@ internal sealed class TruthCheck
         {
             if (questions[i].IsYesNo && replies[i].Findings is [var yes])
             {
-                _page.Text($"{questions[i].Name}: yes was given {Figures.Of(yes.Probability)}; the truth is {(_truth[i].Count > 0 ? "yes" : "no")}.");
+                string truth = _truth[i].Count > 0 ? "yes" : "no";
+                _page.Text($"{questions[i].Name}: yes was given {Figures.Of(yes.Probability)}; the truth is {truth}.");
             }
         }
     }
@@ -83,8 +80,11 @@ internal sealed class TruthCheck
                 int truly = bin.Count(v => v.IsTrue);
                 return (string[])
                 [
-                    high == 0 ? "0: no answer" : $"{low:0.00} to {high:0.00}", $"{bin.Count}",
-                    bin.Count == 0 ? "" : $"{bin.Average(v => v.P):0.000}", $"{truly}", bin.Count == 0 ? "" : $"{(double)truly / bin.Count:0.000}",
+                    high == 0 ? "0: no answer" : $"{low:0.00} to {high:0.00}",
+                    $"{bin.Count}",
+                    bin.Count == 0 ? "" : $"{bin.Average(v => v.P):0.000}",
+                    $"{truly}",
+                    bin.Count == 0 ? "" : $"{(double)truly / bin.Count:0.000}",
                 ];
             }));
     }

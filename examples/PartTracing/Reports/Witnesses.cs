@@ -26,7 +26,13 @@ internal sealed class Witnesses
     public string StrongestOf(Finding finding)
     {
         Lineage answer = finding.Lineage();
-        (Lineage strongest, double chance) = Derivations(answer)
+        Lineage[] derivations = Derivations(answer);
+        if (derivations.Length == 0)
+        {
+            return answer.Kind == LineageKind.True ? "certain" : "none";
+        }
+
+        (Lineage strongest, double chance) = derivations
             .Select(derivation => (derivation, Chance: (derivation & answer).Evaluate().Value))
             .MaxBy(pair => pair.Chance);
         var readings = LiteralsOf(strongest).Select(literal => _readings[literal]).Order().ToList();

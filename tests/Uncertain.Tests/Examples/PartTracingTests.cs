@@ -1,6 +1,6 @@
 using System.Globalization;
 using PartTracing.Chances;
-using PartTracing.Data;
+using PartTracing.Input;
 using PartTracing.Queries;
 
 namespace Uncertain.Tests.Examples;
@@ -10,7 +10,7 @@ public class PartTracingTests
     [Fact]
     public void Run_OwnData_WritesAnswersAndTellsTheStory()
     {
-        using var run = new ExampleRun();
+        ExampleRun run = ExampleRun.Default;
 
         Assert.Equal("", run.Error);
         Assert.Equal(0, run.ExitCode);
@@ -35,8 +35,8 @@ public class PartTracingTests
     [Fact]
     public void Run_ChooserAndCompilation_GiveTheSameProbabilities()
     {
-        using var chosen = new ExampleRun();
-        using var compiled = new ExampleRun("--evaluator", "compilation");
+        ExampleRun chosen = ExampleRun.Default;
+        var compiled = new ExampleRun("--evaluator", "compilation");
 
         AssertSame(compiled.Probabilities, chosen.Probabilities);
         Assert.All(compiled.Rows, row => Assert.Equal("compilation", row[6]));
@@ -45,8 +45,8 @@ public class PartTracingTests
     [Fact]
     public void Run_SafePlan_AnswersTheSafeQuestionsAndSaysWhyNotTheOthers()
     {
-        using var chosen = new ExampleRun();
-        using var safe = new ExampleRun("--evaluator", "safeplan");
+        ExampleRun chosen = ExampleRun.Default;
+        var safe = new ExampleRun("--evaluator", "safeplan");
 
         Assert.Equal(0, safe.ExitCode);
         Dictionary<(string Query, string Value), double> probabilities = safe.Probabilities;
@@ -60,8 +60,8 @@ public class PartTracingTests
     public void Run_SamplingWithOneSeed_GivesTheSameFileAgain()
     {
         string[] arguments = ["--evaluator", "sampling", "--epsilon", "0.02", "--seed", "7"];
-        using var first = new ExampleRun(arguments);
-        using var second = new ExampleRun(arguments);
+        var first = new ExampleRun(arguments);
+        var second = new ExampleRun(arguments);
 
         Assert.Equal(0, first.ExitCode);
         Assert.Equal(first.Answers, second.Answers);
@@ -72,8 +72,8 @@ public class PartTracingTests
     public void Run_FolderWithoutTruth_GivesTheSameAnswers()
     {
         using var data = new CopiedData();
-        using var own = new ExampleRun();
-        using var copied = new ExampleRun("--data", data.Folder);
+        ExampleRun own = ExampleRun.Default;
+        var copied = new ExampleRun("--data", data.Folder);
 
         Assert.Equal("", copied.Error);
         Assert.Equal(own.Answers, copied.Answers);
@@ -89,7 +89,7 @@ public class PartTracingTests
     [InlineData("--fast", "x", "'--fast' is not an option")]
     public void Run_WrongOption_ExitsWith2AndNamesIt(string option, string value, string expected)
     {
-        using var run = new ExampleRun(option, value);
+        var run = new ExampleRun(option, value);
 
         Assert.Equal(2, run.ExitCode);
         Assert.Contains(expected, run.Error, StringComparison.Ordinal);
@@ -108,7 +108,7 @@ public class PartTracingTests
     [Fact]
     public void Run_Help_NamesEveryOption()
     {
-        using var run = new ExampleRun("--help");
+        var run = new ExampleRun("--help");
 
         Assert.Equal(0, run.ExitCode);
         Assert.All(
@@ -121,7 +121,7 @@ public class PartTracingTests
     {
         using var data = new CopiedData();
         File.Delete(data.PathOf("lots.csv"));
-        using var run = new ExampleRun("--data", data.Folder);
+        var run = new ExampleRun("--data", data.Folder);
 
         Assert.Equal(1, run.ExitCode);
         Assert.StartsWith("lots.csv is missing", run.Error, StringComparison.Ordinal);
@@ -131,16 +131,37 @@ public class PartTracingTests
     [InlineData("vessel,class,in_service\r\nBraldyn,Tender,perhaps\r\n", "vessels.csv, line 2: column 'in_service' holds 'perhaps'")]
     [InlineData("vessel,class\r\nBraldyn,Tender\r\n", "vessels.csv has no column 'in_service'")]
     [InlineData("vessel,class,in_service\r\nBraldyn,Tender\r\n", "vessels.csv cannot be read")]
-    [InlineData("", "vessels.csv")]
+    [InlineData("", "vessels.csv has no column 'vessel'")]
     [InlineData("vessel,class,in_service\r\nBraldyn,Tender,true\r\nBraldyn,Barge,true\r\n", "Braldyn")]
     public void Run_MalformedFile_ExitsWith1AndSaysWhere(string vessels, string expected)
     {
         using var data = new CopiedData();
         File.WriteAllText(data.PathOf("vessels.csv"), vessels);
-        using var run = new ExampleRun("--data", data.Folder);
+        var run = new ExampleRun("--data", data.Folder);
 
         Assert.Equal(1, run.ExitCode);
         Assert.Contains(expected, run.Error, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void Run_EmptyBulletins_FindsNothing()
+    {
+        using var data = new CopiedData();
+        File.WriteAllText(data.PathOf("bulletin.csv"), "lot_code\r\n");
+        File.WriteAllText(data.PathOf("bulletin_2.csv"), "lot_code\r\n");
+        var run = new ExampleRun("--data", data.Folder);
+
+        Assert.Equal("", run.Error);
+        Assert.All(run.Rows, row => Assert.Equal(["barge-liner", "yes", "0"], row[..3]));
+    }
+
+    [Fact]
+    public void Run_SuspectLotThatIsNotListed_SaysSo()
+    {
+        using var data = new CopiedData();
+        File.AppendAllText(data.PathOf("bulletin.csv"), "XX-X0000\r\n");
+
+        Assert.Contains("Beware: XX-X0000", new ExampleRun("--data", data.Folder).Output, StringComparison.Ordinal);
     }
 
     [Fact]
@@ -165,7 +186,9 @@ public class PartTracingTests
         var none = new Dictionary<(string Query, string Value), double>();
         foreach (IGrouping<string, CalibratedReading> card in cards)
         {
-            double suspect = card.Where(c => c.Reading.Field == ClosedLists.LotCode && data.Bulletin1.Contains(c.Reading.Text)).Sum(c => c.Chance);
+            double suspect = card
+                .Where(c => c.Reading.Field == ClosedLists.LotCode && data.Bulletin1.Contains(c.Reading.Text))
+                .Sum(c => c.Chance);
             foreach (CalibratedReading c in card.Where(c => c.Reading.Field == ClosedLists.Vessel && inService.Contains(c.Reading.Text)))
             {
                 if (suspect > 0)
@@ -176,7 +199,7 @@ public class PartTracingTests
             }
         }
 
-        using var run = new ExampleRun();
+        ExampleRun run = ExampleRun.Default;
         AssertSame(
             none.ToDictionary(n => n.Key, n => 1 - n.Value),
             run.Probabilities.Where(p => p.Key.Query == "bulletin-1").ToDictionary());
@@ -190,9 +213,10 @@ public class PartTracingTests
     {
         FerryData data = FerryData.Load(ExampleRun.DataFolder);
         IReadOnlyList<Reading> truth = Truth.Load(ExampleRun.DataFolder)!;
-        IEnumerable<string> found = Questions.Over(Archive.OfTruth(data, truth), data)[question].Ask(EvaluationOptions.Default).Certain;
+        IEnumerable<string> found = Questions.CertainAnswers(Archive.OfTruth(data, truth), data)[question];
 
-        IEnumerable<string> expected = File.ReadLines(Path.Combine(ExampleRun.DataFolder, "truth", file)).Skip(1).Select(line => line.Split(',')[0]);
+        IEnumerable<string> expected = File.ReadLines(Path.Combine(ExampleRun.DataFolder, "truth", file))
+            .Skip(1).Select(line => line.Split(',')[0]);
         Assert.Equal(expected.Order(StringComparer.Ordinal), found.Order(StringComparer.Ordinal));
     }
 
@@ -200,8 +224,8 @@ public class PartTracingTests
     public void Bulletin1_AgainstTheTruth_IsCloserThanAnyCut()
     {
         FerryData data = FerryData.Load(ExampleRun.DataFolder);
-        HashSet<string> affected = [.. Questions.Over(Archive.OfTruth(data, Truth.Load(ExampleRun.DataFolder)!), data)[0]
-            .Ask(EvaluationOptions.Default).Certain];
+        IReadOnlySet<string> affected = Questions.CertainAnswers(
+            Archive.OfTruth(data, Truth.Load(ExampleRun.DataFolder)!), data)[0];
         double Brier(Archive archive)
         {
             Dictionary<string, double> said = Questions.Over(archive, data)[0].Ask(EvaluationOptions.Default).Findings

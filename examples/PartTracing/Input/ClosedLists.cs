@@ -1,4 +1,4 @@
-namespace PartTracing.Data;
+namespace PartTracing.Input;
 
 /// <summary>
 /// The fields whose true text must be in an exact list. Only these are traced: a date or a quantity names no vessel and no lot.

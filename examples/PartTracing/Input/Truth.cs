@@ -1,4 +1,4 @@
-namespace PartTracing.Data;
+namespace PartTracing.Input;
 
 /// <summary>What is really on the paper. For the closing check and for tests only, never for a chance.</summary>
 internal static class Truth
@@ -17,12 +17,12 @@ internal static class Truth
     }
 
     private static IEnumerable<Reading> Fields(string folder, string file, string id, params string[] fields) => CsvTable
-        .Read(folder, file, row =>
+        .Read(folder, file, [id, .. fields], row =>
         {
             var readings = new Reading[fields.Length];
             for (int i = 0; i < fields.Length; i++)
             {
-                readings[i] = new Reading(row.Name(id), fields[i], 1, row.Name(fields[i]), 100);
+                readings[i] = new Reading(row.Name(0), fields[i], 1, row.Name(i + 1), 100);
             }
 
             return readings;

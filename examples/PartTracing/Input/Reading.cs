@@ -1,4 +1,4 @@
-namespace PartTracing.Data;
+namespace PartTracing.Input;
 
 /// <summary>One alternative reading of one field of a slip.</summary>
 /// <param name="DocumentId">Number of the delivery note or fitting card.</param>
