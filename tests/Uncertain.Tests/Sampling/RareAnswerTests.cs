@@ -36,6 +36,18 @@ public class RareAnswerTests
     }
 
     [Fact]
+    public void Evaluate_RareConjunctionOfDisjunctions_IsMultipliedOut()
+    {
+        var worlds = new WorldSpace();
+        Lineage[] parts = [.. Enumerable.Range(0, 4).Select(i => worlds.Event($"a{i}", 1e-4) | worlds.Event($"b{i}", 2e-4))];
+        Lineage gate = worlds.Event("g", 0.5) ^ worlds.Event("h", 0.25);
+        double expected = Math.Pow(1 - ((1 - 1e-4) * (1 - 2e-4)), 4) * 0.5;
+        Probability probability = Lineage.All([.. parts, gate]).Evaluate(Options(Accuracy.WithinFactor(0.05, 1e-12)));
+        Assert.Null(probability.Shortfall);
+        Assert.InRange(probability.Value / expected, 0.95, 1.05);
+    }
+
+    [Fact]
     public void Evaluate_BelowTheRangeOfDouble_HasItsLogarithm()
     {
         var worlds = new WorldSpace();

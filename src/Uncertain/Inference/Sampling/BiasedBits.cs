@@ -1,4 +1,5 @@
 using System.Numerics;
+using System.Runtime.CompilerServices;
 
 namespace Uncertain.Inference.Sampling;
 
@@ -62,6 +63,7 @@ internal readonly struct BiasedBits
         }
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     private TVector Compare<TVector>(TVector counter, TVector gamma)
         where TVector : struct, IWordVector<TVector>
     {
@@ -93,6 +95,7 @@ internal readonly struct BiasedBits
         return place < 0 ? 0 : (ulong)((long)(_mantissa << place) >> 63);
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     private static TVector Mix<TVector>(TVector z)
         where TVector : struct, IWordVector<TVector>
     {

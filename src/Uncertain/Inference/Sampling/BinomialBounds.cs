@@ -13,10 +13,11 @@ namespace Uncertain.Inference.Sampling;
 /// <para>The equation is solved for the smaller tail in the log domain, so that bounds near 0 and near 1 keep their relative
 /// accuracy.</para>
 /// </remarks>
-internal readonly struct BinomialBounds
+internal sealed class BinomialBounds
 {
     private readonly double _logTail;
     private readonly double _tail;
+    private readonly double _quantile;
     private readonly double _exponent;
 
     /// <param name="delta">Largest chance in (0, 1) that the bounds miss; half of it on either side.</param>
@@ -24,8 +25,8 @@ internal readonly struct BinomialBounds
     {
         _tail = delta / 2;
         _logTail = Math.Log(_tail);
-        double z = NormalTail.Quantile(_tail);
-        _exponent = z * z / 2;
+        _quantile = NormalTail.Quantile(_tail);
+        _exponent = _quantile * _quantile / 2;
     }
 
     /// <summary>The interval of the chance.</summary>
@@ -35,6 +36,10 @@ internal readonly struct BinomialBounds
         (double lowerComplement, double lower) = Upper(trials - successes, trials);
         return new Interval(lower, lowerComplement, upper, upperComplement);
     }
+
+    /// <summary>About half of the interval's width, cheaply; less than that for few successes or failures.</summary>
+    public double RoughDistance(long successes, long trials) =>
+        _quantile * Math.Sqrt((double)successes / trials * ((double)(trials - successes) / trials) / trials);
 
     /// <summary>The largest chance that the tail allows, and 1 minus it.</summary>
     private (double Chance, double Complement) Upper(long k, long n)

@@ -14,16 +14,18 @@ internal sealed class DirectSampler(SamplingTask task, LineageArena arena)
     private const int NarrowWidth = 8;
     private const long WorkPerPiece = 200_000;
 
+    private readonly Stages _stages = Stages.For(task.Accuracy);
+    private BinomialBounds _bounds = new(task.Accuracy.Delta);
+    private long _drawn;
+    private long _limit = long.MaxValue;
+
     /// <summary>Estimates lineages, none of them constant, until each is as accurate as asked or the budget ends.</summary>
     public Tally[] Run(ReadOnlySpan<LineageRef> formulas)
     {
         var tallies = new Tally[formulas.Length];
         Array.Fill(tallies, Tally.Nothing);
-        var stages = Stages.For(task.Accuracy);
-        var successes = new long[formulas.Length];
+        var counts = new long[formulas.Length];
         int[] open = [.. Enumerable.Range(0, formulas.Length)];
-        long limit = long.MaxValue;
-        long drawn = 0;
         while (open.Length > 0)
         {
             var roots = new LineageRef[open.Length];
@@ -33,50 +35,69 @@ internal sealed class DirectSampler(SamplingTask task, LineageArena arena)
             }
 
             WorldProgram? program = WorldProgram.Build(arena, roots, task.Seed, task.Budget);
-            if (program is null)
+            if (program is null || !RunStages(program, counts, tallies, ref open))
             {
                 break;
             }
+        }
 
-            if (drawn == 0)
+        // The others end where the budget did.
+        foreach (int index in open)
+        {
+            if (_drawn > 0)
             {
-                limit = task.WorldLimit(program.Work);
+                tallies[index] = Tally.Of(counts[index], _drawn, _bounds, task.Accuracy);
             }
-
-            Team team = CreateTeam(program);
-            long[] before = [.. open.Select(index => successes[index])];
-            int[] left = open;
-            do
-            {
-                if (drawn >= limit || !team.Run(drawn, stages.Worlds))
-                {
-                    return tallies;
-                }
-
-                drawn = stages.Worlds;
-                for (int i = 0; i < open.Length; i++)
-                {
-                    successes[open[i]] = before[i] + team.Successes(i);
-                }
-
-                foreach (int index in left)
-                {
-                    tallies[index] = Tally.Of(successes[index], drawn, stages.Delta, task.Accuracy);
-                }
-
-                left = Array.FindAll(left, index => !tallies[index].IsEnough);
-                if (stages.IsLast)
-                {
-                    return tallies;
-                }
-
-                stages.Advance();
-            }
-            while (left.Length > open.Length / 2);
-            open = left;
         }
 
         return tallies;
+    }
+
+    /// <summary>Draws worlds until half of the open lineages are done, and the program may be made smaller.</summary>
+    /// <returns>False if the budget ended.</returns>
+    private bool RunStages(WorldProgram program, long[] counts, Tally[] tallies, ref int[] open)
+    {
+        Team team = CreateTeam(program);
+        int[] roots = open;
+        long[] before = [.. roots.Select(index => counts[index])];
+        _limit = Math.Min(_limit, task.WorldLimit(program.Work));
+        while (open.Length > roots.Length / 2)
+        {
+            if (_drawn >= _limit || !team.Run(_drawn, _stages.Worlds))
+            {
+                return false;
+            }
+
+            _drawn = _stages.Worlds;
+            _bounds = new BinomialBounds(_stages.Delta);
+            for (int i = 0; i < roots.Length; i++)
+            {
+                counts[roots[i]] = before[i] + team.Successes(i);
+            }
+
+            open = Array.FindAll(open, index => !IsDone(index, counts[index], tallies));
+            if (_stages.IsLast)
+            {
+                return false;
+            }
+
+            _stages.Advance();
+        }
+
+        return true;
+    }
+
+    private bool IsDone(int index, long successes, Tally[] tallies)
+    {
+        // Most looks come much too early: those need no exact bounds.
+        double target = task.Accuracy.Epsilon * (task.Accuracy.IsRelative ? (double)successes / _drawn : 1);
+        if (!_stages.IsLast && _bounds.RoughDistance(successes, _drawn) > target)
+        {
+            return false;
+        }
+
+        tallies[index] = Tally.Of(successes, _drawn, _bounds, task.Accuracy);
+        return tallies[index].IsEnough;
     }
 
     private Team CreateTeam(WorldProgram program)

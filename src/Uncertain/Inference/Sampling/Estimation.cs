@@ -71,19 +71,31 @@ internal sealed class Estimation
         ? Tails<ExtendedDouble>.Always.NegateIf(formula == LineageRef.False)
         : TermExtraction.TailsOfConjunction(_arena, formula, _task.Budget);
 
+    /// <summary>The estimate by coverage sampling where that is the better way; else null.</summary>
     private Tally? ByCoverage(LineageRef formula, double share)
     {
-        // A negated node is a disjunction; the complement of a positive one is.
-        bool isComplement = !formula.IsNegated;
-        VariableTable variables = _arena.Worlds.Variables;
-        Terms? terms = TermExtraction.Of(_arena, isComplement ? !formula : formula, _task.Budget);
-        if (terms is null || terms.Count == 0 || terms.TotalWeight.Log() >= (_task.Accuracy.IsRelative ? 0 : s_smallWeight))
+        // The lighter side is the rarer one, and has the relative guarantee for the smaller tail.
+        Terms? own = TermsOf(formula, multiplyOut: false);
+        Terms? other = own is null || Weighs(own, s_smallWeight) ? TermsOf(!formula, multiplyOut: false) : null;
+        bool isComplement = other is not null && (own is null || other.TotalWeight.Log() < own.TotalWeight.Log());
+        Terms? lighter = isComplement ? other : own;
+        if (own is null && _task.Accuracy.IsRelative && (lighter is null || Weighs(lighter, 0)))
         {
-            return null;
+            // Direct sampling may take long for this one, which is worth the trouble.
+            lighter = TermsOf(formula, multiplyOut: true);
+            isComplement = false;
         }
 
-        return new CoverageSampler(_task with { Budget = _task.Budget.Share(share) }, variables).Run(terms, isComplement);
+        return lighter is null || Weighs(lighter, _task.Accuracy.IsRelative ? 0 : s_smallWeight)
+            ? null
+            : new CoverageSampler(_task with { Budget = _task.Budget.Share(share) }, _arena.Worlds.Variables)
+                .Run(lighter, isComplement);
     }
+
+    private Terms? TermsOf(LineageRef formula, bool multiplyOut) =>
+        TermExtraction.Of(_arena, formula, multiplyOut, _task.Budget) is { Count: > 0 } terms ? terms : null;
+
+    private static bool Weighs(Terms terms, double logWeight) => terms.TotalWeight.Log() >= logWeight;
 
     private Probability Describe(Tally tally, TimeSpan elapsed, bool isDirect)
     {
@@ -109,8 +121,8 @@ internal sealed class Estimation
             ? $"the deadline of {_options.Deadline} ended the sampling after {tally.Worlds:N0} worlds"
             : $"the sampling was given up after {tally.Worlds:N0} worlds, because it would go on too long";
         string why = isDirect && _task.Accuracy.IsRelative
-            ? "; a relative accuracy for a small probability takes many worlds unless the lineage is a disjunction of conjunctions. "
-                + "Ask for an absolute accuracy, a longer deadline, or Evaluators.Compilation"
+            ? "; a relative accuracy for a small probability takes many worlds unless the lineage, multiplied out, is a disjunction "
+                + "of not too many conjunctions. Ask for an absolute accuracy, a longer deadline, or Evaluators.Compilation"
             : ". Give it a longer deadline, or ask for less";
         return asked + "; " + end + why;
     }

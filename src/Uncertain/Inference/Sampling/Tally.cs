@@ -14,12 +14,11 @@ internal readonly record struct Tally(
     /// <summary>Before the first stage is done: nothing is known.</summary>
     public static Tally Nothing => new(0.5, 0.5, Math.Log(0.5), Math.Log(0.5), Interval.Everything, 0);
 
-    public static Tally Of(long successes, long worlds, double delta, Accuracy accuracy)
+    public static Tally Of(long successes, long worlds, BinomialBounds bounds, Accuracy accuracy)
     {
         double value = (double)successes / worlds;
         double complement = (double)(worlds - successes) / worlds;
-        var tally = new Tally(
-            value, complement, Math.Log(value), Math.Log(complement), new BinomialBounds(delta).Of(successes, worlds), worlds);
+        var tally = new Tally(value, complement, Math.Log(value), Math.Log(complement), bounds.Of(successes, worlds), worlds);
         return tally with { IsEnough = tally.Meets(accuracy) };
     }
 
