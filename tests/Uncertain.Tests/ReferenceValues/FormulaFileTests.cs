@@ -32,7 +32,7 @@ public sealed class FormulaFileTests
     [InlineData("p dnf -1 1", "line 1: found '-1' where the number of variables")]
     [InlineData("p dnf 99999999999 1", "line 1: found '99999999999' where the number of variables")]
     [InlineData("p dnf 2000000000 1\n0.5\n", "line 2: the file ends where the probability of variable 2 should come")]
-    [InlineData("p dnf 1 1\n1.5\n1 0", "line 2: found '1.5' where the probability of variable 1, a number from 0 to 1, should come")]
+    [InlineData("p dnf 1 1\n1.5\n1 0", "line 2: found '1.5' where the probability of variable 1, a number from 0 to 1 should come")]
     [InlineData("p dnf 1 1\nNaN\n1 0", "line 2: found 'NaN'")]
     [InlineData("p dnf 1 1\n1e-999999999\n1 0", "line 2: found '1e-999999999'")]
     [InlineData("p dnf 1 1\n1/0\n1 0", "line 2: found '1/0'")]
