@@ -114,9 +114,14 @@ internal static class Checker
             return (Outcome.Wrong, null, $"'{extra.Key}' should have probability 0");
         }
 
-        return isExact
-            ? (largest <= Comparison.Tolerance ? Outcome.Ok : Outcome.Wrong, largest, remark)
-            : (isWithin ? Outcome.WithinBounds : Outcome.Wrong, largest, remark);
+        if (isExact)
+        {
+            return (largest <= Comparison.Tolerance ? Outcome.Ok : Outcome.Wrong, largest, remark);
+        }
+
+        // An estimate where an exact figure was asked for is no solution, whether or not it is one of the few that miss their bounds.
+        bool isLess = figures.Any(figure => figure.Shortfall is not null);
+        return (isLess ? Outcome.NotSolved : isWithin ? Outcome.WithinBounds : Outcome.Wrong, largest, remark);
     }
 
     private static string Describe(IReadOnlyList<Figure> figures)

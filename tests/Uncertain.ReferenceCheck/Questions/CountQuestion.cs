@@ -1,4 +1,5 @@
 using Uncertain.ReferenceCheck.Cases;
+using Uncertain.ReferenceCheck.Lineages;
 using Uncertain.ReferenceCheck.Solving;
 
 namespace Uncertain.ReferenceCheck.Questions;
@@ -8,20 +9,19 @@ internal static class CountQuestion
 {
     private const int MostEvents = 1_000_000;
 
+    // The thresholds of the library up to here; beyond, a sweep that decides event by event.
+    private const int MostOfThresholds = 20;
+
     public static IReadOnlyList<Figure> Ask(Field input, Solver solver)
     {
         var worlds = new WorldSpace();
         Lineage[] events = [worlds.Never, .. Chances(input["p"]).Select((chance, i) => chance.NewEvent(worlds, $"event {i}"))];
         return new Distribution([.. Enumerable.Range(0, events.Length).Select(k => (long)k)], Between).Ask(input, solver);
 
-        Lineage Between(long least, long most)
-        {
-            int from = (int)Math.Clamp(least, 0, events.Length);
-            int to = (int)Math.Clamp(most, -1, events.Length);
-            return from == to
-                ? Lineage.Exactly(from, events)
-                : Lineage.AtLeast(from, events) & !Lineage.AtLeast(to + 1, events);
-        }
+        Lineage Between(long least, long most) => events.Length <= MostOfThresholds
+            ? Threshold(events, (int)Math.Clamp(least, 0, events.Length), (int)Math.Clamp(most, -1, events.Length))
+            : new SumSweep(
+                [.. events.Select(one => ((long, Lineage)[])[(1, one)])], Math.Max(least, 0), Math.Min(most, events.Length)).Build(worlds, solver);
     }
 
     /// <summary>No k components in a row have failed, on a line or a circle.</summary>
@@ -36,6 +36,10 @@ internal static class CountQuestion
         return solver.Chance(Lineage.All([worlds.Always, .. Enumerable.Range(0, windows)
             .Select(first => Lineage.Any([.. Enumerable.Range(first, k).Select(i => works[i % n])]))]));
     }
+
+    private static Lineage Threshold(Lineage[] events, int least, int most) => least == most
+        ? Lineage.Exactly(least, events)
+        : Lineage.AtLeast(least, events) & !Lineage.AtLeast(most + 1, events);
 
     private static IEnumerable<Chance> Chances(Field field)
     {

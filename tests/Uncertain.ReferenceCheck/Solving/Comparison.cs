@@ -14,12 +14,12 @@ internal static class Comparison
     private const double SmallestComplementOfDigits = 1e-15;
 
     /// <summary>
-    /// The relative error; of a probability the larger one of its two tails, so that 1 - 1e-20 is not mistaken for 1.
+    /// The relative error; of an exact probability the larger one of its two tails, so that 1 - 1e-20 is not mistaken for 1.
     /// </summary>
     public static double RelativeError(Figure figure, Expected expected)
     {
         double error = RelativeError(figure.Value, figure.Log, expected.Value);
-        if (figure.Complement is not { } complement)
+        if (!figure.IsExact || figure.Complement is not { } complement)
         {
             return error;
         }

@@ -22,7 +22,8 @@ internal sealed class Solver(IEvaluator evaluator, TimeSpan limit, CancellationT
     {
         Figure whole = Chance(given);
         return double.IsNegativeInfinity(whole.Log)
-            ? throw new LeftOutException("the condition has probability 0")
+            ? throw new LeftOutException(
+                $"the condition has probability 0{(whole.IsExact ? "" : " in the estimate: it is too rare for the accuracy asked")}")
             : Chance(lineage & given) / whole;
     }
 
