@@ -73,6 +73,14 @@ public readonly partial struct Lineage : IEquatable<Lineage>
     /// <exception cref="InvalidOperationException">This is not a literal.</exception>
     public int Outcome => LiteralSlot - Worlds.Variables.FirstSlot(Worlds.Variables.VariableOf(LiteralSlot));
 
+    /// <summary>The name of a literal: its source's, or that of the event or choice.</summary>
+    /// <exception cref="InvalidOperationException">This is not a literal.</exception>
+    public string Source => Worlds.Names.Of(LiteralSlot).Name;
+
+    /// <summary>The number, from 0, of the literal's record in its source; null for events and choices.</summary>
+    /// <exception cref="InvalidOperationException">This is not a literal.</exception>
+    public int? RecordNumber => Worlds.Names.Of(LiteralSlot).Record;
+
     internal LineageRef Ref { get; }
 
     internal LineageArena Arena =>
@@ -81,7 +89,7 @@ public readonly partial struct Lineage : IEquatable<Lineage>
 
     private int LiteralSlot => Ref.IsLiteral && !Ref.IsNegated
         ? Ref.Index
-        : throw new InvalidOperationException($"Only a literal has a variable and an outcome; this lineage is a {Kind}.");
+        : throw new InvalidOperationException($"Only a literal has a variable, an outcome and a source; this lineage is a {Kind}.");
 
     /// <summary>Conjunction: both hold.</summary>
     /// <exception cref="WorldSpaceMismatchException">The operands belong to different world spaces.</exception>

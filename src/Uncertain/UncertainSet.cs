@@ -35,6 +35,10 @@ public sealed partial class UncertainSet<T> : IPlanned
     PlanNode IPlanned.Node => Node;
 
     /// <summary>All answers with their probabilities, in order of first appearance.</summary>
+    /// <remarks>
+    /// A value that is in no world is no answer. Exact evaluators find that out; an estimate cannot tell it from a very small
+    /// probability, so a sampled result may list such values with a lower bound of 0.
+    /// </remarks>
     /// <param name="options">What is asked and what it may cost; default: exact by the cheapest evaluator.</param>
     /// <param name="cancellationToken">Cancels the evaluation.</param>
     /// <exception cref="EvaluationRefusedException">The chosen evaluator cannot take the query, or a budget ran out.</exception>

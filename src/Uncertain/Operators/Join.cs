@@ -32,7 +32,7 @@ public sealed partial class UncertainSet<T>
         private readonly JoinInputs<T, TInner, TKey> _sides = sides;
         private readonly Lambda<T, TInner, TResult> _result = new(resultSelector, nameof(Join));
 
-        public override string Describe() => $"join {_sides.Describe()} into {PlanText.Lambda(_result.Tree)}";
+        public override string Describe() => $"join {_sides.Describe()}{PlanText.Into(_result.Tree)}";
 
         public override IEnumerable<Batch<TResult>> Run(QueryRun run)
         {

@@ -51,8 +51,8 @@ public sealed partial class UncertainSet<T>
         }
 
         public override string Describe() => _fixed is null
-            ? $"for each element: {PlanText.Lambda(_collection.Tree)} into {PlanText.Lambda(_result.Tree)}"
-            : $"product into {PlanText.Lambda(_result.Tree)}";
+            ? $"for each element: {PlanText.Lambda(_collection.Tree)}{PlanText.Into(_result.Tree)}"
+            : $"product{PlanText.Into(_result.Tree)}";
 
         public override IEnumerable<Batch<TResult>> Run(QueryRun run)
         {

@@ -30,7 +30,7 @@ public sealed partial class UncertainSet<T>
         private readonly Lambda<T, TCollection, TResult> _result = new(resultSelector, nameof(SelectMany));
 
         public override string Describe() =>
-            $"for each item: {PlanText.Lambda(_collection.Tree)} into {PlanText.Lambda(_result.Tree)}";
+            $"for each item: {PlanText.Lambda(_collection.Tree)}{PlanText.Into(_result.Tree)}";
 
         public override IEnumerable<Batch<TResult>> Run(QueryRun run)
         {

@@ -11,9 +11,16 @@ internal static partial class PlanText
     /// <summary>A lambda's body, with captured variables shown by their names.</summary>
     public static string Body(LambdaExpression lambda) => Clean(lambda.Body.ToString());
 
-    /// <summary>A lambda as 'parameter => body'.</summary>
-    public static string Lambda(LambdaExpression lambda) =>
-        Clean($"{string.Join(", ", lambda.Parameters.Select(parameter => parameter.Name))} => {lambda.Body}");
+    /// <summary>A lambda as 'parameter => body'; only its body where the parameter is the row that query syntax builds up.</summary>
+    public static string Lambda(LambdaExpression lambda) => Clean(lambda.Parameters is [var row] && IsRowSoFar(row.Name)
+        ? lambda.Body.ToString()
+        : $"{string.Join(", ", lambda.Parameters.Select(parameter => parameter.Name))} => {lambda.Body}");
+
+    /// <summary>' into result', or nothing where the result only pairs what was joined, as query syntax does between clauses.</summary>
+    public static string Into(LambdaExpression result) =>
+        result.Body is NewExpression { Members: not null } pair && pair.Arguments.SequenceEqual(result.Parameters)
+            ? ""
+            : $" into {Clean(string.Join(", ", result.Parameters.Select(p => IsRowSoFar(p.Name) ? "_" : p.Name)) + " => " + result.Body)}";
 
     /// <summary>Any expression.</summary>
     public static string Of(Expression expression) => Clean(expression.ToString());
@@ -26,10 +33,13 @@ internal static partial class PlanText
         _ => type.Name,
     };
 
+    private static bool IsRowSoFar(string? parameter) => parameter?.StartsWith("<>h__", StringComparison.Ordinal) == true;
+
     private static string Clean(string text)
     {
         text = Closure().Replace(text, "");
-        text = Transparent().Replace(text, "t$1");
+        text = RowSoFar().Replace(text, "");
+        text = text.Replace(" AndAlso ", " and ", StringComparison.Ordinal).Replace(" OrElse ", " or ", StringComparison.Ordinal);
         text = AnonymousType().Replace(text, "new (");
         return text.Length <= MaxLength ? text : string.Concat(text.AsSpan(0, MaxLength - 1), "…");
     }
@@ -38,9 +48,9 @@ internal static partial class PlanText
     [GeneratedRegex(@"value\([^()]*\)\.")]
     private static partial Regex Closure();
 
-    // <>h__TransparentIdentifier0: the compiler's name for the row so far.
-    [GeneratedRegex(@"<>h__TransparentIdentifier(\d+)")]
-    private static partial Regex Transparent();
+    // <>h__TransparentIdentifier0.card: the compiler's name for the row so far adds nothing to the range variable's.
+    [GeneratedRegex(@"<>h__TransparentIdentifier\d+\.")]
+    private static partial Regex RowSoFar();
 
     [GeneratedRegex(@"new <>f__AnonymousType\d+`\d+\(")]
     private static partial Regex AnonymousType();

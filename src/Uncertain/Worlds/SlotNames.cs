@@ -30,13 +30,21 @@ internal sealed class SlotNames
         }
     }
 
+    /// <summary>As printed: <c>name</c> of an event, <c>source[record]</c> of a record.</summary>
     public string NameOf(int slot)
+    {
+        (string name, int? record) = Of(slot);
+        return record is null ? name : string.Create(CultureInfo.InvariantCulture, $"{name}[{record}]");
+    }
+
+    /// <summary>The name of an event or source, and the record's number in the source.</summary>
+    public (string Name, int? Record) Of(int slot)
     {
         lock (_lock)
         {
             if (_events.TryGetValue(slot, out string? name))
             {
-                return name;
+                return (name, null);
             }
 
             int low = 0;
@@ -48,8 +56,7 @@ internal sealed class SlotNames
             }
 
             (int first, string source, int[]? records) = _sources[low];
-            int record = records is null ? slot - first : records[slot - first];
-            return string.Create(CultureInfo.InvariantCulture, $"{source}[{record}]");
+            return (source, records is null ? slot - first : records[slot - first]);
         }
     }
 }

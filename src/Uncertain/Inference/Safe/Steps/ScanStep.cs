@@ -20,7 +20,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
     {
         string how = Part switch
         {
-            { IsGuard: true } => "rows that may be there",
+            { IsGuard: true } => "once more as if certain, to bind what is beside it",
             { IsChancy: false } => "certain",
             { IsExclusive: true } => "chances of exclusive records added",
             _ => "independent records by disjunction",
