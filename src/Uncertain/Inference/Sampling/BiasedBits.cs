@@ -91,8 +91,9 @@ internal readonly struct BiasedBits
     // All ones where the expansion has a 1 at the position, else 0.
     private ulong Bit(int position)
     {
+        // Without a branch, which would be mispredicted for every second variable.
         int place = position - _leadingZeros;
-        return place < 0 ? 0 : (ulong)((long)(_mantissa << place) >> 63);
+        return (ulong)(((long)(_mantissa << place) >> 63) & ~(long)(place >> 31));
     }
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]

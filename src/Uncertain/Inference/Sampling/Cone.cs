@@ -36,12 +36,7 @@ internal sealed class Cone(LineageArena arena)
     }
 
     /// <summary>The nodes by index, which is an order of evaluation: operands have smaller indices than their users.</summary>
-    public int[] Nodes()
-    {
-        int[] nodes = [.. _nodes];
-        Array.Sort(nodes);
-        return nodes;
-    }
+    public int[] Nodes(WorkBudget budget) => Ascending.Distinct(_nodes, budget);
 
     private void Visit(LineageRef formula)
     {

@@ -14,7 +14,7 @@ internal sealed class CoverageBounds
         // For certain P is at least the probability of each term, and at most 1.
         double log = terms.TotalWeight.Log();
         _total = terms.TotalWeight;
-        _least = Math.Clamp(Math.Exp(terms.LogWeights[0] - log) * (1 - 1e-12), 0, 1);
+        _least = Math.Clamp(Math.Exp(terms.LargestLogWeight - log) * (1 - 1e-12), 0, 1);
         _most = Math.Min(1, Math.Exp(-log) * (1 + 1e-12));
     }
 

@@ -12,10 +12,14 @@ internal sealed class CoverageProgram
     private readonly AliasTable _choice;
     private readonly SplitMixStream _choices;
 
-    public CoverageProgram(VariableTable variables, Terms terms, ulong seed)
+    /// <param name="variables">The chances.</param>
+    /// <param name="terms">The disjunction; at least one term.</param>
+    /// <param name="seed">Seed of the worlds.</param>
+    /// <param name="budget">If it ends, the work is left unfinished.</param>
+    public CoverageProgram(VariableTable variables, Terms terms, ulong seed, WorkBudget budget)
     {
         _variables = variables;
-        Draws = new Draws(variables, terms.Slots, seed);
+        Draws = new Draws(variables, terms.Slots, seed, budget);
         _choices = SplitMixStream.Of(seed, StreamKeys.Term);
         _variableOfRow = new int[Draws.RowCount];
         for (int variable = 0; variable < Draws.VariableCount; variable++)
@@ -24,11 +28,11 @@ internal sealed class CoverageProgram
         }
 
         // Weights in parts of the largest: their products may be far below the range of doubles.
-        double[] weights = [.. terms.LogWeights.Select(log => Math.Exp(log - terms.LogWeights[0]))];
+        double[] weights = [.. terms.LogWeights.Select(log => Math.Exp(log - terms.LargestLogWeight))];
         _choice = new AliasTable(weights);
         var code = new List<int>();
         _starts = new int[terms.Count + 1];
-        for (int term = 0; term < terms.Count; term++)
+        for (int term = 0; term < terms.Count && !((term & 0xFFF) == 0 && budget.HasEnded); term++)
         {
             _starts[term] = code.Count;
             code.Add(terms[term].Length);

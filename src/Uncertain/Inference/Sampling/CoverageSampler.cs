@@ -26,7 +26,12 @@ internal sealed class CoverageSampler(SamplingTask task, VariableTable variables
     /// <returns>The estimate of what is wanted; <see cref="Tally.Nothing"/> if not even the first stage was finished.</returns>
     public Tally Run(Terms terms, bool isComplement)
     {
-        var program = new CoverageProgram(variables, terms, task.Seed);
+        var program = new CoverageProgram(variables, terms, task.Seed, task.Budget);
+        if (task.Budget.HasEnded)
+        {
+            return Tally.Nothing;
+        }
+
         Team team = CreateTeam(program);
         var bounds = new CoverageBounds(terms);
         long limit = task.WorldLimit(program.Work);

@@ -17,16 +17,16 @@ internal sealed class Draws
     private readonly Dictionary<int, int> _rowOfSlot;
 
     /// <param name="variables">The chances.</param>
-    /// <param name="slots">The slots in use, in any order.</param>
+    /// <param name="slots">The slots in use, in any order, repeated or not.</param>
     /// <param name="seed">Seed of the worlds.</param>
-    public Draws(VariableTable variables, IEnumerable<int> slots, ulong seed)
+    /// <param name="budget">If it ends, the work is left unfinished.</param>
+    public Draws(VariableTable variables, IEnumerable<int> slots, ulong seed, WorkBudget budget)
     {
         _variables = variables;
         Seed = seed;
         var rows = new List<int>();
         var starts = new List<int>();
-        int[] sorted = [.. slots];
-        Array.Sort(sorted);
+        int[] sorted = Ascending.Distinct(slots, budget);
         for (int i = 0; i < sorted.Length; i++)
         {
             int variable = variables.VariableOf(sorted[i]);
@@ -45,7 +45,7 @@ internal sealed class Draws
         _firstRow = [.. starts];
         _bits = new BiasedBits[rows.Count];
         _rowOfSlot = new Dictionary<int, int>(rows.Count);
-        for (int variable = 0; variable < VariableCount; variable++)
+        for (int variable = 0; variable < VariableCount && !((variable & 0xFFF) == 0xFFF && budget.HasEnded); variable++)
         {
             AddVariable(variable);
         }

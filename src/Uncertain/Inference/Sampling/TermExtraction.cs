@@ -38,9 +38,13 @@ internal sealed class TermExtraction
     public static Terms? Of(LineageArena arena, LineageRef formula, bool multiplyOut, WorkBudget budget)
     {
         var extraction = new TermExtraction(arena, budget);
-        return extraction.Run(formula, multiplyOut)
-            ? new Terms(arena.Worlds.Variables, extraction._literals, extraction._ends)
-            : null;
+        if (!extraction.Run(formula, multiplyOut))
+        {
+            return null;
+        }
+
+        var terms = new Terms(arena.Worlds.Variables, extraction._literals, extraction._ends, budget);
+        return budget.HasEnded ? null : terms;
     }
 
     /// <summary>

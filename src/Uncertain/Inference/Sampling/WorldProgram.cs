@@ -52,14 +52,14 @@ internal sealed class WorldProgram
             cone.Add(formula, budget);
         }
 
+        int[] nodes = cone.Nodes(budget);
+        var rows = new Dictionary<int, int>(nodes.Length);
+        var draws = new Draws(arena.Worlds.Variables, cone.Slots, seed, budget);
         if (budget.HasEnded)
         {
             return null;
         }
 
-        int[] nodes = cone.Nodes();
-        var rows = new Dictionary<int, int>(nodes.Length);
-        var draws = new Draws(arena.Worlds.Variables, cone.Slots, seed);
         var code = new int[nodes.Length + cone.OperandCount];
         var parts = new List<Range>();
         int length = 0;
@@ -78,6 +78,10 @@ internal sealed class WorldProgram
             {
                 parts.Add(partStart..length);
                 partStart = length;
+                if (budget.HasEnded)
+                {
+                    return null;
+                }
             }
         }
 
