@@ -32,7 +32,7 @@ public sealed class TempTests(ITestOutputHelper output)
         for (int i = 0; i < RandomQueryRun.TotalCases / 2; i++)
         {
             var t = generator.Next(new Random(first + i));
-            File.WriteAllText($"/tmp/h/case{g}.txt", $"seed {first + i}\n{t}");
+            File.WriteAllText($"/tmp/t-tests/case{g}.txt", $"seed {first + i}\n{t}");
             if (Check(t) is { } f)
             {
                 string k = Regex.Replace(Regex.Replace(f.Split('\n')[0], "new Row.*", ""), "[0-9'A-C]", "") + f.Split('\n').ElementAtOrDefault(2)?.Trim();
