@@ -9,14 +9,14 @@ internal static class SnippetCompiler
     private static readonly MetadataReference[] s_references =
     [
         .. ((string)AppContext.GetData("TRUSTED_PLATFORM_ASSEMBLIES")!).Split(Path.PathSeparator)
-            .Where(path => Path.GetFileName(path).StartsWith("System.", StringComparison.Ordinal)
-                || Path.GetFileName(path) is "netstandard.dll" or "mscorlib.dll")
+            .Where(path => Path.GetFileName(path) is var file && file != "System.Linq.Async.dll"
+                && (file.StartsWith("System.", StringComparison.Ordinal) || file is "netstandard.dll" or "mscorlib.dll"))
             .Select(path => MetadataReference.CreateFromFile(path)),
         MetadataReference.CreateFromFile(typeof(WorldSpace).Assembly.Location),
     ];
 
-    /// <summary>The file of the assembly of System.Linq.Async, which an app may still reference.</summary>
-    private static string LinqAsync => Path.Combine(AppContext.BaseDirectory, "System.Linq.Async.dll");
+    /// <summary>The reference assembly of System.Linq.Async, which an app may still reference.</summary>
+    private static string LinqAsync => Path.Combine(AppContext.BaseDirectory, "refs", "System.Linq.Async.dll");
 
     /// <summary>Identifiers of the errors, each once, in order; empty if the snippet compiles.</summary>
     /// <param name="statements">Statements in a method, with <c>worlds</c>, <c>notes</c> and <c>cards</c> at hand.</param>
@@ -48,11 +48,11 @@ internal static class SnippetCompiler
             """;
         IEnumerable<MetadataReference> references = withLinqAsync
             ? s_references.Append(MetadataReference.CreateFromFile(LinqAsync))
-            : s_references.Where(reference => reference.Display is not { } path || Path.GetFileName(path) != "System.Linq.Async.dll");
+            : s_references;
         var compilation = CSharpCompilation.Create(
             "Snippet",
             [CSharpSyntaxTree.ParseText(source, new CSharpParseOptions(LanguageVersion.Latest))],
-            references.DistinctBy(reference => reference.Display),
+            references,
             new CSharpCompilationOptions(OutputKind.DynamicallyLinkedLibrary, nullableContextOptions: NullableContextOptions.Disable));
         return [.. compilation.GetDiagnostics().Where(diagnostic => diagnostic.Severity == DiagnosticSeverity.Error)];
     }
