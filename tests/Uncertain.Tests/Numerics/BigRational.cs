@@ -1,0 +1,63 @@
+using System.Numerics;
+
+namespace Uncertain.Tests.Numerics;
+
+/// <summary>An exact number: doubles are dyadic fractions, so sums and products of them are (mantissa, power of two).</summary>
+internal readonly record struct BigRational(BigInteger Mantissa, int Exponent)
+{
+    public static BigRational Zero => new(0, 0);
+
+    public static BigRational One => new(1, 0);
+
+    public static BigRational From(double value)
+    {
+        if (value == 0)
+        {
+            return Zero;
+        }
+
+        // 53 bits before the point.
+        int exponent = Math.ILogB(value) - 52;
+        return new BigRational(new BigInteger(Math.ScaleB(value, -exponent)), exponent);
+    }
+
+    public static BigRational operator *(BigRational left, BigRational right) =>
+        new(left.Mantissa * right.Mantissa, left.Exponent + right.Exponent);
+
+    public static BigRational operator +(BigRational left, BigRational right)
+    {
+        int exponent = Math.Min(left.Exponent, right.Exponent);
+        return new BigRational(
+            (left.Mantissa << (left.Exponent - exponent)) + (right.Mantissa << (right.Exponent - exponent)), exponent);
+    }
+
+    public static BigRational operator -(BigRational left, BigRational right) => left + new BigRational(-right.Mantissa, right.Exponent);
+
+    public static BigRational Product(IReadOnlyList<BigRational> factors)
+    {
+        // A balanced tree: the cost is that of the few large products at its root.
+        BigRational[] level = [.. factors];
+        while (level.Length > 1)
+        {
+            level = [.. level.Chunk(2).Select(pair => pair.Length == 2 ? pair[0] * pair[1] : pair[0])];
+        }
+
+        return level.Length == 0 ? One : level[0];
+    }
+
+    /// <summary>The natural logarithm, right to about 1e-15 relative.</summary>
+    public double Log()
+    {
+        long bits = (long)Mantissa.GetBitLength();
+        int shift = (int)Math.Max(0, bits - 60);
+        double leading = (double)(Mantissa >> shift);
+        return Math.Log(leading) + ((shift + (double)Exponent) * Math.Log(2));
+    }
+
+    /// <summary>Nearest double within one unit in the last place; 0 and infinity beyond the range.</summary>
+    public double ToDouble()
+    {
+        int shift = (int)Math.Max(0, (long)Mantissa.GetBitLength() - 64);
+        return Math.ScaleB((double)(Mantissa >> shift), Exponent + shift);
+    }
+}
