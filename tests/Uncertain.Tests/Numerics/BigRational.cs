@@ -45,6 +45,24 @@ internal readonly record struct BigRational(BigInteger Mantissa, int Exponent)
         return level.Length == 0 ? One : level[0];
     }
 
+    /// <summary>The power, with each step cut to 400 bits: exact to about 115 digits.</summary>
+    public BigRational Power(int exponent)
+    {
+        BigRational result = One;
+        BigRational square = this;
+        for (int rest = exponent; rest > 0; rest >>= 1)
+        {
+            if ((rest & 1) != 0)
+            {
+                result = (result * square).Cut();
+            }
+
+            square = (square * square).Cut();
+        }
+
+        return result;
+    }
+
     /// <summary>The natural logarithm, right to about 1e-15 relative.</summary>
     public double Log()
     {
@@ -59,5 +77,11 @@ internal readonly record struct BigRational(BigInteger Mantissa, int Exponent)
     {
         int shift = (int)Math.Max(0, (long)Mantissa.GetBitLength() - 64);
         return Math.ScaleB((double)(Mantissa >> shift), Exponent + shift);
+    }
+
+    private BigRational Cut()
+    {
+        int shift = (int)Math.Max(0, (long)Mantissa.GetBitLength() - 400);
+        return new BigRational(Mantissa >> shift, Exponent + shift);
     }
 }
