@@ -63,19 +63,32 @@ internal readonly record struct BigRational(BigInteger Mantissa, int Exponent)
         return result;
     }
 
-    /// <summary>The natural logarithm, right to about 1e-15 relative.</summary>
+    /// <summary>The natural logarithm, right to about 1e-13 relative, close to 1 too.</summary>
     public double Log()
     {
-        long bits = (long)Mantissa.GetBitLength();
-        int shift = (int)Math.Max(0, bits - 60);
-        double leading = (double)(Mantissa >> shift);
-        return Math.Log(leading) + ((shift + (double)Exponent) * Math.Log(2));
+        double deviation = (this - One).ToDouble();
+        if (Math.Abs(deviation) < 0.01)
+        {
+            // ln(1 + x) = x - x^2/2 + x^3/3 - ...
+            double sum = 0;
+            double power = -1;
+            for (int i = 1; i <= 12; i++)
+            {
+                power *= -deviation;
+                sum += power / i;
+            }
+
+            return sum;
+        }
+
+        int shift = (int)Math.Max(0, (long)Mantissa.GetBitLength() - 60);
+        return Math.Log((double)(Mantissa >> shift)) + ((shift + (double)Exponent) * Math.Log(2));
     }
 
     /// <summary>Nearest double within one unit in the last place; 0 and infinity beyond the range.</summary>
     public double ToDouble()
     {
-        int shift = (int)Math.Max(0, (long)Mantissa.GetBitLength() - 64);
+        int shift = (int)Math.Max(0, (long)BigInteger.Abs(Mantissa).GetBitLength() - 64);
         return Math.ScaleB((double)(Mantissa >> shift), Exponent + shift);
     }
 
