@@ -94,7 +94,7 @@ public sealed class CancellationTests
 
     private static async Task ReadAsync(UncertainSet<int> query, CancellationToken cancellationToken)
     {
-        await foreach (Answer<int> answer in query.EvaluateAsync().WithCancellation(cancellationToken))
+        await foreach (Answer<int> answer in query.EvaluateAsync(null, CancellationToken.None).WithCancellation(cancellationToken))
         {
             GC.KeepAlive(answer);
         }
