@@ -10,15 +10,16 @@ namespace Uncertain;
 public sealed partial class UncertainSet<T>
 {
     /// <summary>
-    /// For each element all elements of a set that may depend on it; a result is there where both are. A set that does not depend on
-    /// the element is run once, one that does is run for each element: where the dependence is an equality of keys, <see cref="Join"/>
-    /// is faster.
+    /// For each element all elements of a set that may depend on it; a result is there where both are. A set that depends on the element
+    /// by a filter only is run once, and joined where the filter is an equality; one that depends on it in another way is run for each
+    /// element.
     /// </summary>
     /// <param name="collectionSelector">The set for an element, of the same world space.</param>
     /// <param name="resultSelector">The result for a pair.</param>
     public UncertainSet<TResult> SelectMany<TCollection, TResult>(
         Expression<Func<T, UncertainSet<TCollection>>> collectionSelector, Expression<Func<T, TCollection, TResult>> resultSelector) =>
-        new(new SelectManyNode<TCollection, TResult>(Node, collectionSelector, resultSelector));
+        DependentSet.TryFlatten(this, collectionSelector, resultSelector)
+            ?? new UncertainSet<TResult>(new SelectManyNode<TCollection, TResult>(Node, collectionSelector, resultSelector));
 
     /// <summary>For each element all elements of a set that may depend on it; see the other overload.</summary>
     /// <param name="selector">The set for an element, of the same world space.</param>
@@ -86,12 +87,32 @@ public sealed partial class UncertainSet<T>
             yield return output;
         }
 
+        public override PlanNode<TResult>? TryJoin(Expression<Func<TResult, bool>> condition)
+        {
+            if (_fixed is null || ProductKeys.Find(_result.Tree, condition) is not var (outer, inner))
+            {
+                return null;
+            }
+
+            // The key's type is known only now.
+            return (PlanNode<TResult>)((Func<LambdaExpression, LambdaExpression, PlanNode<TResult>>)JoinOn<object>).Method
+                .GetGenericMethodDefinition()
+                .MakeGenericMethod(outer.ReturnType)
+                .Invoke(this, [outer, inner])!;
+        }
+
         public override Conjunction Translate()
         {
             Conjunction outer = _input.Translate();
             Conjunction inner = _fixed?.Translate() ?? DependentSet.Translate(outer.Apply(_collection.Tree));
             return outer.And(inner) with { Value = Substitution.Apply(_result.Tree, outer.Value, inner.Value) };
         }
+
+        private JoinNode<TCollection, TKey, TResult> JoinOn<TKey>(LambdaExpression outer, LambdaExpression inner) => new(
+            new JoinInputs<T, TCollection, TKey>(
+                _input, new UncertainSet<TCollection>(_fixed!), (Expression<Func<T, TKey>>)outer,
+                (Expression<Func<TCollection, TKey>>)inner, null, nameof(SelectMany)),
+            _result.Tree);
 
         private PlanNode<TCollection> SetFor(T value) => SameWorlds.Require(
             Worlds,

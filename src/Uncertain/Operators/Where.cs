@@ -8,9 +8,16 @@ namespace Uncertain;
 /// <content>Selection.</content>
 public sealed partial class UncertainSet<T>
 {
-    /// <summary>The elements that satisfy a condition, with the lineages they had. Linear.</summary>
+    /// <summary>
+    /// The elements that satisfy a condition, with the lineages they had. Linear. On a product, an equality between the two sides is run
+    /// as a join.
+    /// </summary>
     /// <param name="predicate">The condition on a value; the same value must always give the same result.</param>
-    public UncertainSet<T> Where(Expression<Func<T, bool>> predicate) => new(new WhereNode(Node, predicate));
+    public UncertainSet<T> Where(Expression<Func<T, bool>> predicate) 
+    {
+        ArgumentNullException.ThrowIfNull(predicate);
+        return new UncertainSet<T>(new WhereNode(Node.TryJoin(predicate) ?? Node, predicate));
+    }
 
     private sealed class WhereNode(PlanNode<T> input, Expression<Func<T, bool>> predicate) : PlanNode<T>(input.Worlds, input)
     {

@@ -1,3 +1,4 @@
+using System.Linq.Expressions;
 using Uncertain.Execution;
 
 namespace Uncertain.Planning;
@@ -10,4 +11,9 @@ internal abstract class PlanNode<T>(WorldSpace worlds, params PlanNode[] inputs)
     /// then those of all its records together.
     /// </summary>
     public abstract IEnumerable<Batch<T>> Run(QueryRun run);
+
+    /// <summary>
+    /// This step with a condition on its records, or null if they can only be made and then tested. A product becomes a join here.
+    /// </summary>
+    public virtual PlanNode<T>? TryJoin(Expression<Func<T, bool>> condition) => null;
 }

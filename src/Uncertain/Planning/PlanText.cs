@@ -18,7 +18,7 @@ internal static partial class PlanText
 
     /// <summary>' into result', or nothing where the result only pairs what was joined, as query syntax does between clauses.</summary>
     public static string Into(LambdaExpression result) =>
-        result.Body is NewExpression { Members: not null } pair && pair.Arguments.SequenceEqual(result.Parameters)
+        result.Body is NewExpression pair && pair.Arguments.SequenceEqual(result.Parameters)
             ? ""
             : $" into {Clean(string.Join(", ", result.Parameters.Select(p => IsRowSoFar(p.Name) ? "_" : p.Name)) + " => " + result.Body)}";
 
@@ -41,6 +41,7 @@ internal static partial class PlanText
         text = RowSoFar().Replace(text, "");
         text = text.Replace(" AndAlso ", " and ", StringComparison.Ordinal).Replace(" OrElse ", " or ", StringComparison.Ordinal);
         text = AnonymousType().Replace(text, "new (");
+        text = Tuple().Replace(text, "(");
         return text.Length <= MaxLength ? text : string.Concat(text.AsSpan(0, MaxLength - 1), "…");
     }
 
@@ -51,6 +52,9 @@ internal static partial class PlanText
     // <>h__TransparentIdentifier0.card: the compiler's name for the row so far adds nothing to the range variable's.
     [GeneratedRegex(@"<>h__TransparentIdentifier\d+\.")]
     private static partial Regex RowSoFar();
+
+    [GeneratedRegex(@"new ValueTuple`\d+\(")]
+    private static partial Regex Tuple();
 
     [GeneratedRegex(@"new <>f__AnonymousType\d+`\d+\(")]
     private static partial Regex AnonymousType();

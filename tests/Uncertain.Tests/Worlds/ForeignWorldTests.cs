@@ -33,12 +33,20 @@ public sealed class ForeignWorldTests
     }
 
     [Fact]
+    public void SelectMany_ForeignSetFilteredByTheElement_IsRefused()
+    {
+        Assert.Equal(
+            "The other set of SelectMany (numbers: 2 records of Int32, independent)" + Remedy,
+            Assert.Throws<WorldSpaceMismatchException>(() => _own.SelectMany(x => _foreign.Where(y => y == x))).Message);
+    }
+
+    [Fact]
     public void SelectMany_ForeignSetForAnElement_IsRefusedWhenRun()
     {
-        UncertainSet<int> query = _own.SelectMany(x => _foreign.Where(y => y == x));
+        UncertainSet<int> query = _own.SelectMany(x => x == 1 ? _foreign : _own);
 
         Assert.Equal(
-            "The other set of SelectMany (where y => (y == Value))" + Remedy,
+            "The other set of SelectMany (numbers: 2 records of Int32, independent)" + Remedy,
             Assert.Throws<WorldSpaceMismatchException>(() => query.Derive()).Message);
     }
 

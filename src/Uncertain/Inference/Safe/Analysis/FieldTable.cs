@@ -79,7 +79,7 @@ internal sealed class FieldTable
             if (rows.Count == 1)
             {
                 Field field = table.Of(node);
-                ParameterExpression parameter = Expression.Parameter(node.Type, field.Name);
+                ParameterExpression parameter = Expression.Parameter(node.Type, PlanText.Of(node));
                 Fields.Add((parameter, field));
                 return parameter;
             }
