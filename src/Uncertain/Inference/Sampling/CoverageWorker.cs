@@ -18,9 +18,14 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
     private const int TermsPerCheck = 4096;
 
     private readonly AlignedWords _words = new(program.Draws.RowCount * Width);
-    private readonly AlignedWords _forced = new(program.Draws.RowCount * Width);
-    private readonly AlignedWords _fixed = new(program.Draws.VariableCount * Width);
     private readonly AlignedWords _covered = new(Width);
+
+    // The bits that the chosen terms force, and the variables that are forced. All 0 between blocks: a block touches few of
+    // them, which are listed.
+    private readonly AlignedWords _forced = new(program.Draws.RowCount * Width, zero: true);
+    private readonly AlignedWords _fixed = new(program.Draws.VariableCount * Width, zero: true);
+    private readonly List<int> _touchedForced = [];
+    private readonly List<int> _touchedFixed = [];
 
     // For each term the worlds that chose it, as a list through _next; numbers from 1, 0 for the end.
     private readonly int[] _firstLane = new int[program.TermCount];
@@ -47,8 +52,8 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
 
     private void Choose(long world, int lanes)
     {
-        _forced.Span.Clear();
-        _fixed.Span.Clear();
+        Reset(_forced.Span, _touchedForced);
+        Reset(_fixed.Span, _touchedFixed);
         for (int lane = 0; lane < lanes; lane++)
         {
             int term = program.Choose(world + lane);
@@ -84,11 +89,23 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
             }
 
             settled[(variable * Width) + column] |= bit;
+            _touchedFixed.Add((variable * Width) + column);
             if (!isNegated)
             {
                 forced[(row * Width) + column] |= bit;
+                _touchedForced.Add((row * Width) + column);
             }
         }
+    }
+
+    private static void Reset(Span<ulong> words, List<int> touched)
+    {
+        foreach (int index in touched)
+        {
+            words[index] = 0;
+        }
+
+        touched.Clear();
     }
 
     private bool Draw(ulong place)

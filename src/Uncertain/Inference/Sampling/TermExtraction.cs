@@ -74,6 +74,10 @@ internal sealed class TermExtraction
                     if (seen.Add(!operand))
                     {
                         disjuncts.Push(!operand);
+                        if ((disjuncts.Count & 0xFFFF) == 0 && _budget.HasEnded)
+                        {
+                            return false;
+                        }
                     }
                 }
             }

@@ -79,7 +79,19 @@ internal sealed class Terms
     public double LargestLogWeight { get; } = double.NegativeInfinity;
 
     /// <summary>All slots in use, some of them repeatedly.</summary>
-    public IEnumerable<int> Slots => _terms.SelectMany(term => _literals[term]).Select(literal => literal.Index);
+    public IEnumerable<int> Slots
+    {
+        get
+        {
+            foreach (Range term in _terms)
+            {
+                for (int i = term.Start.Value; i < term.End.Value; i++)
+                {
+                    yield return _literals[i].Index;
+                }
+            }
+        }
+    }
 
     /// <summary>The literals of a term: of each variable one positive one or some negative ones, by slot.</summary>
     public ReadOnlySpan<LineageRef> this[int term] => _literals.AsSpan(_terms[term]);
