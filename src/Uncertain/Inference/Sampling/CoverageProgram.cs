@@ -54,7 +54,7 @@ internal sealed class CoverageProgram
     public int TermCount => _starts.Length - 1;
 
     /// <summary>Vector operations that 512 worlds cost, roughly.</summary>
-    public long Work => (40L * Draws.RowCount) + Code.Length;
+    public long Work => (Draws.WorkPerRow * Draws.RowCount) + Code.Length;
 
     public int VariableOf(int row) => _variableOfRow[row];
 

@@ -128,7 +128,7 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
                 }
             }
 
-            if (!Spend(40L * (draws.EndRow(variable) - draws.FirstRow(variable))))
+            if (!Spend(Draws.WorkPerRow * (draws.EndRow(variable) - draws.FirstRow(variable))))
             {
                 return false;
             }

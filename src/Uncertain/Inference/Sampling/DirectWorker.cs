@@ -10,6 +10,9 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
     // Vector operations between two looks at the budget: well below a millisecond.
     private const long WorkPerCheck = 100_000;
 
+    // Tiles have whole vectors of the widest kind.
+    private const int Granularity = 8;
+
     private readonly AlignedWords _words = new(program.RowCount * width);
     private readonly long[] _successes = new long[program.Roots.Length];
     private long _work;
@@ -18,27 +21,31 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
 
     public bool Run(long from, long to)
     {
-        for (long world = from; world < to; world += 64L * width)
+        int tile;
+        for (long world = from; world < to; world += 64L * tile)
         {
-            if (!Draw((ulong)world / 64) || !Evaluate())
+            // The last tile is only as wide as it must be.
+            long needed = (to - world + (64 * Granularity) - 1) / (64 * Granularity) * Granularity;
+            tile = (int)Math.Min(width, needed);
+            if (!Draw((ulong)world / 64, tile) || !Evaluate(tile))
             {
                 return false;
             }
 
-            Count(to - world);
+            Count(to - world, tile);
         }
 
         return true;
     }
 
-    private bool Draw(ulong place)
+    private bool Draw(ulong place, int tile)
     {
         Draws draws = program.Draws;
         Span<ulong> words = _words.Span;
         for (int variable = 0; variable < draws.VariableCount; variable++)
         {
-            draws.Draw<TVector>(variable, place, words, width);
-            if (!Spend(40L * (draws.EndRow(variable) - draws.FirstRow(variable))))
+            draws.Draw<TVector>(variable, place, words, tile);
+            if (!Spend(Draws.WorkPerRow * (draws.EndRow(variable) - draws.FirstRow(variable)) * tile))
             {
                 return false;
             }
@@ -47,15 +54,15 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
         return true;
     }
 
-    private bool Evaluate()
+    private bool Evaluate(int tile)
     {
         ref ulong words = ref MemoryMarshal.GetReference(_words.Span);
         int row = program.Draws.RowCount;
         foreach (Range part in program.Parts)
         {
             ReadOnlySpan<int> code = program.Code.AsSpan(part);
-            row = GateKernel.Run<TVector>(code, row, ref words, width);
-            if (!Spend(code.Length))
+            row = GateKernel.Run<TVector>(code, row, ref words, tile);
+            if (!Spend((long)code.Length * tile))
             {
                 return false;
             }
@@ -64,13 +71,13 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
         return true;
     }
 
-    private void Count(long worlds)
+    private void Count(long worlds, int tile)
     {
         for (int root = 0; root < _successes.Length; root++)
         {
             int edge = program.Roots[root];
             ulong sign = (edge & 1) == 0 ? 0 : ulong.MaxValue;
-            ReadOnlySpan<ulong> row = _words.Span.Slice((edge >> 1) * width, width);
+            ReadOnlySpan<ulong> row = _words.Span.Slice((edge >> 1) * tile, tile);
             long count = 0;
             long left = worlds;
             foreach (ulong word in row)
@@ -93,7 +100,7 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
 
     private bool Spend(long work)
     {
-        _work += work * ((width + 7) / 8);
+        _work += work / Granularity;
         if (_work < WorkPerCheck)
         {
             return true;

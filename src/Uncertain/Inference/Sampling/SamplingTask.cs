@@ -10,7 +10,7 @@ namespace Uncertain.Inference.Sampling;
 internal sealed record SamplingTask(
     Accuracy Accuracy, ulong Seed, int Threads, long? MemoryBudget, VectorWidth Width, WorkBudget Budget)
 {
-    // A relative accuracy that cannot be reached ends here if there is no deadline: about a minute of one processor.
+    // A relative accuracy that cannot be reached ends here if there is no deadline: about half a minute of one processor.
     private const long WorkLimit = 1L << 36;
 
     /// <summary>Worlds after which no further stage begins.</summary>

@@ -35,8 +35,8 @@ internal sealed class WorldProgram
     /// <summary>For each formula 2 * row + (1 if negated).</summary>
     public int[] Roots { get; }
 
-    /// <summary>Vector operations of 512 bits that one world in 512 costs, roughly: a drawn bit costs as much as 40 operands.</summary>
-    public long Work => (40L * Draws.RowCount) + Code.Length;
+    /// <summary>Vector operations of 512 bits that one world in 512 costs, roughly.</summary>
+    public long Work => (Draws.WorkPerRow * Draws.RowCount) + Code.Length;
 
     /// <summary>Extracts the nodes below some formulas, none of them constant.</summary>
     /// <param name="arena">Holds the formulas.</param>
