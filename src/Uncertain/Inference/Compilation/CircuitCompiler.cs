@@ -46,28 +46,18 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
         }
     }
 
-    // Variables by first occurrence, in a walk from the outermost part inwards.
+    // Variables by first occurrence, users before operands: for circuits that were built step by step, the last step first.
     private List<int> NumberVariables(ModuleFormula module)
     {
         var variables = new List<int>();
         int[] mark = workspace.VariableMark;
         int[] vertex = workspace.VertexOfVariable;
         int stamp = workspace.NextStamp();
-        bool[] seen = new bool[module.Count];
-        var pending = new Stack<int>();
-        pending.Push(module.Count - 1);
-        while (pending.TryPop(out int node))
+        for (int node = module.Count - 1; node >= 0; node--)
         {
-            ReadOnlySpan<LineageRef> operands = module.Operands(node);
-            for (int i = operands.Length - 1; i >= 0; i--)
+            foreach (LineageRef operand in module.Operands(node))
             {
-                LineageRef operand = operands[i];
-                if (operand.IsNode && !seen[operand.Index - 1])
-                {
-                    seen[operand.Index - 1] = true;
-                    pending.Push(operand.Index - 1);
-                }
-                else if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
+                if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
                 {
                     int variable = atoms.Variable(operand.Index);
                     mark[variable] = stamp;

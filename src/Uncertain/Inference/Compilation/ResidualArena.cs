@@ -14,6 +14,8 @@ internal sealed class ResidualArena
     public const int True = 0;
     public const int False = 1;
 
+    private const long NodeBytes = 36;
+
     private readonly CompilationBudget _budget;
     private readonly AtomTable _atoms;
     private readonly int[] _rankOfVariable;
@@ -22,6 +24,8 @@ internal sealed class ResidualArena
     private int[] _pool = new int[128];
     private int[] _table = new int[128];
     private int _poolCount;
+    private int[] _units = new int[16];
+    private int[] _others = new int[16];
     private bool _isBuilding = true;
 
     /// <param name="atoms">The atoms.</param>
@@ -39,7 +43,7 @@ internal sealed class ResidualArena
 
     public int Count { get; private set; }
 
-    public long Bytes => (32L * _nodes.Length) + (4L * _pool.Length) + (4L * _table.Length);
+    public long Bytes => (NodeBytes * _nodes.Length) + (4L * _pool.Length) + (4L * _table.Length);
 
     /// <summary>The node of an index, to be read and marked; valid until the next node is made.</summary>
     public ref ResidualNode this[int index] => ref _nodes[index];
@@ -62,6 +66,7 @@ internal sealed class ResidualArena
                 WhenFalse = False,
                 WhenTrue = True,
                 Edge = _atoms.Edge(atom),
+                Kind = _atoms.IsManyOutcome(_atoms.Variable(atom)) ? ResidualKind.Plain : ResidualKind.Units,
             });
             _nodeOfAtom.Add(atom, index);
         }
@@ -69,8 +74,80 @@ internal sealed class ResidualArena
         return (index << 1) | (negated ? 1 : 0);
     }
 
-    /// <summary>The conjunction, simplified by constants, repeats and contradictions; changes <paramref name="operands"/>.</summary>
-    public int And(Span<int> operands)
+    /// <summary>The conjunction, simplified by constants, repeats and contradictions.</summary>
+    /// <remarks>
+    /// Literals come to the surface: they are taken out of operands, and the rest, the core, stays a formula of its own.
+    /// </remarks>
+    public int And(ReadOnlySpan<int> operands)
+    {
+        int units = 0;
+        int others = 0;
+        Reserve(ref _units, operands.Length);
+        Reserve(ref _others, operands.Length);
+        foreach (int operand in operands)
+        {
+            ResidualKind kind = _nodes[operand >> 1].Kind;
+            if (kind == ResidualKind.Plain || ((operand & 1) != 0 && _nodes[operand >> 1].Count > 0))
+            {
+                _others[others++] = operand;
+            }
+            else if (kind == ResidualKind.Units)
+            {
+                _units[units++] = operand;
+            }
+            else
+            {
+                ReadOnlySpan<int> inner = Operands(operand >> 1);
+                Reserve(ref _units, operands.Length + units + inner.Length);
+                inner[..^1].CopyTo(_units.AsSpan(units));
+                units += inner.Length - 1;
+                _others[others++] = inner[^1];
+            }
+        }
+
+        int core = Plain(_others.AsSpan(0, others), ResidualKind.Plain);
+        if (units == 0 || core == False)
+        {
+            return core;
+        }
+
+        if (core == True)
+        {
+            return Plain(_units.AsSpan(0, units), ResidualKind.Units);
+        }
+
+        int distinct = Simplify(_units.AsSpan(0, units));
+        if (distinct < 0)
+        {
+            return False;
+        }
+
+        _units[distinct] = core;
+        return Intern(_units.AsSpan(0, distinct + 1), ResidualKind.UnitsAndCore);
+    }
+
+    private static void Reserve(ref int[] buffer, int count)
+    {
+        if (buffer.Length <= count)
+        {
+            Array.Resize(ref buffer, Math.Max(count + 1, buffer.Length * 2));
+        }
+    }
+
+    private int Plain(Span<int> operands, ResidualKind kind)
+    {
+        int kept = Simplify(operands);
+        return kept switch
+        {
+            < 0 => False,
+            0 => True,
+            1 => operands[0],
+            _ => Intern(operands[..kept], kind),
+        };
+    }
+
+    /// <summary>Sorts and drops constants and repeats; returns how many stay, -1 for a contradiction.</summary>
+    private static int Simplify(Span<int> operands)
     {
         Sort(operands);
         int kept = 0;
@@ -84,19 +161,14 @@ internal sealed class ResidualArena
 
             if ((operand ^ previous) == 1)
             {
-                return False;
+                return -1;
             }
 
             operands[kept++] = operand;
             previous = operand;
         }
 
-        return kept switch
-        {
-            0 => True,
-            1 => operands[0],
-            _ => Intern(operands[..kept]),
-        };
+        return kept;
     }
 
     private static void Sort(Span<int> operands)
@@ -121,7 +193,7 @@ internal sealed class ResidualArena
         }
     }
 
-    private int Intern(ReadOnlySpan<int> operands)
+    private int Intern(ReadOnlySpan<int> operands, ResidualKind kind)
     {
         uint hash = Hash(operands);
         int mask = _table.Length - 1;
@@ -137,7 +209,7 @@ internal sealed class ResidualArena
             bucket = (bucket + 1) & mask;
         }
 
-        int made = AppendConjunction(operands);
+        int made = AppendConjunction(operands, kind);
         _table[bucket] = made;
         if (Count * 3L > _table.Length * 2L)
         {
@@ -147,7 +219,7 @@ internal sealed class ResidualArena
         return made << 1;
     }
 
-    private int AppendConjunction(ReadOnlySpan<int> operands)
+    private int AppendConjunction(ReadOnlySpan<int> operands, ResidualKind kind)
     {
         if (!_isBuilding)
         {
@@ -171,6 +243,7 @@ internal sealed class ResidualArena
             WhenFalse = -1,
             WhenTrue = -1,
             Edge = -1,
+            Kind = kind,
         };
         foreach (int operand in operands)
         {
@@ -188,7 +261,7 @@ internal sealed class ResidualArena
     {
         if (Count == _nodes.Length)
         {
-            _budget.Bytes(32L * _nodes.Length);
+            _budget.Bytes(NodeBytes * _nodes.Length);
             Array.Resize(ref _nodes, _nodes.Length * 2);
         }
 
