@@ -15,6 +15,7 @@ internal sealed class ResidualArena
     public const int False = 1;
 
     private const long NodeBytes = 36;
+    private const int Few = 24;
 
     private readonly CompilationBudget _budget;
     private readonly AtomTable _atoms;
@@ -105,6 +106,7 @@ internal sealed class ResidualArena
             }
         }
 
+        others = Flatten(others);
         int core = Plain(_others.AsSpan(0, others), ResidualKind.Plain);
         if (units == 0 || core == False)
         {
@@ -124,6 +126,40 @@ internal sealed class ResidualArena
 
         _units[distinct] = core;
         return Intern(_units.AsSpan(0, distinct + 1), ResidualKind.UnitsAndCore);
+    }
+
+    /// <summary>
+    /// Takes conjunctions up while they are few together: equal sets of operands then are one formula, however they came
+    /// together. Long ones stay trees, of which a decision rebuilds one path.
+    /// </summary>
+    private int Flatten(int count)
+    {
+        int total = count;
+        foreach (int operand in _others.AsSpan(0, count))
+        {
+            total += (operand & 1) == 0 && _nodes[operand >> 1].Count > 0 ? _nodes[operand >> 1].Count - 1 : 0;
+        }
+
+        if (total == count || total > Few)
+        {
+            return count;
+        }
+
+        Reserve(ref _others, total);
+        int end = count;
+        for (int i = 0; i < count; i++)
+        {
+            int operand = _others[i];
+            if ((operand & 1) == 0 && _nodes[operand >> 1].Count > 0)
+            {
+                ReadOnlySpan<int> inner = Operands(operand >> 1);
+                _others[i] = inner[0];
+                inner[1..].CopyTo(_others.AsSpan(end));
+                end += inner.Length - 1;
+            }
+        }
+
+        return end;
     }
 
     private static void Reserve(ref int[] buffer, int count)
