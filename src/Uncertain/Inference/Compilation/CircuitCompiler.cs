@@ -4,19 +4,22 @@ using Uncertain.Lineages;
 namespace Uncertain.Inference.Compilation;
 
 /// <summary>
-/// Compiles a module that is no list of terms. Two variable orders compete, each with a growing share of the budget: along
-/// an elimination tree of the circuit, gates included, and by first occurrence from the outermost part inwards.
+/// Compiles a module that is no list of terms. Two variable orders compete, each with a growing share of the budget: by first
+/// occurrence from the last made part back to the first, and along an elimination tree of the circuit, gates included.
 /// </summary>
 internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
 {
     private const long FirstTrial = 20_000;
     private const int TrialGrowth = 4;
 
+    // Residuals of step-by-step circuits are disjunctions of many open ends, and equal ones must be recognised.
+    private const int FlatWidth = 512;
+
     /// <summary>The edge to the compiled module.</summary>
     public int Compile(ModuleFormula module)
     {
         List<int> variables = NumberVariables(module);
-        int[][] orders = [ByTree(module, variables), [.. Enumerable.Range(0, variables.Count)]];
+        int[][] orders = [[.. Enumerable.Range(0, variables.Count)], ByTree(module, variables)];
         long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
         for (int trial = 0; ; trial++)
         {
@@ -103,7 +106,7 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             ranks[variableOfRank[rank]] = rank;
         }
 
-        var arena = new ResidualArena(atoms, ranks, budget);
+        var arena = new ResidualArena(atoms, ranks, FlatWidth, budget);
         try
         {
             int root = Import(module, arena);

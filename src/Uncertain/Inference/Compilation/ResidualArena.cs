@@ -15,11 +15,11 @@ internal sealed class ResidualArena
     public const int False = 1;
 
     private const long NodeBytes = 36;
-    private const int Few = 24;
 
     private readonly CompilationBudget _budget;
     private readonly AtomTable _atoms;
     private readonly int[] _rankOfVariable;
+    private readonly int _flatWidth;
     private readonly IntMap _nodeOfAtom = new(16);
     private ResidualNode[] _nodes = new ResidualNode[64];
     private int[] _pool = new int[128];
@@ -31,9 +31,11 @@ internal sealed class ResidualArena
 
     /// <param name="atoms">The atoms.</param>
     /// <param name="rankOfVariable">When each variable is decided; read when an atom is first used.</param>
+    /// <param name="flatWidth">Up to how many operands nested conjunctions become one.</param>
     /// <param name="budget">Pays for nodes and bytes.</param>
-    public ResidualArena(AtomTable atoms, int[] rankOfVariable, CompilationBudget budget)
+    public ResidualArena(AtomTable atoms, int[] rankOfVariable, int flatWidth, CompilationBudget budget)
     {
+        _flatWidth = flatWidth;
         _atoms = atoms;
         _rankOfVariable = rankOfVariable;
         _budget = budget;
@@ -140,7 +142,7 @@ internal sealed class ResidualArena
             total += (operand & 1) == 0 && _nodes[operand >> 1].Count > 0 ? _nodes[operand >> 1].Count - 1 : 0;
         }
 
-        if (total == count || total > Few)
+        if (total == count || total > _flatWidth)
         {
             return count;
         }

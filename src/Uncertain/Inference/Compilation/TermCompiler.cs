@@ -11,6 +11,8 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
     // Up to here all pairs of a term's variables are joined; beyond, the terms become vertices between them.
     private const long JoinedPairs = 4_000_000;
 
+    private const int FlatWidth = 24;
+
     /// <summary>The edge to the compiled disjunction.</summary>
     public int Compile(TermList terms)
     {
@@ -28,7 +30,7 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
             ranks[variableOfRank[rank]] = rank;
         }
 
-        var arena = new ResidualArena(atoms, ranks, budget);
+        var arena = new ResidualArena(atoms, ranks, FlatWidth, budget);
         int root = Nest(arena, terms, tree, homes);
         arena.StartDeciding();
         int edge = new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
