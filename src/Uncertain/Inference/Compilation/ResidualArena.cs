@@ -23,7 +23,7 @@ internal sealed class ResidualArena
     private readonly IntMap _nodeOfAtom = new(16);
     private ResidualNode[] _nodes = new ResidualNode[64];
     private int[] _pool = new int[128];
-    private int[] _table = new int[128];
+    private long[] _table = new long[128];
     private int _poolCount;
     private int[] _units = new int[16];
     private int[] _others = new int[16];
@@ -46,7 +46,7 @@ internal sealed class ResidualArena
 
     public int Count { get; private set; }
 
-    public long Bytes => (NodeBytes * _nodes.Length) + (4L * _pool.Length) + (4L * _table.Length);
+    public long Bytes => (NodeBytes * _nodes.Length) + (4L * _pool.Length) + (8L * _table.Length);
 
     /// <summary>The node of an index, to be read and marked; valid until the next node is made.</summary>
     public ref ResidualNode this[int index] => ref _nodes[index];
@@ -231,15 +231,16 @@ internal sealed class ResidualArena
         }
     }
 
+    // An entry is the hash in the upper half and the index in the lower; 0 is free.
     private int Intern(ReadOnlySpan<int> operands, ResidualKind kind)
     {
         uint hash = Hash(operands);
         int mask = _table.Length - 1;
         int bucket = (int)hash & mask;
-        for (int index = _table[bucket]; index != 0; index = _table[bucket])
+        for (long entry = _table[bucket]; entry != 0; entry = _table[bucket])
         {
-            ref ResidualNode node = ref _nodes[index];
-            if (node.Count == operands.Length && _pool.AsSpan(node.First, node.Count).SequenceEqual(operands))
+            int index = (int)entry;
+            if ((uint)(entry >> 32) == hash && Operands(index).SequenceEqual(operands))
             {
                 return index << 1;
             }
@@ -248,7 +249,7 @@ internal sealed class ResidualArena
         }
 
         int made = AppendConjunction(operands, kind);
-        _table[bucket] = made;
+        _table[bucket] = ((long)hash << 32) | (uint)made;
         if (Count * 3L > _table.Length * 2L)
         {
             GrowTable();
@@ -269,7 +270,7 @@ internal sealed class ResidualArena
         {
             int size = (int)Math.Min(Math.Max(needed, _pool.Length * 2L), Array.MaxLength);
             _budget.Bytes(4L * (size - _pool.Length));
-            Array.Resize(ref _pool, size);
+            Grow(ref _pool, _poolCount, size);
         }
 
         var node = new ResidualNode
@@ -300,29 +301,38 @@ internal sealed class ResidualArena
         if (Count == _nodes.Length)
         {
             _budget.Bytes(NodeBytes * _nodes.Length);
-            Array.Resize(ref _nodes, _nodes.Length * 2);
+            Grow(ref _nodes, Count, _nodes.Length * 2);
         }
 
         _nodes[Count] = node;
         return Count++;
     }
 
+    // What is behind the used part is written before it is read, so it need not be cleared.
+    private static void Grow<T>(ref T[] array, int used, int size)
+    {
+        T[] grown = GC.AllocateUninitializedArray<T>(size);
+        array.AsSpan(0, used).CopyTo(grown);
+        array = grown;
+    }
+
     private void GrowTable()
     {
-        _budget.Bytes(4L * _table.Length);
-        _table = new int[_table.Length * 2];
+        _budget.Bytes(8L * _table.Length);
+        long[] entries = _table;
+        _table = new long[entries.Length * 2];
         int mask = _table.Length - 1;
-        for (int index = 1; index < Count; index++)
+        foreach (long entry in entries)
         {
-            if (_nodes[index].Count > 0)
+            if (entry != 0)
             {
-                int bucket = (int)Hash(Operands(index)) & mask;
+                int bucket = (int)(entry >> 32) & mask;
                 while (_table[bucket] != 0)
                 {
                     bucket = (bucket + 1) & mask;
                 }
 
-                _table[bucket] = index;
+                _table[bucket] = entry;
             }
         }
     }
