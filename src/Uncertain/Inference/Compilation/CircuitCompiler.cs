@@ -4,19 +4,22 @@ using Uncertain.Lineages;
 namespace Uncertain.Inference.Compilation;
 
 /// <summary>
-/// Compiles a module that is no list of terms. Two variable orders compete, each with a growing share of the budget: along
-/// an elimination tree of the circuit, gates included, and by first occurrence from the outermost part inwards.
+/// Compiles a module that is no list of terms. Two variable orders compete, each with a growing share of the budget: by first
+/// occurrence from the last made part back to the first, and along an elimination tree of the circuit, gates included.
 /// </summary>
 internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
 {
     private const long FirstTrial = 20_000;
     private const int TrialGrowth = 4;
 
+    // Residuals of step-by-step circuits are disjunctions of many open ends, and equal ones must be recognised.
+    private const int FlatWidth = 512;
+
     /// <summary>The edge to the compiled module.</summary>
     public int Compile(ModuleFormula module)
     {
         List<int> variables = NumberVariables(module);
-        int[][] orders = [ByTree(module, variables), [.. Enumerable.Range(0, variables.Count)]];
+        int[][] orders = [[.. Enumerable.Range(0, variables.Count)], ByTree(module, variables)];
         long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
         for (int trial = 0; ; trial++)
         {
@@ -46,28 +49,18 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
         }
     }
 
-    // Variables by first occurrence, in a walk from the outermost part inwards.
+    // Variables by first occurrence, users before operands: for circuits that were built step by step, the last step first.
     private List<int> NumberVariables(ModuleFormula module)
     {
         var variables = new List<int>();
         int[] mark = workspace.VariableMark;
         int[] vertex = workspace.VertexOfVariable;
         int stamp = workspace.NextStamp();
-        bool[] seen = new bool[module.Count];
-        var pending = new Stack<int>();
-        pending.Push(module.Count - 1);
-        while (pending.TryPop(out int node))
+        for (int node = module.Count - 1; node >= 0; node--)
         {
-            ReadOnlySpan<LineageRef> operands = module.Operands(node);
-            for (int i = operands.Length - 1; i >= 0; i--)
+            foreach (LineageRef operand in module.Operands(node))
             {
-                LineageRef operand = operands[i];
-                if (operand.IsNode && !seen[operand.Index - 1])
-                {
-                    seen[operand.Index - 1] = true;
-                    pending.Push(operand.Index - 1);
-                }
-                else if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
+                if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
                 {
                     int variable = atoms.Variable(operand.Index);
                     mark[variable] = stamp;
@@ -113,7 +106,7 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             ranks[variableOfRank[rank]] = rank;
         }
 
-        var arena = new ResidualArena(atoms, ranks, budget);
+        var arena = new ResidualArena(atoms, ranks, FlatWidth, budget);
         try
         {
             int root = Import(module, arena);

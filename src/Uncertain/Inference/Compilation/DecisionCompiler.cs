@@ -1,3 +1,5 @@
+using System.Runtime.InteropServices;
+
 namespace Uncertain.Inference.Compilation;
 
 /// <summary>
@@ -20,7 +22,9 @@ internal sealed class DecisionCompiler(
     private const int Many = 2;
 
     private readonly Conditioning _conditioning = new(arena);
+    private readonly UnitConditioning _units = new(arena);
     private readonly Stack<Frame> _frames = new();
+    private readonly List<int> _literals = [];
     private readonly List<int> _occurring = [];
     private int[] _children = new int[256];
     private int _childCount;
@@ -69,9 +73,14 @@ internal sealed class DecisionCompiler(
         budget.Step();
         int start = _childCount;
         int groups = SplitByRange(index);
-        if (groups > 1)
+        if (groups == 1 && arena[index].Kind != ResidualKind.Plain)
         {
-            _frames.Push(new Frame(index, Split, start, groups, 0, 0));
+            groups = SplitUnits(index);
+        }
+
+        if (groups != 1)
+        {
+            _frames.Push(new Frame(index, Split, start, Math.Max(groups, 1), 0, 0));
             return;
         }
 
@@ -109,6 +118,77 @@ internal sealed class DecisionCompiler(
         }
 
         _frames.Push(new Frame(index, Many, start, _occurring.Count + 1, rank, 0));
+    }
+
+    /// <summary>
+    /// Puts the literals among the operands on the children stack, and the core given that they hold, which is independent
+    /// of them; returns how many those are, 0 for a contradiction.
+    /// </summary>
+    private int SplitUnits(int index)
+    {
+        _literals.Clear();
+        ReadOnlySpan<int> operands = arena.Operands(index);
+        int core = ResidualArena.True;
+        if (arena[index].Kind == ResidualKind.UnitsAndCore)
+        {
+            core = operands[^1];
+            operands = operands[..^1];
+        }
+
+        OpenUnits(operands);
+        _literals.Sort();
+        int kept = 0;
+        for (int i = 0; i < _literals.Count; i++)
+        {
+            if (kept > 0 && (_literals[kept - 1] ^ _literals[i]) == 1)
+            {
+                AddChild(ResidualArena.False);
+                return 0;
+            }
+
+            if (kept == 0 || _literals[kept - 1] != _literals[i])
+            {
+                _literals[kept++] = _literals[i];
+            }
+        }
+
+        _literals.RemoveRange(kept, _literals.Count - kept);
+        Span<int> literals = CollectionsMarshal.AsSpan(_literals);
+        core = _units.Given(core, literals);
+        foreach (int literal in literals)
+        {
+            AddChild(literal);
+        }
+
+        AddChild(core);
+        return literals.Length + 1;
+    }
+
+    private void OpenUnits(ReadOnlySpan<int> operands)
+    {
+        foreach (int operand in operands)
+        {
+            _literals.Add(operand);
+        }
+
+        // Opened operands are put behind; what stays are literals.
+        int kept = 0;
+        for (int i = 0; i < _literals.Count; i++)
+        {
+            if (arena[_literals[i] >> 1].Count == 0)
+            {
+                _literals[kept++] = _literals[i];
+            }
+            else
+            {
+                foreach (int inner in arena.Operands(_literals[i] >> 1))
+                {
+                    _literals.Add(inner);
+                }
+            }
+        }
+
+        _literals.RemoveRange(kept, _literals.Count - kept);
     }
 
     /// <summary>

@@ -12,12 +12,16 @@ namespace Uncertain.Inference.Compilation;
 internal sealed class EliminationTree
 {
     private const int CountedNeighbours = 1 << 12;
+    private const int UpdatedNeighbours = 128;
 
     private readonly SparseGraph _graph;
     private readonly CompilationBudget _budget;
     private readonly int[] _mark;
     private readonly long[] _key;
+    private readonly List<int> _changed = [];
+    private readonly int[] _changedMark;
     private int _stamp;
+    private int _round;
 
     private EliminationTree(SparseGraph graph, CompilationBudget budget)
     {
@@ -25,6 +29,7 @@ internal sealed class EliminationTree
         _budget = budget;
         _mark = new int[graph.Count];
         _key = new long[graph.Count];
+        _changedMark = new int[graph.Count];
         Order = new int[graph.Count];
         Parents = new int[graph.Count];
     }
@@ -75,8 +80,10 @@ internal sealed class EliminationTree
 
             _key[v] = -1;
             Order[eliminated++] = v;
+            _round++;
+            _changed.Clear();
             Connect(v);
-            foreach (int u in Remaining(v))
+            foreach (int u in _changed)
             {
                 long changed = Key(u);
                 if (changed != _key[u])
@@ -115,12 +122,7 @@ internal sealed class EliminationTree
 
     private int EdgesAmong(int v)
     {
-        _stamp++;
-        foreach (int u in Remaining(v))
-        {
-            _mark[u] = _stamp;
-        }
-
+        Mark(v);
         int edges = 0;
         foreach (int u in Remaining(v))
         {
@@ -139,23 +141,61 @@ internal sealed class EliminationTree
         Width = Math.Max(Width, remaining.Length);
         foreach (int u in remaining)
         {
-            _stamp++;
-            _mark[u] = _stamp;
-            foreach (int w in Remaining(u))
-            {
-                _mark[w] = _stamp;
-            }
-
+            Changed(u);
             _graph.Remove(u, v);
-            foreach (int w in remaining)
+        }
+
+        for (int i = 0; i < remaining.Length; i++)
+        {
+            int u = remaining[i];
+            Mark(u);
+            for (int j = i + 1; j < remaining.Length; j++)
             {
+                int w = remaining[j];
                 if (_mark[w] != _stamp)
                 {
+                    // The common neighbours of the two have one missing edge less.
+                    ChangedAmong(w);
                     _graph.Append(u, w);
+                    _graph.Append(w, u);
                 }
             }
 
-            _budget.Step(1 + (remaining.Length / 64));
+            _budget.Step(1 + (remaining.Length / 16));
+        }
+    }
+
+    private void Mark(int u)
+    {
+        _stamp++;
+        foreach (int w in Remaining(u))
+        {
+            _mark[w] = _stamp;
+        }
+    }
+
+    private void ChangedAmong(int w)
+    {
+        if (_graph.Degrees[w] > UpdatedNeighbours)
+        {
+            return;
+        }
+
+        foreach (int x in Remaining(w))
+        {
+            if (_mark[x] == _stamp)
+            {
+                Changed(x);
+            }
+        }
+    }
+
+    private void Changed(int v)
+    {
+        if (_changedMark[v] != _round)
+        {
+            _changedMark[v] = _round;
+            _changed.Add(v);
         }
     }
 

@@ -14,21 +14,28 @@ internal sealed class ResidualArena
     public const int True = 0;
     public const int False = 1;
 
+    private const long NodeBytes = 36;
+
     private readonly CompilationBudget _budget;
     private readonly AtomTable _atoms;
     private readonly int[] _rankOfVariable;
+    private readonly int _flatWidth;
     private readonly IntMap _nodeOfAtom = new(16);
     private ResidualNode[] _nodes = new ResidualNode[64];
     private int[] _pool = new int[128];
-    private int[] _table = new int[128];
+    private long[] _table = new long[128];
     private int _poolCount;
+    private int[] _units = new int[16];
+    private int[] _others = new int[16];
     private bool _isBuilding = true;
 
     /// <param name="atoms">The atoms.</param>
     /// <param name="rankOfVariable">When each variable is decided; read when an atom is first used.</param>
+    /// <param name="flatWidth">Up to how many operands nested conjunctions become one.</param>
     /// <param name="budget">Pays for nodes and bytes.</param>
-    public ResidualArena(AtomTable atoms, int[] rankOfVariable, CompilationBudget budget)
+    public ResidualArena(AtomTable atoms, int[] rankOfVariable, int flatWidth, CompilationBudget budget)
     {
+        _flatWidth = flatWidth;
         _atoms = atoms;
         _rankOfVariable = rankOfVariable;
         _budget = budget;
@@ -39,7 +46,7 @@ internal sealed class ResidualArena
 
     public int Count { get; private set; }
 
-    public long Bytes => (32L * _nodes.Length) + (4L * _pool.Length) + (4L * _table.Length);
+    public long Bytes => (NodeBytes * _nodes.Length) + (4L * _pool.Length) + (8L * _table.Length);
 
     /// <summary>The node of an index, to be read and marked; valid until the next node is made.</summary>
     public ref ResidualNode this[int index] => ref _nodes[index];
@@ -62,6 +69,7 @@ internal sealed class ResidualArena
                 WhenFalse = False,
                 WhenTrue = True,
                 Edge = _atoms.Edge(atom),
+                Kind = _atoms.IsManyOutcome(_atoms.Variable(atom)) ? ResidualKind.Plain : ResidualKind.Units,
             });
             _nodeOfAtom.Add(atom, index);
         }
@@ -69,8 +77,115 @@ internal sealed class ResidualArena
         return (index << 1) | (negated ? 1 : 0);
     }
 
-    /// <summary>The conjunction, simplified by constants, repeats and contradictions; changes <paramref name="operands"/>.</summary>
-    public int And(Span<int> operands)
+    /// <summary>The conjunction, simplified by constants, repeats and contradictions.</summary>
+    /// <remarks>
+    /// Literals come to the surface: they are taken out of operands, and the rest, the core, stays a formula of its own.
+    /// </remarks>
+    public int And(ReadOnlySpan<int> operands)
+    {
+        int units = 0;
+        int others = 0;
+        Reserve(ref _units, operands.Length);
+        Reserve(ref _others, operands.Length);
+        foreach (int operand in operands)
+        {
+            ResidualKind kind = _nodes[operand >> 1].Kind;
+            if (kind == ResidualKind.Plain || ((operand & 1) != 0 && _nodes[operand >> 1].Count > 0))
+            {
+                _others[others++] = operand;
+            }
+            else if (kind == ResidualKind.Units)
+            {
+                _units[units++] = operand;
+            }
+            else
+            {
+                ReadOnlySpan<int> inner = Operands(operand >> 1);
+                Reserve(ref _units, operands.Length + units + inner.Length);
+                inner[..^1].CopyTo(_units.AsSpan(units));
+                units += inner.Length - 1;
+                _others[others++] = inner[^1];
+            }
+        }
+
+        others = Flatten(others);
+        int core = Plain(_others.AsSpan(0, others), ResidualKind.Plain);
+        if (units == 0 || core == False)
+        {
+            return core;
+        }
+
+        if (core == True)
+        {
+            return Plain(_units.AsSpan(0, units), ResidualKind.Units);
+        }
+
+        int distinct = Simplify(_units.AsSpan(0, units));
+        if (distinct < 0)
+        {
+            return False;
+        }
+
+        _units[distinct] = core;
+        return Intern(_units.AsSpan(0, distinct + 1), ResidualKind.UnitsAndCore);
+    }
+
+    /// <summary>
+    /// Takes conjunctions up while they are few together: equal sets of operands then are one formula, however they came
+    /// together. Long ones stay trees, of which a decision rebuilds one path.
+    /// </summary>
+    private int Flatten(int count)
+    {
+        int total = count;
+        foreach (int operand in _others.AsSpan(0, count))
+        {
+            total += (operand & 1) == 0 && _nodes[operand >> 1].Count > 0 ? _nodes[operand >> 1].Count - 1 : 0;
+        }
+
+        if (total == count || total > _flatWidth)
+        {
+            return count;
+        }
+
+        Reserve(ref _others, total);
+        int end = count;
+        for (int i = 0; i < count; i++)
+        {
+            int operand = _others[i];
+            if ((operand & 1) == 0 && _nodes[operand >> 1].Count > 0)
+            {
+                ReadOnlySpan<int> inner = Operands(operand >> 1);
+                _others[i] = inner[0];
+                inner[1..].CopyTo(_others.AsSpan(end));
+                end += inner.Length - 1;
+            }
+        }
+
+        return end;
+    }
+
+    private static void Reserve(ref int[] buffer, int count)
+    {
+        if (buffer.Length <= count)
+        {
+            Array.Resize(ref buffer, Math.Max(count + 1, buffer.Length * 2));
+        }
+    }
+
+    private int Plain(Span<int> operands, ResidualKind kind)
+    {
+        int kept = Simplify(operands);
+        return kept switch
+        {
+            < 0 => False,
+            0 => True,
+            1 => operands[0],
+            _ => Intern(operands[..kept], kind),
+        };
+    }
+
+    /// <summary>Sorts and drops constants and repeats; returns how many stay, -1 for a contradiction.</summary>
+    private static int Simplify(Span<int> operands)
     {
         Sort(operands);
         int kept = 0;
@@ -84,19 +199,14 @@ internal sealed class ResidualArena
 
             if ((operand ^ previous) == 1)
             {
-                return False;
+                return -1;
             }
 
             operands[kept++] = operand;
             previous = operand;
         }
 
-        return kept switch
-        {
-            0 => True,
-            1 => operands[0],
-            _ => Intern(operands[..kept]),
-        };
+        return kept;
     }
 
     private static void Sort(Span<int> operands)
@@ -121,15 +231,16 @@ internal sealed class ResidualArena
         }
     }
 
-    private int Intern(ReadOnlySpan<int> operands)
+    // An entry is the hash in the upper half and the index in the lower; 0 is free.
+    private int Intern(ReadOnlySpan<int> operands, ResidualKind kind)
     {
         uint hash = Hash(operands);
         int mask = _table.Length - 1;
         int bucket = (int)hash & mask;
-        for (int index = _table[bucket]; index != 0; index = _table[bucket])
+        for (long entry = _table[bucket]; entry != 0; entry = _table[bucket])
         {
-            ref ResidualNode node = ref _nodes[index];
-            if (node.Count == operands.Length && _pool.AsSpan(node.First, node.Count).SequenceEqual(operands))
+            int index = (int)entry;
+            if ((uint)(entry >> 32) == hash && Operands(index).SequenceEqual(operands))
             {
                 return index << 1;
             }
@@ -137,8 +248,8 @@ internal sealed class ResidualArena
             bucket = (bucket + 1) & mask;
         }
 
-        int made = AppendConjunction(operands);
-        _table[bucket] = made;
+        int made = AppendConjunction(operands, kind);
+        _table[bucket] = ((long)hash << 32) | (uint)made;
         if (Count * 3L > _table.Length * 2L)
         {
             GrowTable();
@@ -147,7 +258,7 @@ internal sealed class ResidualArena
         return made << 1;
     }
 
-    private int AppendConjunction(ReadOnlySpan<int> operands)
+    private int AppendConjunction(ReadOnlySpan<int> operands, ResidualKind kind)
     {
         if (!_isBuilding)
         {
@@ -159,7 +270,7 @@ internal sealed class ResidualArena
         {
             int size = (int)Math.Min(Math.Max(needed, _pool.Length * 2L), Array.MaxLength);
             _budget.Bytes(4L * (size - _pool.Length));
-            Array.Resize(ref _pool, size);
+            Grow(ref _pool, _poolCount, size);
         }
 
         var node = new ResidualNode
@@ -171,6 +282,7 @@ internal sealed class ResidualArena
             WhenFalse = -1,
             WhenTrue = -1,
             Edge = -1,
+            Kind = kind,
         };
         foreach (int operand in operands)
         {
@@ -188,30 +300,39 @@ internal sealed class ResidualArena
     {
         if (Count == _nodes.Length)
         {
-            _budget.Bytes(32L * _nodes.Length);
-            Array.Resize(ref _nodes, _nodes.Length * 2);
+            _budget.Bytes(NodeBytes * _nodes.Length);
+            Grow(ref _nodes, Count, _nodes.Length * 2);
         }
 
         _nodes[Count] = node;
         return Count++;
     }
 
+    // What is behind the used part is written before it is read, so it need not be cleared.
+    private static void Grow<T>(ref T[] array, int used, int size)
+    {
+        T[] grown = GC.AllocateUninitializedArray<T>(size);
+        array.AsSpan(0, used).CopyTo(grown);
+        array = grown;
+    }
+
     private void GrowTable()
     {
-        _budget.Bytes(4L * _table.Length);
-        _table = new int[_table.Length * 2];
+        _budget.Bytes(8L * _table.Length);
+        long[] entries = _table;
+        _table = new long[entries.Length * 2];
         int mask = _table.Length - 1;
-        for (int index = 1; index < Count; index++)
+        foreach (long entry in entries)
         {
-            if (_nodes[index].Count > 0)
+            if (entry != 0)
             {
-                int bucket = (int)Hash(Operands(index)) & mask;
+                int bucket = (int)(entry >> 32) & mask;
                 while (_table[bucket] != 0)
                 {
                     bucket = (bucket + 1) & mask;
                 }
 
-                _table[bucket] = index;
+                _table[bucket] = entry;
             }
         }
     }

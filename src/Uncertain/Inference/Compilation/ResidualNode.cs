@@ -20,6 +20,9 @@ internal struct ResidualNode
     /// <summary>The edge to its compiled form; -1 if not compiled yet.</summary>
     public int Edge;
 
+    /// <summary>What the operands are.</summary>
+    public ResidualKind Kind;
+
     /// <summary>The last walk that came here.</summary>
     public int Visit;
 }

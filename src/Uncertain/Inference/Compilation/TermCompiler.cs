@@ -11,6 +11,11 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
     // Up to here all pairs of a term's variables are joined; beyond, the terms become vertices between them.
     private const long JoinedPairs = 4_000_000;
 
+    // Wide formulas have many residuals, and equal ones must be recognised; narrow ones are long, and copies cost more.
+    private const int FlatWidth = 24;
+    private const int NarrowWidth = 8;
+    private const int Narrow = 8;
+
     /// <summary>The edge to the compiled disjunction.</summary>
     public int Compile(TermList terms)
     {
@@ -28,13 +33,15 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
             ranks[variableOfRank[rank]] = rank;
         }
 
-        var arena = new ResidualArena(atoms, ranks, budget);
+        var arena = new ResidualArena(atoms, ranks, FlatWidthFor(tree.Width), budget);
         int root = Nest(arena, terms, tree, homes);
         arena.StartDeciding();
         int edge = new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
         budget.Bytes(-arena.Bytes);
         return edge ^ 1;
     }
+
+    private static int FlatWidthFor(int width) => width <= 3 ? 0 : width <= Narrow ? NarrowWidth : FlatWidth;
 
     private EliminationTree BuildTree(TermList terms, int variables, int[] homes)
     {
