@@ -5,6 +5,8 @@ namespace Uncertain.Tests.Conventions;
 
 public sealed class PublicTypesTests
 {
+    private const BindingFlags Declared = BindingFlags.Public | BindingFlags.Instance | BindingFlags.Static | BindingFlags.DeclaredOnly;
+
     private static readonly Assembly s_library = typeof(WorldSpace).Assembly;
 
     public static TheoryData<Type> PublicTypes => [.. s_library.GetExportedTypes()];
@@ -28,9 +30,9 @@ public sealed class PublicTypesTests
     public void PublicType_Always_HasNoMutableState(Type type)
     {
         Assert.DoesNotContain(
-            type.GetFields(BindingFlags.Public | BindingFlags.Instance | BindingFlags.Static),
+            type.GetFields(Declared),
             field => !field.IsLiteral && !field.IsInitOnly && !type.IsEnum);
-        Assert.DoesNotContain(type.GetProperties(), property => property.SetMethod is { IsPublic: true } setter
+        Assert.DoesNotContain(type.GetProperties(Declared), property => property.SetMethod is { IsPublic: true } setter
             && !setter.ReturnParameter.GetRequiredCustomModifiers().Contains(typeof(System.Runtime.CompilerServices.IsExternalInit)));
     }
 
@@ -49,7 +51,7 @@ public sealed class PublicTypesTests
     public void PublicTypes_AsyncMethods_TakeATokenAtTheEndOrBeforeTheName()
     {
         IEnumerable<MethodInfo> methods = s_library.GetExportedTypes()
-            .SelectMany(type => type.GetMethods(BindingFlags.Public | BindingFlags.Instance | BindingFlags.Static | BindingFlags.DeclaredOnly))
+            .SelectMany(type => type.GetMethods(Declared))
             .Where(method => method.Name.EndsWith("Async", StringComparison.Ordinal));
 
         Assert.NotEmpty(methods);

@@ -63,6 +63,6 @@ public sealed class OptionsTests
         Assert.False(Accuracy.WithinFactor(0.01).IsMetBy(estimate));
     }
 
-    private static void Refuses(string message, Action call) =>
+    private static void Refuses(string message, Func<object> call) =>
         Assert.StartsWith(message, Assert.Throws<ArgumentOutOfRangeException>(call).Message, StringComparison.Ordinal);
 }
