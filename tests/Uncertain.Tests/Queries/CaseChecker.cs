@@ -41,6 +41,11 @@ public sealed class CaseChecker
             Answers++;
             Presence presence = PresenceOf(expected, answer);
             missing.Remove(answer);
+            if (presence.Value == 0 && answer is Row)
+            {
+                return $"{evaluator.Name}: {answer} is an answer in no world; {probability}, lineage {lineage}";
+            }
+
             if (Closeness.Differs(presence, probability) is { } difference)
             {
                 return $"{evaluator.Name}: {answer} has {difference}; {probability}, lineage {lineage}";

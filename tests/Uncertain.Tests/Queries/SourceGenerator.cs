@@ -9,7 +9,7 @@ internal static class SourceGenerator
 {
     private static readonly string?[] s_texts = ["a", "A", "b", "a", "b", null];
     private static readonly int?[] s_numbers = [0, 1, 2, 1, 0, null];
-    private static readonly double[] s_chances = [0.5, 0.25, 0.1, 0.3, 0.9, 0.7, 1 / 3.0, 1e-3, 1e-9, 1 - 1e-9, 0, 1];
+    private static readonly double[] s_chances = [0.5, 0.25, 0.1, 0.3, 0.9, 0.7, 1 / 3.0, 0.6, 1e-3, 1e-9, 1 - 1e-9, 0, 1];
     private static readonly RowLambda<int>[] s_groups = [new(x => x.B), new(x => x.A ?? 0), new(x => x.C == null ? 0 : x.C.Length)];
 
     public static double[][] Shared(Random random) =>
@@ -25,7 +25,8 @@ internal static class SourceGenerator
             _ => SourceForm.WithLineage,
         };
         var values = new List<Row>();
-        for (int count = random.Next(0, form == SourceForm.Independent ? 4 : 5); count > 0; count--)
+        int most = form == SourceForm.Independent ? 5 : 6;
+        for (int count = random.Next(12) == 0 ? 0 : random.Next(2, most); count > 0; count--)
         {
             values.Add(values.Count > 0 && random.Next(8) == 0
                 ? random.Pick(values)
@@ -43,7 +44,7 @@ internal static class SourceGenerator
         RowLambda<object?>? key = form != SourceForm.WithLineage && keys.Length > 0 && random.Chance(0.6) ? random.PickEarly(keys) : null;
         Dictionary<Row, double> chances = form == SourceForm.Alternatives
             ? GroupChances(random, values, group)
-            : values.Distinct().ToDictionary(row => row, _ => random.PickEarly(s_chances));
+            : values.Distinct().ToDictionary(row => row, _ => random.Pick(s_chances));
         Dictionary<Row, Formula> formulas = values.Distinct().ToDictionary(
             row => row, _ => form == SourceForm.WithLineage ? FormulaGenerator.Next(random, shared, 3) : new ConstantFormula(true));
         return new SourceSpec(

@@ -1,0 +1,3 @@
+namespace Uncertain.Tests.Queries.Certain;
+
+internal sealed record Pair<T>(T X, T Y);
