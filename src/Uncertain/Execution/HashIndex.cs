@@ -26,6 +26,7 @@ internal sealed class HashIndex<TKey, TValue>
         {
             for (int i = 0; i < batch.Count; i++)
             {
+                run.Step();
                 index.Add(key.Invoke(batch.Values[i]), batch.Values[i], batch.Lineages[i]);
             }
         }

@@ -14,6 +14,7 @@ internal static class MatchFilter
             output.Count = 0;
             for (int i = 0; i < batch.Count; i++)
             {
+                run.Step();
                 LineageRef lineage = run.Arena.And(batch.Lineages[i], condition(batch.Values[i]));
                 if (lineage != LineageRef.False)
                 {

@@ -22,6 +22,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
         {
             for (int i = 0; i < batch.Count; i++)
             {
+                run.Step();
                 merge.Add(batch.Values[i], batch.Lineages[i]);
             }
         }
@@ -49,7 +50,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
         int start = 0;
         for (int group = 0; group < ends.Length; group++)
         {
-            run.Tick(group);
+            run.Step();
             LineageRef lineage = run.Arena.Or(grouped.AsSpan(start, ends[group] - start));
             start = ends[group];
             if (lineage != LineageRef.False)

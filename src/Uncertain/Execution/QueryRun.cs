@@ -11,6 +11,7 @@ internal sealed class QueryRun
     private readonly Dictionary<LineageArena, LineageImport> _imports = [];
     private readonly long _start;
     private long _rows;
+    private long _steps;
 
     public QueryRun(WorldSpace worlds, EvaluationOptions options, CancellationToken cancellationToken)
     {
@@ -25,10 +26,14 @@ internal sealed class QueryRun
 
     public CancellationToken Cancellation { get; }
 
-    /// <summary>To be called for every item of a loop that produces no batches: looks at the token now and then.</summary>
-    public void Tick(int item)
+    /// <summary>
+    /// To be called for every record or pair that is tried: looks at the token each time, since a caller's lambda may be slow, and at the
+    /// budgets now and then.
+    /// </summary>
+    public void Step()
     {
-        if ((item & 1023) == 0)
+        Cancellation.ThrowIfCancellationRequested();
+        if ((++_steps & 1023) == 0)
         {
             Checkpoint(0);
         }

@@ -42,8 +42,10 @@ public sealed partial class UncertainSet<T>
             {
                 for (int i = 0; i < batch.Count; i++)
                 {
+                    run.Step();
                     for (int match = index.First(_sides.KeyOf(batch.Values[i])); match >= 0; match = index.Next(match))
                     {
+                        run.Step();
                         LineageRef both = run.Arena.And(batch.Lineages[i], index.Lineage(match));
                         if (both == LineageRef.False)
                         {

@@ -53,6 +53,7 @@ public sealed partial class UncertainSet<T>
 
                     while (true)
                     {
+                        run.Step();
                         if (output.IsFull)
                         {
                             run.Checkpoint(output.Count);

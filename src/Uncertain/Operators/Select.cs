@@ -32,6 +32,7 @@ public sealed partial class UncertainSet<T>
                 output.Count = 0;
                 for (int i = 0; i < batch.Count; i++)
                 {
+                    run.Step();
                     output.Add(_selector.Invoke(batch.Values[i]), batch.Lineages[i]);
                 }
 

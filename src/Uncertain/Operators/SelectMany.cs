@@ -66,6 +66,7 @@ public sealed partial class UncertainSet<T>
                     RecordList<TCollection> inner = shared ?? RecordList<TCollection>.Read(SetFor(batch.Values[i]), run);
                     for (int j = 0; j < inner.Count; j++)
                     {
+                        run.Step();
                         LineageRef both = run.Arena.And(batch.Lineages[i], inner.Lineages[j]);
                         if (both == LineageRef.False)
                         {

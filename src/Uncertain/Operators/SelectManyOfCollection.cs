@@ -41,6 +41,7 @@ public sealed partial class UncertainSet<T>
                 {
                     foreach (TCollection item in ItemsOf(batch.Values[i]))
                     {
+                        run.Step();
                         output.Add(_result.Invoke(batch.Values[i], item), batch.Lineages[i]);
                         if (output.IsFull)
                         {

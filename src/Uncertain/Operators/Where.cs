@@ -34,6 +34,7 @@ public sealed partial class UncertainSet<T>
                 output.Count = 0;
                 for (int i = 0; i < batch.Count; i++)
                 {
+                    run.Step();
                     if (_predicate.Invoke(batch.Values[i]))
                     {
                         output.Add(batch.Values[i], batch.Lineages[i]);

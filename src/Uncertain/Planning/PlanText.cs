@@ -37,7 +37,7 @@ internal static partial class PlanText
 
     private static string Clean(string text)
     {
-        text = Closure().Replace(text, "");
+        text = Conversion().Replace(Closure().Replace(text, ""), "$1");
         text = RowSoFar().Replace(text, "");
         text = text.Replace(" AndAlso ", " and ", StringComparison.Ordinal).Replace(" OrElse ", " or ", StringComparison.Ordinal);
         text = AnonymousType().Replace(text, "new (");
@@ -48,6 +48,10 @@ internal static partial class PlanText
     // value(Some.Class+<>c__DisplayClass1_0).bulletin: the variable's name says it all.
     [GeneratedRegex(@"value\([^()]*\)\.")]
     private static partial Regex Closure();
+
+    // Convert(note.Id, Object): boxing and the like are the compiler's.
+    [GeneratedRegex(@"Convert\(([^(),]*), [\w`]+\)")]
+    private static partial Regex Conversion();
 
     // <>h__TransparentIdentifier0.card: the compiler's name for the row so far adds nothing to the range variable's.
     [GeneratedRegex(@"<>h__TransparentIdentifier\d+\.")]

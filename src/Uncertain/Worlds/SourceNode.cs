@@ -36,7 +36,7 @@ internal sealed class SourceNode<T>(
         };
         string key = Key is null ? "" : $", key {PlanText.Body(Key)}";
         return string.Create(
-            CultureInfo.InvariantCulture, $"{Name}: {Records.Length:N0} records of {PlanText.TypeName(typeof(T))}, {what}{key}");
+            CultureInfo.InvariantCulture, $"{Name}: {Records.Length:N0} {(Records.Length == 1 ? "record" : "records")} of {PlanText.TypeName(typeof(T))}, {what}{key}");
     }
 
     public override IEnumerable<Batch<T>> Run(QueryRun run)

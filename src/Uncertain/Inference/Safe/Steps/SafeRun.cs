@@ -11,7 +11,7 @@ internal sealed class SafeRun<TNumber>(
     where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
-    // A power of two: the token is looked at every so many rows, well under a millisecond apart.
+    // A power of two: the clock is looked at every so many rows.
     private const int RowsBetweenChecks = 4096;
 
     private readonly Dictionary<Field, Encoder> _encoders = [];
@@ -36,9 +36,12 @@ internal sealed class SafeRun<TNumber>(
     /// <summary>For each variable a number that all its codes are smaller than, as far as they are known now.</summary>
     public int[] RangesOf(IEnumerable<Field> variables) => [.. variables.Select(variable => EncoderOf(variable).Count)];
 
-    /// <summary>To be called for every row: looks at the token and the deadline now and then.</summary>
+    /// <summary>
+    /// To be called for every row: looks at the token each time, since a caller's lambda may be slow, and at the deadline now and then.
+    /// </summary>
     public void Tick(int row)
     {
+        cancellationToken.ThrowIfCancellationRequested();
         if ((row & (RowsBetweenChecks - 1)) == 0)
         {
             Checkpoint();
