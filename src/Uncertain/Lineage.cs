@@ -122,7 +122,7 @@ public readonly partial struct Lineage : IEquatable<Lineage>
     /// <exception cref="WorldSpaceMismatchException">The operands belong to different world spaces.</exception>
     public static Lineage Any(params ReadOnlySpan<Lineage> operands) => Combine(operands, negate: true);
 
-    /// <summary>At least <paramref name="count"/> of the operands hold. Makes at most 2 count n nodes.</summary>
+    /// <summary>At least <paramref name="count"/> of the operands hold. Makes at most 3 count n nodes.</summary>
     /// <param name="count">How many; 0 or less is always true, more than there are operands never.</param>
     /// <param name="operands">At least one lineage; all of one world space.</param>
     /// <exception cref="WorldSpaceMismatchException">The operands belong to different world spaces.</exception>
@@ -139,7 +139,8 @@ public readonly partial struct Lineage : IEquatable<Lineage>
             return worlds.Never;
         }
 
-        // reached[j]: at least j of the operands seen so far hold.
+        // reached[j]: at least j of the operands seen so far hold. Written as a decision on the operand, so that evaluators
+        // see the two cases exclude each other.
         var reached = new Lineage[count + 1];
         Array.Fill(reached, worlds.Never);
         reached[0] = worlds.Always;
@@ -147,14 +148,14 @@ public readonly partial struct Lineage : IEquatable<Lineage>
         {
             for (int j = count; j > 0; j--)
             {
-                reached[j] = reached[j] | (operand & reached[j - 1]);
+                reached[j] = (operand & reached[j - 1]) | (!operand & reached[j]);
             }
         }
 
         return reached[count];
     }
 
-    /// <summary>Exactly <paramref name="count"/> of the operands hold. Makes at most 4 count n nodes.</summary>
+    /// <summary>Exactly <paramref name="count"/> of the operands hold. Makes at most 6 count n nodes.</summary>
     /// <param name="count">How many; negative or more than there are operands is never true.</param>
     /// <param name="operands">At least one lineage; all of one world space.</param>
     /// <exception cref="WorldSpaceMismatchException">The operands belong to different world spaces.</exception>

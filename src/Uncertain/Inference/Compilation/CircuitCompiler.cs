@@ -13,13 +13,14 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
     private const int TrialGrowth = 4;
 
     // Residuals of step-by-step circuits are disjunctions of many open ends, and equal ones must be recognised.
-    private const int FlatWidth = 512;
+    private const int StepsFlatWidth = 512;
+    private const int TreeFlatWidth = 24;
 
     /// <summary>The edge to the compiled module.</summary>
     public int Compile(ModuleFormula module)
     {
         List<int> variables = NumberVariables(module);
-        int[][] orders = [[.. Enumerable.Range(0, variables.Count)], ByTree(module, variables)];
+        int[] byTree = ByTree(module, variables, out int[] parents);
         long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
         for (int trial = 0; ; trial++)
         {
@@ -33,7 +34,9 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             (long Nodes, long Residuals) spent = budget.Mark();
             try
             {
-                return Run(module, variables, orders[trial % 2]);
+                return trial % 2 == 0
+                    ? Run(module, variables, [.. Enumerable.Range(0, variables.Count)], null)
+                    : Run(module, variables, byTree, parents);
             }
             catch (BudgetSpentException exception) when (exception.IsTrial)
             {
@@ -75,7 +78,7 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
         return variables;
     }
 
-    private int[] ByTree(ModuleFormula module, List<int> variables)
+    private int[] ByTree(ModuleFormula module, List<int> variables, out int[] parents)
     {
         int[] vertex = workspace.VertexOfVariable;
         var pairs = new List<long>(module.OperandCount);
@@ -93,10 +96,12 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
 
         SparseGraph graph = SparseGraph.FromPairs(variables.Count + module.Count, pairs);
         EliminationTree tree = EliminationTree.Build(graph, budget);
-        return TreeNumbering.Preorder(tree, variables.Count, TreeNumbering.Depths(tree));
+        int[] order = TreeNumbering.Preorder(tree, variables.Count, TreeNumbering.Depths(tree));
+        parents = TreeNumbering.ParentRanks(tree, order);
+        return order;
     }
 
-    private int Run(ModuleFormula module, List<int> variables, int[] order)
+    private int Run(ModuleFormula module, List<int> variables, int[] order, int[]? parents)
     {
         int[] variableOfRank = new int[order.Length];
         int[] ranks = workspace.RankOfVariable;
@@ -106,10 +111,10 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             ranks[variableOfRank[rank]] = rank;
         }
 
-        var arena = new ResidualArena(atoms, ranks, FlatWidth, budget);
+        var arena = new ResidualArena(atoms, ranks, parents is null ? StepsFlatWidth : TreeFlatWidth, budget);
         try
         {
-            int root = Import(module, arena);
+            int root = Import(module, arena, parents);
             arena.StartDeciding();
             return new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
         }
@@ -119,7 +124,7 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
         }
     }
 
-    private int Import(ModuleFormula module, ResidualArena arena)
+    private int Import(ModuleFormula module, ResidualArena arena, int[]? parents)
     {
         int[] made = new int[module.Count];
         var operands = new List<int>();
@@ -138,7 +143,8 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             }
 
             budget.Step();
-            made[node] = Nesting.And(arena, CollectionsMarshal.AsSpan(operands));
+            Span<int> span = CollectionsMarshal.AsSpan(operands);
+            made[node] = parents is null ? Nesting.And(arena, span) : TreeNesting.And(arena, span, parents);
         }
 
         return made[^1];

@@ -34,7 +34,7 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
         }
 
         var arena = new ResidualArena(atoms, ranks, FlatWidthFor(tree.Width), budget);
-        int root = Nest(arena, terms, tree, homes);
+        int root = TreeNesting.And(arena, Clauses(arena, terms), TreeNumbering.ParentRanks(tree, order));
         arena.StartDeciding();
         int edge = new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
         budget.Bytes(-arena.Bytes);
@@ -120,45 +120,17 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
         return firstNeeded;
     }
 
-    /// <summary>The conjunction of the negated terms, those of each branch of the tree together.</summary>
-    private int Nest(ResidualArena arena, TermList terms, EliminationTree tree, int[] homes)
+    private int[] Clauses(ResidualArena arena, TermList terms)
     {
-        int vertices = tree.Order.Length;
-        int[] last = new int[vertices + 1];
-        Array.Fill(last, -1);
-        int[] previous = new int[terms.Count + vertices];
-        for (int i = terms.Count - 1; i >= 0; i--)
-        {
-            previous[i] = last[homes[i]];
-            last[homes[i]] = i;
-        }
-
-        int[] branch = new int[vertices];
-        var operands = new List<int>();
+        int[] clauses = new int[terms.Count];
         var literals = new List<int>();
-        for (int i = 0; i <= vertices; i++)
+        for (int i = 0; i < clauses.Length; i++)
         {
-            int v = i < vertices ? tree.Order[i] : vertices;
-            operands.Clear();
-            for (int item = last[v]; item >= 0; item = previous[item])
-            {
-                operands.Add(item < terms.Count ? Clause(arena, terms[item], literals) : branch[item - terms.Count]);
-            }
-
+            clauses[i] = Clause(arena, terms[i], literals);
             budget.Step();
-            int nested = Nesting.And(arena, CollectionsMarshal.AsSpan(operands));
-            if (i == vertices)
-            {
-                return nested;
-            }
-
-            branch[v] = nested;
-            int parent = tree.Parents[v] < 0 ? vertices : tree.Parents[v];
-            previous[terms.Count + v] = last[parent];
-            last[parent] = terms.Count + v;
         }
 
-        return ResidualArena.True;
+        return clauses;
     }
 
     private static int Clause(ResidualArena arena, ReadOnlySpan<int> term, List<int> literals)

@@ -48,6 +48,34 @@ internal static class TreeNumbering
         return Walk(variables, roots, firstChild, nextSibling);
     }
 
+    /// <summary>For each rank that of the variable above it, -1 at a root; vertices that are no variables are passed over.</summary>
+    public static int[] ParentRanks(EliminationTree tree, int[] order)
+    {
+        int[] rankOfVertex = new int[tree.Order.Length];
+        Array.Fill(rankOfVertex, -1);
+        for (int rank = 0; rank < order.Length; rank++)
+        {
+            rankOfVertex[order[rank]] = rank;
+        }
+
+        // From the roots down, 'above' of a vertex is the rank at it or, if it is no variable, over it.
+        int[] above = new int[tree.Order.Length];
+        int[] parents = new int[order.Length];
+        for (int i = tree.Order.Length - 1; i >= 0; i--)
+        {
+            int v = tree.Order[i];
+            int over = tree.Parents[v] < 0 ? -1 : above[tree.Parents[v]];
+            above[v] = over;
+            if (rankOfVertex[v] >= 0)
+            {
+                parents[rankOfVertex[v]] = over;
+                above[v] = rankOfVertex[v];
+            }
+        }
+
+        return parents;
+    }
+
     private static int[] Walk(int variables, int roots, int[] firstChild, int[] nextSibling)
     {
         int[] result = new int[variables];
