@@ -20,23 +20,26 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
     public int Compile(ModuleFormula module)
     {
         List<int> variables = NumberVariables(module);
-        int[] byTree = ByTree(module, variables, out int[] parents);
+        int[]? byTree = null;
+        int[] parents = [];
         long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
         for (int trial = 0; ; trial++)
         {
-            bool isLimited = budget.StartTrial(residuals);
-            if (!isLimited)
+            bool alongTree = trial % 2 == 1;
+            if (alongTree)
             {
-                budget.StartTrial(null);
+                byTree ??= ByTree(module, variables, out parents);
             }
 
+            // The tree has the last word, with all that is left.
+            budget.StartTrial(alongTree && residuals >= budget.ResidualLimit ? null : residuals);
             (int Words, int Nodes) mark = form.Mark();
             (long Nodes, long Residuals) spent = budget.Mark();
             try
             {
-                return trial % 2 == 0
-                    ? Run(module, variables, [.. Enumerable.Range(0, variables.Count)], null)
-                    : Run(module, variables, byTree, parents);
+                return alongTree
+                    ? Run(module, variables, byTree!, parents)
+                    : Run(module, variables, [.. Enumerable.Range(0, variables.Count)], null);
             }
             catch (BudgetSpentException exception) when (exception.IsTrial)
             {
@@ -48,7 +51,7 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
                 budget.StartTrial(null);
             }
 
-            residuals *= trial % 2 == 0 ? 1 : TrialGrowth;
+            residuals *= alongTree ? TrialGrowth : 1;
         }
     }
 

@@ -11,7 +11,7 @@ internal sealed class CompilationBudget
     // Steps are a few hundred nanoseconds at most, so the clock is looked at every millisecond or so.
     private const int StepsBetweenLooks = 2048;
 
-    // A residual formula takes about 45 bytes while compiling; two of them and a node are the 100 bytes a node.
+    // A residual formula takes about 70 bytes while compiling, a node of the form 20: up to 160 bytes for a node of the budget.
     private const int ResidualsPerNode = 2;
 
     private readonly EvaluationOptions _options;
@@ -43,6 +43,11 @@ internal sealed class CompilationBudget
         }
     }
 
+    /// <summary>Residual formulas that the node budget pays for.</summary>
+    public long ResidualLimit => (long)ResidualsPerNode * _options.NodeBudget;
+
+    private bool IsTrial => _trialEnd != long.MaxValue;
+
     /// <summary>A decision has added nodes to the form.</summary>
     public void Nodes(int made)
     {
@@ -57,12 +62,7 @@ internal sealed class CompilationBudget
     public void Residual()
     {
         _residuals++;
-        if (_residuals > _trialEnd)
-        {
-            throw new BudgetSpentException("", isTrial: true);
-        }
-
-        if (_residuals > (long)ResidualsPerNode * _options.NodeBudget)
+        if (_residuals > _trialEnd || _residuals > ResidualLimit)
         {
             throw SpentNodes();
         }
@@ -70,12 +70,11 @@ internal sealed class CompilationBudget
         Step();
     }
 
-    /// <summary>Allows so many residual formulas until the next call; null for all that are left.</summary>
-    public bool StartTrial(long? residuals)
-    {
-        _trialEnd = residuals is null ? long.MaxValue : _residuals + residuals.Value;
-        return _trialEnd < (long)ResidualsPerNode * _options.NodeBudget;
-    }
+    /// <summary>
+    /// From now on so many residual formulas may be made, and running out of nodes ends the trial only; null for all that are
+    /// left and no trial.
+    /// </summary>
+    public void StartTrial(long? residuals) => _trialEnd = residuals is null ? long.MaxValue : _residuals + residuals.Value;
 
     /// <summary>Gives back what a given-up trial has taken.</summary>
     public void Refund((long Nodes, long Residuals) mark) => (_nodes, _residuals) = mark;
@@ -108,10 +107,12 @@ internal sealed class CompilationBudget
         }
     }
 
-    private BudgetSpentException SpentNodes() => new(
-        Text($"Compiling this lineage needs more than the node budget of {_options.NodeBudget:N0} ({Progress()}). ")
-        + "Raise EvaluationOptions.NodeBudget, or ask for Accuracy.Within, or use Evaluators.Sampling.",
-        isTrial: false);
+    private BudgetSpentException SpentNodes() => IsTrial
+        ? new BudgetSpentException("", isTrial: true)
+        : new BudgetSpentException(
+            Text($"Compiling this lineage needs more than the node budget of {_options.NodeBudget:N0} ({Progress()}). ")
+            + "Raise EvaluationOptions.NodeBudget, or ask for Accuracy.Within, or use Evaluators.Sampling.",
+            isTrial: false);
 
     private string Progress() =>
         Text($"{_nodes:N0} nodes and {_residuals:N0} residual formulas made in {_options.Clock.GetElapsedTime(_start).TotalSeconds:0.###} s");
