@@ -32,8 +32,10 @@ internal static class Comparison
     /// <summary>Whether an exact figure with this relative error is right: of parts that cancel only the parts are that accurate.</summary>
     public static bool IsRight(Figure figure, Expected expected, double relativeError)
     {
-        double size = Math.Abs(expected.Value.ToDouble());
-        return relativeError <= Tolerance || (size > 0 && relativeError * size <= Tolerance * figure.Magnitude && figure.Magnitude > 2 * size);
+        double size = Math.Max(Math.Abs(figure.Value), Math.Abs(expected.Value.ToDouble()));
+        return relativeError <= Tolerance
+            || (figure.Magnitude > 2 * size
+                && Rational.Abs(Rational.Of(figure.Value) - expected.Value).ToDouble() <= Tolerance * figure.Magnitude);
     }
 
     /// <summary>Whether the expected value is within the figure's bounds, up to rounding.</summary>
