@@ -96,6 +96,7 @@ internal static class Checker
 
         Dictionary<string, Figure> byKey = figures.ToDictionary(figure => figure.Key);
         double largest = 0;
+        bool isRight = true;
         bool isWithin = true;
         foreach (Expected item in expected)
         {
@@ -104,7 +105,9 @@ internal static class Checker
                 return (Outcome.Wrong, null, $"no figure for '{item.Key}'");
             }
 
-            largest = Math.Max(largest, Comparison.RelativeError(figure, item));
+            double error = Comparison.RelativeError(figure, item);
+            largest = Math.Max(largest, error);
+            isRight &= Comparison.IsRight(figure, item, error);
             isWithin &= Comparison.IsWithinBounds(figure, item);
         }
 
@@ -116,7 +119,7 @@ internal static class Checker
 
         if (isExact)
         {
-            return (largest <= Comparison.Tolerance ? Outcome.Ok : Outcome.Wrong, largest, remark);
+            return (isRight ? Outcome.Ok : Outcome.Wrong, largest, remark);
         }
 
         // An estimate where an exact figure was asked for is no solution, whether or not it is one of the few that miss their bounds.

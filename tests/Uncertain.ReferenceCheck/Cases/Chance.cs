@@ -5,15 +5,17 @@ internal readonly record struct Chance(double Value, double Complement)
 {
     private const double NearOne = 0.999;
 
+    /// <summary>Whether the double alone has lost digits of the complement.</summary>
+    public bool IsNearOne => Value > NearOne && Complement > 0;
+
     public static Chance Half => new(0.5, 0.5);
 
     public static Chance Of(Rational exact) => new(exact.ToDouble(), (Rational.One - exact).ToDouble());
 
     /// <summary>
-    /// An event of this chance. Close to 1 the double has lost digits of the complement, so the opposite event gets the
-    /// variable there.
+    /// An event of this chance. Close to 1 the opposite event gets the variable, so that no digits of the complement are lost.
     /// </summary>
-    public Lineage NewEvent(WorldSpace worlds, string name) => Value > NearOne && Complement > 0
+    public Lineage NewEvent(WorldSpace worlds, string name) => IsNearOne
         ? !worlds.Event($"not {name}", Complement)
         : worlds.Event(name, Value);
 }

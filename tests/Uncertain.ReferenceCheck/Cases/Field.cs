@@ -39,16 +39,12 @@ internal readonly struct Field(JsonElement element, string path)
         }
     }
 
-    public Chance Chance
-    {
-        get
-        {
-            Rational exact = Number;
-            return exact.Sign >= 0 && (Rational.One - exact).Sign >= 0
-                ? Chance.Of(exact)
-                : throw Wrong("a probability from 0 to 1");
-        }
-    }
+    /// <summary>A number from 0 to 1.</summary>
+    public Rational Probability => Number is { Sign: >= 0 } exact && (Rational.One - exact).Sign >= 0
+        ? exact
+        : throw Wrong("a probability from 0 to 1");
+
+    public Chance Chance => Chance.Of(Probability);
 
     public Field this[string name] => Optional(name) ?? throw new MalformedCaseException($"{Path} has no field '{name}'");
 

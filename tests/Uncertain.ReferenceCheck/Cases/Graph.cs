@@ -1,6 +1,6 @@
 namespace Uncertain.ReferenceCheck.Cases;
 
-/// <summary>An undirected or directed graph; vertices are numbered from 0, parallel edges are separate.</summary>
+/// <summary>An undirected or directed graph; vertices are numbered from 0, parallel edges are separate, and an edge may lead back to its vertex.</summary>
 internal sealed record Graph(int VertexCount, IReadOnlyList<(int From, int To)> Edges)
 {
     /// <summary>For each vertex its neighbours, each with the number of the edge; both directions unless directed.</summary>

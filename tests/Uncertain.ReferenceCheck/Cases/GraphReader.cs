@@ -26,7 +26,7 @@ internal static class GraphReader
         foreach (Field edge in field["edges"].Items())
         {
             int[] ends = [.. edge.Items().Select(end => end.Integer(0, vertices - 1))];
-            edges.Add(ends is [var from, var to] && from != to ? (from, to) : throw edge.Wrong("two different vertices"));
+            edges.Add(ends is [var from, var to] ? (from, to) : throw edge.Wrong("two vertices"));
         }
 
         return new Graph(vertices, edges);

@@ -25,8 +25,9 @@ internal abstract class FrontierSweep : StateSweep
         for (int i = 0; i < order.Length; i++)
         {
             (int from, int to) = graph.Edges[order[i]];
+            int[] ends = from == to ? [from] : [from, to];
             Lineage always = edges[order[i]].Worlds.Always;
-            foreach (int vertex in (int[])[from, to])
+            foreach (int vertex in ends)
             {
                 if (!open.Contains(vertex))
                 {
@@ -36,7 +37,7 @@ internal abstract class FrontierSweep : StateSweep
             }
 
             AddStep(edges[order[i]], Action.Edge, -1, open.IndexOf(from), open.IndexOf(to));
-            foreach (int vertex in (int[])[from, to])
+            foreach (int vertex in ends)
             {
                 if (last[vertex] == i)
                 {

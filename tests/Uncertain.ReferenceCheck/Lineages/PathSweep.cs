@@ -41,7 +41,7 @@ internal sealed class PathSweep : FrontierSweep
         char[] mates = state.ToCharArray();
         char a = mates[first + 1];
         char b = mates[second + 1];
-        if (a == Inner || b == Inner || a == second)
+        if (a == Inner || b == Inner || a == second || first == second)
         {
             return No;
         }

@@ -75,11 +75,13 @@ internal static class AggregateQuestion
                 if (record.Optional("uniform") is { } uniform)
                 {
                     int outcomes = uniform.Integer(1, 100_000);
-                    records.Add(Alternatives(worlds, name, [.. Enumerable.Range(1, outcomes).Select(v => ((long)v, 1.0 / outcomes))]));
+                    double[] equal = [.. Enumerable.Repeat(1.0 / outcomes, outcomes)];
+                    records.Add([.. worlds.Choice(name, equal).Select((lineage, i) => (i + 1L, lineage))]);
                 }
                 else if (record.Optional("alternatives") is { } alternatives)
                 {
-                    records.Add(Alternatives(worlds, name, [.. alternatives.Items().Select(a => (Value(a), a["p"].Chance.Value))]));
+                    Field[] values = [.. alternatives.Items()];
+                    records.Add([.. values.Select(Value).Zip(Elements.Alternatives(worlds, name, [.. values.Select(value => value["p"])]))]);
                 }
                 else
                 {
@@ -99,9 +101,6 @@ internal static class AggregateQuestion
     private static int Repeat(Field record) => record.Optional("repeat")?.Integer(0, int.MaxValue) ?? 1;
 
     private static long Value(Field record) => record["value"].Integer(int.MinValue, int.MaxValue);
-
-    private static (long, Lineage)[] Alternatives(WorldSpace worlds, string name, (long Value, double Chance)[] alternatives) =>
-        [.. alternatives.Zip(worlds.Choice(name, [.. alternatives.Select(a => a.Chance)]), (a, lineage) => (a.Value, lineage))];
 
     private static List<long> Sums(List<(long Value, Lineage Lineage)[]> records, Solver solver)
     {

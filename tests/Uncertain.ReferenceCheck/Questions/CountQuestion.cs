@@ -15,7 +15,13 @@ internal static class CountQuestion
     public static IReadOnlyList<Figure> Ask(Field input, Solver solver)
     {
         var worlds = new WorldSpace();
-        Lineage[] events = [worlds.Never, .. Chances(input["p"]).Select((chance, i) => chance.NewEvent(worlds, $"event {i}"))];
+        Chance[] chances = [.. Chances(input["p"])];
+        Lineage[] events = [worlds.Never, .. chances.Select((chance, i) => chance.NewEvent(worlds, $"event {i}"))];
+        if (events.Length > MostOfThresholds && (input["ask"].Text is "mean" or "variance"))
+        {
+            return [Moment(worlds, events, chances, input["ask"].Text == "mean", solver)];
+        }
+
         return new Distribution([.. Enumerable.Range(0, events.Length).Select(k => (long)k)], Between).Ask(input, solver);
 
         Lineage Between(long least, long most) => events.Length <= MostOfThresholds
@@ -35,6 +41,15 @@ internal static class CountQuestion
         int windows = k > n ? 0 : isCircular ? n : n - k + 1;
         return solver.Chance(Lineage.All([worlds.Always, .. Enumerable.Range(0, windows)
             .Select(first => Lineage.Any([.. Enumerable.Range(first, k).Select(i => works[i % n])]))]));
+    }
+
+    // p is the mean of one event, and its variance p(1 - p) the chance that it happens and an independent copy of it does not.
+    private static Figure Moment(WorldSpace worlds, Lineage[] events, Chance[] chances, bool isMean, Solver solver)
+    {
+        IEnumerable<Lineage> lineages = isMean
+            ? events
+            : events.Skip(1).Zip(chances.Select((chance, i) => chance.NewEvent(worlds, $"copy {i}")), (one, copy) => one & !copy);
+        return lineages.Aggregate(Figure.Zero, (sum, lineage) => sum + solver.Chance(lineage));
     }
 
     private static Lineage Threshold(Lineage[] events, int least, int most) => least == most

@@ -68,7 +68,7 @@ internal sealed record Distribution(
 
     private void RequireValue(Solver solver)
     {
-        if (None is { } none && !double.IsNegativeInfinity(solver.Chance(none).Log))
+        if (None is { } none && !double.IsNegativeInfinity(Chance(none, solver).Log))
         {
             throw new LeftOutException("the moments are not defined where there may be no record");
         }

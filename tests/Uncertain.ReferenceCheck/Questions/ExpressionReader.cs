@@ -41,11 +41,9 @@ internal sealed class ExpressionReader(WorldSpace worlds, IReadOnlyDictionary<st
         };
     }
 
-    private static Lineage Threshold(int count, Lineage[] operands, ThresholdOperator form) => form(count, operands);
-
+    // An operand that is never true changes no count, and gives the world space where there is no other.
     private Lineage Threshold(Field[] parts, ThresholdOperator form) =>
-        // An operand that is never true changes no count, and gives the world space where there is no other.
-        Threshold(parts[1].Integer(int.MinValue, int.MaxValue), [worlds.Never, .. parts[2..].Select(Read)], form);
+        form(parts[1].Integer(int.MinValue, int.MaxValue), [worlds.Never, .. parts[2..].Select(Read)]);
 
     private delegate Lineage ThresholdOperator(int count, params ReadOnlySpan<Lineage> operands);
 }

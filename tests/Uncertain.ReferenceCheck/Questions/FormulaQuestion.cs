@@ -48,7 +48,7 @@ internal static class FormulaQuestion
     private static void AddBlock(WorldSpace worlds, Dictionary<string, Lineage> names, string block, Field field)
     {
         (string Name, Field Value)[] alternatives = [.. field.Members()];
-        var outcomes = worlds.Choice(block, [.. alternatives.Select(alternative => alternative.Value.Chance.Value)]);
+        var outcomes = Elements.Alternatives(worlds, block, [.. alternatives.Select(alternative => alternative.Value)]);
         for (int i = 0; i < alternatives.Length; i++)
         {
             Name(names, $"{block}={alternatives[i].Name}", alternatives[i].Value, outcomes[i]);

@@ -31,17 +31,26 @@ internal static class ImportanceQuestion
     private static Figure[] Pivotal(Players players, IReadOnlyList<Chance> chances, Solver solver)
     {
         var worlds = new WorldSpace();
-        Lineage[] variables = [.. chances.Select((chance, i) => chance.NewEvent(worlds, $"{i}"))];
+        Lineage[] events = NewEvents(worlds, chances);
+        return ByRole(players, player =>
+        {
+            (Lineage makesTrue, Lineage makesFalse) = players.Pivot(worlds, events, player, solver);
+            return solver.Chance(makesTrue) - solver.Chance(makesFalse);
+        });
+    }
+
+    private static Lineage[] NewEvents(WorldSpace worlds, IReadOnlyList<Chance> chances) =>
+        [.. chances.Select((chance, i) => chance.NewEvent(worlds, $"{i}"))];
+
+    private static Figure[] ByRole(Players players, Func<int, Figure> figureOf)
+    {
         var known = new Dictionary<object, Figure>();
-        return [.. Enumerable.Range(0, chances.Count).Select(player =>
+        return [.. Enumerable.Range(0, players.Names.Count).Select(player =>
         {
             object role = players.RoleOf(player);
             if (!known.TryGetValue(role, out Figure? figure))
             {
-                (Lineage makesTrue, Lineage makesFalse) = players.Pivot(worlds, variables, player, solver);
-                figure = solver.Chance(makesTrue);
-                figure = makesFalse.Kind == LineageKind.False ? figure : figure - solver.Chance(makesFalse);
-                known.Add(role, figure);
+                known.Add(role, figure = figureOf(player));
             }
 
             return figure;
@@ -71,15 +80,22 @@ internal static class ImportanceQuestion
         }
 
         var rule = new GaussLegendreRule(0, 1, order);
-        Figure[] sums = [.. players.Names.Select(_ => Figure.Zero)];
-        for (int i = 0; i < order; i++)
+        return ByRole(players, player => Integral(player, makesTrue: true) - Integral(player, makesTrue: false));
+
+        Figure Integral(int player, bool makesTrue)
         {
-            double p = rule.GetAbscissa(i);
-            Figure[] pivotal = Pivotal(players, new Chance(p, 1 - p), solver);
-            sums = [.. sums.Zip(pivotal, (sum, figure) => sum + (rule.GetWeight(i) * figure))];
+            Func<double, Figure> pivotal = solver.OverChances(chance => Pivot(player, makesTrue, chance));
+            return Enumerable.Range(0, order)
+                .Aggregate(Figure.Zero, (sum, i) => sum + (rule.GetWeight(i) * pivotal(rule.GetAbscissa(i))));
         }
 
-        return sums;
+        (Lineage Lineage, IReadOnlyList<Lineage> Events) Pivot(int player, bool makesTrue, Chance chance)
+        {
+            var worlds = new WorldSpace();
+            Lineage[] events = NewEvents(worlds, [.. Enumerable.Repeat(chance, players.Names.Count)]);
+            (Lineage toTrue, Lineage toFalse) = players.Pivot(worlds, events, player, solver);
+            return (makesTrue ? toTrue : toFalse, events);
+        }
     }
 
     /// <summary>Whose importance is asked, and when each is pivotal.</summary>

@@ -10,6 +10,14 @@ internal static class QueryQuestion
 
     public static Figure Ask(Field input, Solver solver)
     {
+        Figure figure = Evaluate(input, solver);
+
+        // A source takes its chances as doubles, and close to 1 those have lost digits of the complement.
+        return HasChanceNearOne(input) ? figure with { Complement = null } : figure;
+    }
+
+    private static Figure Evaluate(Field input, Solver solver)
+    {
         Field pattern = input["pattern"];
         int n = input["n"].Integer(1, 1_000_000);
         if (pattern.Text == "triangle")
@@ -36,6 +44,13 @@ internal static class QueryQuestion
             default:
                 throw pattern.Wrong("RS, RST, H1, H2, QJ, QW or triangle");
         }
+    }
+
+    private static bool HasChanceNearOne(Field input)
+    {
+        IEnumerable<Field> common = ((string[])["p", "p_R", "p_S", "p_T"]).Select(input.Optional).OfType<Field>();
+        IEnumerable<Field> listed = input.Optional("S")?.Items().Select(record => record.Items().Last()) ?? [];
+        return common.SelectMany(field => field.IsList ? field.Items() : [field]).Concat(listed).Any(field => field.Chance.IsNearOne);
     }
 
     private static UncertainSet<bool> Rst(Sources sources)

@@ -5,8 +5,7 @@ namespace Uncertain.ReferenceCheck.Solving;
 /// <summary>How far a computed figure is from the expected one.</summary>
 internal static class Comparison
 {
-    /// <summary>The largest relative error of an exact figure that still counts as right.</summary>
-    public const double Tolerance = 1e-10;
+    private const double Tolerance = 1e-10;
 
     private const double SmallestNormal = 1e-300;
 
@@ -28,6 +27,15 @@ internal static class Comparison
         return expected.IsFraction || Math.Abs(rest.ToDouble()) > SmallestComplementOfDigits
             ? Math.Max(error, RelativeError(complement.Value, complement.Log, rest))
             : error;
+    }
+
+    /// <summary>Whether an exact figure with this relative error is right: of parts that cancel only the parts are that accurate.</summary>
+    public static bool IsRight(Figure figure, Expected expected, double relativeError)
+    {
+        double size = Math.Max(Math.Abs(figure.Value), Math.Abs(expected.Value.ToDouble()));
+        return relativeError <= Tolerance
+            || (figure.Magnitude > 2 * size
+                && Rational.Abs(Rational.Of(figure.Value) - expected.Value).ToDouble() <= Tolerance * figure.Magnitude);
     }
 
     /// <summary>Whether the expected value is within the figure's bounds, up to rounding.</summary>

@@ -1,4 +1,6 @@
 using System.Globalization;
+using System.Numerics;
+using Uncertain.ReferenceCheck.Cases;
 
 namespace Uncertain.ReferenceCheck.Solving;
 
@@ -16,6 +18,12 @@ internal sealed record Figure(double Value, double Log, double Lower, double Upp
 
     /// <summary>The complement and its logarithm, where the number is one probability.</summary>
     public (double Value, double Log)? Complement { get; init; }
+
+    /// <summary>
+    /// Sum of the absolute values of what was added up; larger than the number itself where parts cancel, and what its
+    /// rounding is relative to.
+    /// </summary>
+    public double Magnitude { get; init; } = Math.Abs(Value);
 
     /// <summary>Names of the evaluators that gave it.</summary>
     public string Evaluator { get; init; } = "";
@@ -35,10 +43,16 @@ internal sealed record Figure(double Value, double Log, double Lower, double Upp
     };
 
     public static Figure operator +(Figure left, Figure right) => Combine(
-        left, right, left.Value + right.Value, left.Lower + right.Lower, left.Upper + right.Upper);
+        left, right, left.Value + right.Value, left.Lower + right.Lower, left.Upper + right.Upper) with
+    {
+        Magnitude = left.Magnitude + right.Magnitude,
+    };
 
     public static Figure operator -(Figure left, Figure right) => Combine(
-        left, right, left.Value - right.Value, left.Lower - right.Upper, left.Upper - right.Lower);
+        left, right, left.Value - right.Value, left.Lower - right.Upper, left.Upper - right.Lower) with
+    {
+        Magnitude = left.Magnitude + right.Magnitude,
+    };
 
     public static Figure operator *(double factor, Figure figure) => figure with
     {
@@ -46,6 +60,7 @@ internal sealed record Figure(double Value, double Log, double Lower, double Upp
         Log = Math.Log(Math.Abs(factor)) + figure.Log,
         Lower = Math.Min(factor * figure.Lower, factor * figure.Upper),
         Upper = Math.Max(factor * figure.Lower, factor * figure.Upper),
+        Magnitude = Math.Abs(factor) * figure.Magnitude,
         Complement = null,
     };
 
@@ -53,7 +68,7 @@ internal sealed record Figure(double Value, double Log, double Lower, double Upp
     public static Figure operator /(Figure part, Figure whole)
     {
         double log = part.Log - whole.Log;
-        bool isInRange = part.Value > double.MinValue && part.Value >= 1e-290 && whole.Value >= 1e-290;
+        bool isInRange = part.Value >= 1e-290 && whole.Value >= 1e-290;
         Figure quotient = Combine(
             part, whole, isInRange ? part.Value / whole.Value : Math.Exp(log), part.Lower / whole.Upper,
             whole.Lower > 0 ? Math.Min(1, part.Upper / whole.Lower) : 1);
@@ -64,9 +79,16 @@ internal sealed record Figure(double Value, double Log, double Lower, double Upp
 
     public static Figure Certain(double value) => new(value, Math.Log(Math.Abs(value)), value, value, 0, true);
 
-    /// <summary>All digits of a double; from the logarithm where it is below the range of double.</summary>
+    /// <summary>
+    /// All digits of a double; below its range from the logarithm, and close to 1 from the complement.
+    /// </summary>
     public override string ToString()
     {
+        if (Complement is { Value: > 1e-60 and < 1e-6 } complement && IsExact)
+        {
+            return NearOne(complement.Value);
+        }
+
         if (Math.Abs(Value) >= 1e-300 || double.IsNegativeInfinity(Log))
         {
             return Value.ToString("R", CultureInfo.InvariantCulture);
@@ -75,6 +97,16 @@ internal sealed record Figure(double Value, double Log, double Lower, double Upp
         double decimalLog = Log / Math.Log(10);
         double exponent = Math.Floor(decimalLog);
         return string.Create(CultureInfo.InvariantCulture, $"{Math.Pow(10, decimalLog - exponent):0.############}e{exponent:0}");
+    }
+
+    // 1 - c, written out to 17 digits of c.
+    private static string NearOne(double complement)
+    {
+        int digits = 17 - (int)Math.Floor(Math.Log10(complement));
+        var one = BigInteger.Pow(10, digits);
+        Rational exact = Rational.Of(complement);
+        BigInteger scaled = one - (exact.Numerator * one / exact.Denominator);
+        return "0." + scaled.ToString(CultureInfo.InvariantCulture).PadLeft(digits, '0');
     }
 
     private static Figure Combine(Figure left, Figure right, double value, double lower, double upper) =>

@@ -1,5 +1,6 @@
 using System.Diagnostics;
 using Uncertain.Inference;
+using Uncertain.ReferenceCheck.Cases;
 
 namespace Uncertain.ReferenceCheck.Solving;
 
@@ -25,6 +26,23 @@ internal sealed class Solver(IEvaluator evaluator, TimeSpan limit, CancellationT
             ? throw new LeftOutException(
                 $"the condition has probability 0{(whole.IsExact ? "" : " in the estimate: it is too rare for the accuracy asked")}")
             : Chance(lineage & given) / whole;
+    }
+
+    /// <summary>
+    /// The probability of a lineage as a function of the common chance of all its events. By compilation the form is kept; the
+    /// other evaluators are asked anew for each chance.
+    /// </summary>
+    /// <param name="build">Builds the lineage over as many events of the given chance as it needs.</param>
+    public Func<double, Figure> OverChances(Func<Chance, (Lineage Lineage, IReadOnlyList<Lineage> Events)> build)
+    {
+        if (evaluator != Evaluators.Compilation && evaluator != Evaluators.Chooser)
+        {
+            return chance => Chance(build(new Chance(chance, 1 - chance)).Lineage);
+        }
+
+        (Lineage lineage, IReadOnlyList<Lineage> events) = build(Cases.Chance.Half);
+        CompiledLineage compiled = lineage.Compile(Options(), cancellationToken);
+        return chance => Figure.Of(compiled.Evaluate(events.ToDictionary(one => one, _ => chance)));
     }
 
     /// <summary>To be called now and then while a large lineage is built.</summary>

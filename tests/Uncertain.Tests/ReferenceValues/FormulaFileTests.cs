@@ -27,6 +27,17 @@ public sealed class FormulaFileTests
     }
 
     [Theory]
+    [InlineData("p dnf 2 2\n0.9999999999 0.9999999999\n1 0\n2 0", "0.99999999999999999999")] // 1 - 1e-20
+    [InlineData("p cnf 2 2\n1e-200 1e-300\n1 0\n2 0", "1e-500")]
+    public void Formula_BeyondTheDigitsOfADouble_IsPrintedWithThem(string text, string expected)
+    {
+        using var file = new TemporaryFile(text);
+        (_, string output, _) = Run(file.Path);
+
+        Assert.StartsWith(expected, output.Split('\t')[2], StringComparison.Ordinal);
+    }
+
+    [Theory]
     [InlineData("", "line 0: the file ends where 'p', the start of")]
     [InlineData("p sat 1 1", "line 1: found 'sat' where 'dnf' or 'cnf' should come")]
     [InlineData("p dnf -1 1", "line 1: found '-1' where the number of variables")]

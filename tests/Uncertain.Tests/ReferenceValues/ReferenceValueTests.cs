@@ -8,10 +8,10 @@ namespace Uncertain.Tests.ReferenceValues;
 /// </summary>
 public sealed class ReferenceValueTests
 {
-    private static readonly TimeSpan s_limit = TimeSpan.FromSeconds(30);
+    private static readonly TimeSpan s_limit = TimeSpan.FromSeconds(20);
 
-    /// <summary>Cases of the shared file that the exact evaluators do not solve within the limit of this test.</summary>
-    private static readonly string[] s_tooHard = [];
+    /// <summary>Cases of the shared file that may take longer than the limit of this test; what comes out must still hold.</summary>
+    private static readonly string[] s_tooHard = ["net-grid8-st-p9"];
 
     [Fact]
     public void PublishedValues_ByChooser_AreMetExactly() =>
