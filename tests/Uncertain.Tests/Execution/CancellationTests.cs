@@ -79,7 +79,7 @@ public sealed class CancellationTests
     [Fact]
     public async Task EvaluateAsync_LoopLeftEarly_Stops()
     {
-        // After the first answers the rest would take minutes.
+        // After the first answers the rest would take much longer.
         UncertainSet<int> query = SlowQueries.Of("many answers");
         var watch = new Stopwatch();
 

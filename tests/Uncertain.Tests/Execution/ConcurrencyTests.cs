@@ -6,7 +6,7 @@ namespace Uncertain.Tests.Execution;
 public sealed class ConcurrencyTests
 {
     private const int Workers = 8;
-    private const int Rounds = 200;
+    private const int Rounds = 60;
 
     [Fact]
     public void WorldSpace_ManyThreads_AddsEveryVariableOnce()

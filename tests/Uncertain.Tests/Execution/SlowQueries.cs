@@ -21,7 +21,7 @@ internal static class SlowQueries
                 return from x in readings from y in readings select x + y;
 
             case "correlated":
-                return from x in large from y in large.Where(y => y == x + 1) select y;
+                return from x in large from y in large.Except(large.Where(y => y == x)) where x + y < 0 select y;
 
             case "conditions":
                 return large.Where(x => SpinFor(x) > 0);
@@ -30,8 +30,8 @@ internal static class SlowQueries
                 return Grid(worlds, 40);
 
             default:
-                return from x in worlds.Independent(Enumerable.Range(0, 3000), i => 0.5)
-                       from y in Grid(worlds, 9).Select(y => 0)
+                return from x in worlds.Independent(Enumerable.Range(0, 10_000), i => 0.5)
+                       from y in Grid(worlds, 6)
                        select x;
         }
     }

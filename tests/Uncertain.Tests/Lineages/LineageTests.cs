@@ -65,7 +65,7 @@ public sealed class LineageTests
     {
         InvalidOperationException exception = Assert.Throws<InvalidOperationException>(() => (_page & _feed).Variable);
 
-        Assert.Equal("Only a literal has a variable and an outcome; this lineage is a Conjunction.", exception.Message);
+        Assert.Equal("Only a literal has a variable, an outcome and a source; this lineage is a Conjunction.", exception.Message);
         Assert.Throws<InvalidOperationException>(() => (!_page).Outcome);
     }
 
