@@ -32,7 +32,8 @@ public sealed record EvaluationOptions
     }
 
     /// <summary>
-    /// Nodes that compiling one answer may make before it is given up; at least 1. Default 4,000,000, about 200 MB at the peak.
+    /// Nodes that compiling one answer may make before it is given up; at least 1. Default 2,000,000, which may
+    /// take about 400 MB at the peak.
     /// </summary>
     public int NodeBudget
     {
@@ -40,7 +41,7 @@ public sealed record EvaluationOptions
         init => field = value >= 1
             ? value
             : throw new ArgumentOutOfRangeException(nameof(value), value, "The node budget must be at least 1.");
-    } = 4_000_000;
+    } = 2_000_000;
 
     /// <summary>Bytes that lineages and compiled forms may take in all; null (default) for no limit. Positive.</summary>
     public long? MemoryBudget

@@ -1,4 +1,3 @@
-using System.Runtime.ExceptionServices;
 using Uncertain.Execution;
 using Uncertain.Lineages;
 
@@ -8,9 +7,6 @@ namespace Uncertain.Inference.Compilation;
 internal sealed class CompilationEvaluator : IEvaluator
 {
     public const string EvaluatorName = "compilation";
-
-    // Answers that are worked on before the reader has taken the first of them.
-    private const int AnswersAhead = 256;
 
     public string Name => EvaluatorName;
 
@@ -63,68 +59,17 @@ internal sealed class CompilationEvaluator : IEvaluator
         long start = options.Clock.GetTimestamp();
         IReadOnlyList<Record<T>> records = query.Derive(options, cancellationToken);
         var progress = new ProgressReporter(options);
-        var window = new (Probability? Probability, Exception? Error)[Math.Min(records.Count, AnswersAhead)];
-        for (int from = 0; from < records.Count; from += window.Length)
-        {
-            int count = Math.Min(window.Length, records.Count - from);
-            EvaluateWindow(records, from, window.AsMemory(0, count), options, start, cancellationToken);
-            for (int i = 0; i < count; i++)
+        int done = 0;
+        return OrderedParallel.Select(
+            records,
+            options.Threads,
+            (record, _) =>
             {
-                if (window[i].Error is { } error)
-                {
-                    ExceptionDispatchInfo.Throw(error);
-                }
-
-                Record<T> record = records[from + i];
-                progress.Report(EvaluationStage.Evaluating, from + i + 1, records.Count);
-                yield return new Answer<T>(record.Value, record.Lineage, window[i].Probability!);
-            }
-        }
-    }
-
-    // An answer that fails is thrown where its turn comes, so that those before it are not lost.
-    private static void EvaluateWindow<T>(
-        IReadOnlyList<Record<T>> records, int from, Memory<(Probability? Probability, Exception? Error)> window,
-        EvaluationOptions options, long start, CancellationToken cancellationToken)
-    {
-        int failed = int.MaxValue;
-        var parallel = new ParallelOptions { MaxDegreeOfParallelism = options.Threads };
-        if (options.Threads == 1 || window.Length == 1)
-        {
-            for (int i = 0; i < window.Length && failed == int.MaxValue; i++)
-            {
-                One(i);
-            }
-        }
-        else
-        {
-            Parallel.For(0, window.Length, parallel, One);
-        }
-
-        void One(int i)
-        {
-            if (i > Volatile.Read(ref failed))
-            {
-                return;
-            }
-
-            ref (Probability? Probability, Exception? Error) slot = ref window.Span[i];
-            try
-            {
-                slot = (Evaluate(records[from + i].Lineage, options, start, cancellationToken), null);
-            }
-#pragma warning disable CA1031 // Whatever it is, the reader gets it in turn.
-            catch (Exception exception)
-#pragma warning restore CA1031
-            {
-                slot = (null, exception);
-                int seen = Volatile.Read(ref failed);
-                while (i < seen && Interlocked.CompareExchange(ref failed, i, seen) != seen)
-                {
-                    seen = Volatile.Read(ref failed);
-                }
-            }
-        }
+                Probability probability = Evaluate(record.Lineage, options, start, cancellationToken);
+                progress.Report(EvaluationStage.Evaluating, Interlocked.Increment(ref done), records.Count);
+                return new Answer<T>(record.Value, record.Lineage, probability);
+            },
+            cancellationToken);
     }
 
     private static Probability Evaluate(
