@@ -48,7 +48,7 @@ public sealed class SampledQueryTests(ITestOutputHelper output)
                 double value = expected.Answers.TryGetValue(answer, out Presence? presence) ? presence.Value : 0;
                 if (!(probability.Lower <= value * (1 + 1e-12) && value <= probability.Upper * (1 + 1e-12)))
                 {
-                    return $"{answer} has {probability}, by the worlds {value:R}";
+                    return $"{answer} has {probability}, bounds {probability.Lower:R} and {probability.Upper:R}, by the worlds {value:R}";
                 }
 
                 if (probability.Shortfall is null && !options.Accuracy.IsMetBy(probability))

@@ -1,0 +1,3 @@
+namespace Uncertain.Tests.Queries.Certain;
+
+internal sealed record Measure<T>(int Id, T Value);
