@@ -1,6 +1,7 @@
 namespace Uncertain.Tests.Execution;
 
 /// <summary>What budgets that run out lead to: a refusal with the remedy, or a figure that says in which way it is less than asked.</summary>
+[Collection(nameof(QuietCollection))]
 public sealed class BudgetTests
 {
     [Fact]

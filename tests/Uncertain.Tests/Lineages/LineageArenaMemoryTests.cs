@@ -1,8 +1,10 @@
 using Uncertain.Lineages;
+using Uncertain.Tests.Execution;
 
 namespace Uncertain.Tests.Lineages;
 
 /// <summary>What nodes and variables cost: bytes as counted by the arena and as allocated by the runtime.</summary>
+[Collection(nameof(QuietCollection))]
 public sealed class LineageArenaMemoryTests
 {
     private const int Million = 1_000_000;
