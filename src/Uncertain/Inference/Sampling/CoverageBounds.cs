@@ -5,6 +5,9 @@ namespace Uncertain.Inference.Sampling;
 /// <summary>From the part of successes of coverage sampling to the probability of the disjunction.</summary>
 internal sealed class CoverageBounds
 {
+    // A few units in the last place of 1: bounds are rounded outwards, since a complement near 0 has no other digits.
+    private const double Rounding = 4.5e-16;
+
     private readonly ExtendedDouble _total;
     private readonly double _least;
     private readonly double _most;
@@ -29,12 +32,12 @@ internal sealed class CoverageBounds
         double part = Math.Clamp((double)successes / worlds, lower, upper);
 
         double value = Math.Min(1, Times(part));
-        double atMost = Math.Clamp(Times(upper), value, 1);
-        double atLeast = Math.Min(value, Times(lower));
+        double atMost = Math.Clamp(Times(upper) * (1 + Rounding), value, 1);
+        double atLeast = Math.Min(value, Times(lower) * (1 - Rounding));
         double logValue = Math.Min(0, (_total * ExtendedDouble.From(part)).Log());
         var tally = new Tally(
             value, 1 - value, logValue, Logarithms.LogOnePlus(-value),
-            new Interval(atLeast, 1 - atLeast, atMost, 1 - atMost), worlds);
+            new Interval(atLeast, Math.Min(1, 1 - atLeast + Rounding), atMost, Math.Max(0, 1 - atMost - Rounding)), worlds);
         return (tally, Math.Max(upper - part, part - lower) / lower);
     }
 
