@@ -139,6 +139,11 @@ public readonly partial struct Lineage : IEquatable<Lineage>
             return worlds.Never;
         }
 
+        if (count == 1 || count == operands.Length)
+        {
+            return count == 1 ? Any(operands) : All(operands);
+        }
+
         // reached[j]: at least j of the operands seen so far hold. Written as a decision on the operand, so that evaluators
         // see the two cases exclude each other.
         var reached = new Lineage[count + 1];
