@@ -22,6 +22,9 @@ internal readonly struct LineageColumn
     /// <summary>The slot of record 0, where record i has slot FirstSlot + i; else -1.</summary>
     public int FirstSlot => _given is null ? _firstSlot : -1;
 
+    /// <summary>Whether it is known that no record is false.</summary>
+    public bool AllPossible => _given is null;
+
     public LineageRef this[int record] =>
         _given is not null ? _given[record] : _firstSlot < 0 ? LineageRef.True : LineageRef.Literal(_firstSlot + record);
 

@@ -60,13 +60,26 @@ internal sealed class SourceNode<T>(
 
     public override Conjunction Translate() => Conjunction.Of(new SourceAtom(this, typeof(T)));
 
-    public int[] Choose(IReadOnlyList<LambdaExpression> filters, Action<int> tick)
+    public int RecordCount => Records.Length;
+
+    public int FirstSlot => Lineages.FirstSlot;
+
+    public int[]? Choose(IReadOnlyList<LambdaExpression> filters, Action checkpoint)
     {
+        if (filters.Count == 0 && Lineages.AllPossible)
+        {
+            return null;
+        }
+
         Lambda<T, bool>[] conditions = [.. filters.Select(filter => new Lambda<T, bool>((Expression<Func<T, bool>>)filter, "Where"))];
-        var chosen = new List<int>(conditions.Length == 0 ? Records.Length : 16);
+        var chosen = new List<int>();
         for (int i = 0; i < Records.Length; i++)
         {
-            tick(i);
+            if (i % Batch<T>.Capacity == 0)
+            {
+                checkpoint();
+            }
+
             if (Lineages[i] != LineageRef.False && AllHold(conditions, Records[i]))
             {
                 chosen.Add(i);
@@ -76,8 +89,8 @@ internal sealed class SourceNode<T>(
         return [.. chosen];
     }
 
-    public void Encode(Encoder encoder, LambdaExpression field, int[] chosen, bool dropNulls, int[] codes, Action<int> tick) =>
-        encoder.Encode(Records, chosen.Length == Records.Length ? null : chosen, field, dropNulls, codes, tick);
+    public void Encode(Encoder encoder, LambdaExpression field, int[]? chosen, bool dropNulls, int[] codes, Action checkpoint) =>
+        encoder.Encode(Records, chosen, field, dropNulls, codes, checkpoint);
 
     public LineageRef LineageOf(int record) => Lineages[record];
 

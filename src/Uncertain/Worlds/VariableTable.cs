@@ -43,6 +43,9 @@ internal sealed class VariableTable
 
     public double Chance(int slot) => _chance[slot];
 
+    /// <summary>The chances of consecutive slots.</summary>
+    public ReadOnlySpan<double> Chances(int firstSlot, int count) => _chance.AsSpan(firstSlot, count);
+
     public int VariableOf(int slot) => slot < _plain ? slot : _variableOfSlot[slot - _plain];
 
     public int FirstSlot(int variable) => variable < _plain ? variable : _firstSlot[variable - _plain];

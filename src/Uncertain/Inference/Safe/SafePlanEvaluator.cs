@@ -62,49 +62,62 @@ internal sealed class SafePlanEvaluator : IEvaluator
         SafePlan plan, UncertainSet<T> query, EvaluationOptions options, CancellationToken cancellationToken)
     {
         long start = options.Clock.GetTimestamp();
+        var control = new RunControl(options, cancellationToken);
         VariableTable table = query.Worlds.Variables;
         var plain = new SafeRun<double>(
-            new ChanceReader<double>(table, slot => TailConversions.FromChance(table.Chance(slot)), table.NoneChance),
-            options, cancellationToken);
-        CodeTable<double> plainResult = plan.Root.Run(plain);
-        if (plainResult.Factors <= PlainFactorLimit && Array.TrueForAll(plainResult.Tails, TailConversions.IsInRange))
+            new ChanceReader<double>(table, TailConversions.FromChance, table.NoneChance), control);
+        List<CodeTable<double>> plainParts = RunParts(plan.Root, plain, options.Threads, cancellationToken);
+        if (plainParts.TrueForAll(part =>
+            part.Factors <= PlainFactorLimit && Array.TrueForAll(part.Tails, TailConversions.IsInRange)))
         {
-            return Answers(plain, plainResult, Probability.Exact);
+            return Answers(plain, plainParts, Probability.Exact);
         }
 
         var extended = new SafeRun<ExtendedDouble>(
-            new ChanceReader<ExtendedDouble>(
-                table, slot => TailConversions.FromChanceExtended(table.Chance(slot)), table.NoneChanceExtended),
-            options, cancellationToken);
-        return Answers(extended, plan.Root.Run(extended), Probability.Exact);
+            new ChanceReader<ExtendedDouble>(table, TailConversions.FromChanceExtended, table.NoneChanceExtended), control);
+        return Answers(extended, RunParts(plan.Root, extended, options.Threads, cancellationToken), Probability.Exact);
 
         IEnumerable<Answer<T>> Answers<TNumber>(
-            SafeRun<TNumber> run, CodeTable<TNumber> result, Func<Tails<TNumber>, string, Cost, Probability> exact)
+            SafeRun<TNumber> run, List<CodeTable<TNumber>> parts, Func<Tails<TNumber>, string, Cost, Probability> exact)
             where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
                 IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
         {
-            if (plan.IsComplement && result.Count == 0)
+            if (plan.IsComplement && parts is [{ Count: 0 } none])
             {
-                result = result with { Tails = [Tails<TNumber>.Never] };
+                parts = [none with { Tails = [Tails<TNumber>.Never] }];
             }
 
-            int count = Math.Max(1, result.Count);
-            var cost = new Cost(options.Clock.GetElapsedTime(start) / count, Math.Max(1, run.Rows / count), 0);
+            int count = Math.Max(1, parts.Sum(part => part.Count));
+            var cost = new Cost(options.Clock.GetElapsedTime(start) / count, Math.Max(1, control.Rows / count), 0);
             var lineages = new LineageSource<T>(query);
-            Func<int[], T> valueOf = plan.Value.Compile<T>(result.Variables, run.EncoderOf);
-            var codes = new int[result.Variables.Count];
-            for (int row = 0; row < result.Count; row++)
+            IReadOnlyList<Field> variables = plan.Root.Variables;
+            Func<int[], T> valueOf = plan.Value.Compile<T>(variables, run.EncoderOf);
+            var codes = new int[variables.Count];
+            foreach (CodeTable<TNumber> part in parts)
             {
-                run.Tick(row);
-                for (int column = 0; column < codes.Length; column++)
+                for (int row = 0; row < part.Count; row++)
                 {
-                    codes[column] = result.Columns[column][row];
-                }
+                    run.Tick(row);
+                    for (int column = 0; column < codes.Length; column++)
+                    {
+                        codes[column] = part.Columns[column][row];
+                    }
 
-                yield return new Answer<T>(valueOf(codes), lineages, exact(result.Tails[row].NegateIf(plan.IsComplement), Name, cost));
+                    yield return new Answer<T>(
+                        valueOf(codes), lineages, exact(part.Tails[row].NegateIf(plan.IsComplement), Name, cost));
+                }
             }
         }
     }
+
+    private static List<CodeTable<TNumber>> RunParts<TNumber>(
+        SafeStep root, SafeRun<TNumber> run, int threads, CancellationToken cancellationToken)
+        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber> =>
+        SplitRun<TNumber>.TryCreate(root, run) is { } split
+            ? [.. OrderedParallel.Select(
+                [.. Enumerable.Range(0, split.Parts)], threads, (part, _) => root.Run(run.Part(split, part)), cancellationToken)]
+            : [root.Run(run)];
 
     private static string Indent(string text) => string.Join('\n', text.TrimEnd('\n').Split('\n').Select(line => $"  {line}"));
 }

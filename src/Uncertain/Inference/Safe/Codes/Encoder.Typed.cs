@@ -16,14 +16,19 @@ internal sealed class Encoder<TValue> : Encoder
     public override int Count => _values.Count;
 
     public override void Encode<TRow>(
-        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action<int> tick)
+        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action checkpoint)
     {
         var lambda = new Lambda<TRow, TValue>((Expression<Func<TRow, TValue>>)field, "a field");
-        for (int i = 0; i < codes.Length; i++)
+        var values = new TValue[Math.Min(Chunk, codes.Length)];
+        for (int start = 0; start < codes.Length; start += Chunk)
         {
-            tick(i);
-            TValue value = lambda.Invoke(rows[chosen is null ? i : chosen[i]]);
-            codes[i] = value is not null ? CodeOf(value) : dropNulls ? Dropped : NullCode();
+            checkpoint();
+            Span<TValue> chunk = values.AsSpan(0, Math.Min(Chunk, codes.Length - start));
+            lambda.InvokeAll(rows, chosen, start, chunk);
+            for (int i = 0; i < chunk.Length; i++)
+            {
+                codes[start + i] = chunk[i] is not null ? CodeOf(chunk[i]) : dropNulls ? Dropped : NullCode();
+            }
         }
     }
 

@@ -21,13 +21,13 @@ internal sealed class IntegerEncoder : Encoder
     public override int Count => _width + _otherValues.Count;
 
     public override void Encode<TRow>(
-        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action<int> tick)
+        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action checkpoint)
     {
         var lambda = new Lambda<TRow, int>((Expression<Func<TRow, int>>)field, "a field");
-        for (int i = 0; i < codes.Length; i++)
+        for (int start = 0; start < codes.Length; start += Chunk)
         {
-            tick(i);
-            codes[i] = lambda.Invoke(rows[chosen is null ? i : chosen[i]]);
+            checkpoint();
+            lambda.InvokeAll(rows, chosen, start, codes.AsSpan(start, Math.Min(Chunk, codes.Length - start)));
         }
 
         if (!_hasRange && codes.Length > 0)

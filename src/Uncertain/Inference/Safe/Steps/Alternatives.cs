@@ -41,18 +41,18 @@ internal sealed class Alternatives<TNumber>
 
     public static Alternatives<TNumber> Of(ScanStep scan, SafeRun<TNumber> run)
     {
-        int[] rows = scan.Read(run, out int[][] columns);
-        RowKeys keys = RowKeys.Of(columns, run.RangesOf(scan.Variables), rows.Length, out int[] keyOf);
+        ScanRows rows = run.RowsOf(scan) ?? scan.Read(run);
+        RowKeys keys = RowKeys.Of(rows.Columns, run.RangesOf(scan.Variables), rows.Count, out int[] keyOf);
         int count = keys.Count;
         var chances = new TNumber[count];
         var variableOf = new int[count];
         var chosen = new HashSet<int>();
-        for (int i = 0; i < rows.Length; i++)
+        for (int i = 0; i < rows.Count; i++)
         {
             run.Tick(i);
-            LineageRef lineage = scan.Part.Source.LineageOf(rows[i]);
+            LineageRef lineage = scan.Part.Source.LineageOf(rows.Record(i));
             bool certain = lineage == LineageRef.True;
-            chances[keyOf[i]] += certain ? TNumber.MultiplicativeIdentity : run.Chances.OfSlot(lineage.Index).True;
+            chances[keyOf[i]] += certain ? TNumber.MultiplicativeIdentity : run.Chances.OfSlot(lineage.Index);
             variableOf[keyOf[i]] = certain ? -1 - keyOf[i] : run.Chances.Variables.VariableOf(lineage.Index);
             if (!certain)
             {
@@ -72,7 +72,7 @@ internal sealed class Alternatives<TNumber>
             }
         }
 
-        return new Alternatives<TNumber>(scan, ScanStep.Compact(columns, keyOf, count), chances, groupOfRow, [.. rest]);
+        return new Alternatives<TNumber>(scan, ScanStep.Compact(rows.Columns, keyOf, count), chances, groupOfRow, [.. rest]);
     }
 
     /// <summary>1 minus the chances of the marked rows of a group, added up from what is not marked.</summary>
@@ -131,7 +131,7 @@ internal sealed class Alternatives<TNumber>
         {
             if (!chosen.Contains(slot))
             {
-                rest += run.Chances.OfSlot(slot).True;
+                rest += run.Chances.OfSlot(slot);
             }
         }
 

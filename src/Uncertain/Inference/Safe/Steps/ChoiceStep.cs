@@ -21,7 +21,7 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
     public override string Describe() =>
         $"project to {Names(Variables)}: add over the exclusive alternatives of {_alternatives.Part.Source.Name}";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         Alternatives<TNumber> choices = Alternatives<TNumber>.Of(_alternatives, run);
         CodeTable<TNumber> beside = _beside.Run(run);
@@ -61,7 +61,7 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
             tails[output] = tails[output] with { False = tails[output].False + unused };
         }
 
-        return run.Done(new CodeTable<TNumber>(
-            Variables, ScanStep.Compact(kept, outputOf, tails.Length), tails, beside.Factors + widest + 1));
+        return new CodeTable<TNumber>(
+            Variables, ScanStep.Compact(kept, outputOf, tails.Length), tails, beside.Factors + widest + 1);
     }
 }

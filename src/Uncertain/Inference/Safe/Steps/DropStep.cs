@@ -11,5 +11,5 @@ internal sealed class DropStep(SafeStep input, IEnumerable<Field> variables) : S
     public override string Describe() =>
         $"project to {Names(Variables)}: {Names(_input.Variables.Except(Variables))} follows from it";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run) => run.Done(_input.Run(run).Keep(Variables));
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run) => _input.Run(run).Keep(Variables);
 }

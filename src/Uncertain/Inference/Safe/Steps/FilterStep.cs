@@ -11,7 +11,7 @@ internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(
 
     public override string Describe() => $"where {PlanText.Of(condition.Body)}";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> input = _input.Run(run);
         Func<int[], bool> holds = condition.Compile<bool>(input.Variables, run.EncoderOf);
@@ -31,6 +31,6 @@ internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(
             }
         }
 
-        return run.Done(input.Rows(rows));
+        return input.Rows(rows);
     }
 }

@@ -13,31 +13,21 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
 
     public override string Describe() => $"join on {Names(_left.Variables.Intersect(_right.Variables))}: independent, multiply";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
-        CodeTable<TNumber> left = _left.Run(run);
-        CodeTable<TNumber> right = _right.Run(run);
+        // What is the same for all parts of a split run is indexed once, and looked up from each part.
+        (SafeStep probing, SafeStep indexed) = run.IsShared(_left) && !run.IsShared(_right) ? (_right, _left) : (_left, _right);
+        CodeTable<TNumber> left = probing.Run(run);
+        CodeTable<TNumber> right = indexed.Run(run);
         List<Field> common = [.. left.Variables.Intersect(right.Variables)];
-        RowKeys keys = RowKeys.Of(right.ColumnsOf(common), run.RangesOf(common), right.Count, out int[] keyOf);
-
-        // Rows of one key form a chain, the latest first; walking rows backwards makes it come out in order.
-        var first = new int[keys.Count];
-        var next = new int[right.Count];
-        Array.Fill(first, -1);
-        for (int row = right.Count - 1; row >= 0; row--)
-        {
-            next[row] = first[keyOf[row]];
-            first[keyOf[row]] = row;
-        }
-
-        int[][] leftKeys = left.ColumnsOf(common);
-        var leftRows = new List<int>();
-        var rightRows = new List<int>();
+        JoinIndex index = run.IndexOf(indexed, right, common);
+        int[][] keys = left.ColumnsOf(common);
+        var leftRows = new List<int>(left.Count);
+        var rightRows = new List<int>(left.Count);
         for (int row = 0; row < left.Count; row++)
         {
             run.Tick(row);
-            int key = keys.Find(leftKeys, row);
-            for (int match = key < 0 ? -1 : first[key]; match >= 0; match = next[match])
+            for (int match = index.First(keys, row); match >= 0; match = index.Next(match))
             {
                 run.Tick(leftRows.Count);
                 leftRows.Add(row);
@@ -55,7 +45,7 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
         int[][] columns = [.. Variables.Select(variable => left.Variables.Contains(variable)
             ? Gather(left.Column(variable), leftRows)
             : Gather(right.Column(variable), rightRows))];
-        return run.Done(new CodeTable<TNumber>(Variables, columns, tails, left.Factors + right.Factors));
+        return new CodeTable<TNumber>(Variables, columns, tails, left.Factors + right.Factors);
     }
 
     private static int[] Gather(int[] column, List<int> rows)

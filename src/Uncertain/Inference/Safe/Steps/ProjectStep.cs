@@ -15,10 +15,10 @@ internal sealed class ProjectStep(SafeStep input, IEnumerable<Field> variables) 
     public override string Describe() =>
         $"project to {Names(Variables)}: independent over {Names(_input.Variables.Except(Variables))}, by disjunction";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> input = _input.Run(run);
-        return run.Done(MergeRows(input, Variables, run));
+        return MergeRows(input, Variables, run);
     }
 
     /// <summary>Merges independent rows that agree on the given variables.</summary>

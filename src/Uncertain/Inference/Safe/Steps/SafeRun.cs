@@ -1,27 +1,45 @@
 using System.Numerics;
-using Uncertain.Execution;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
+using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Safe.Steps;
 
-/// <summary>One run of a safe plan in one number type.</summary>
-internal sealed class SafeRun<TNumber>(
-    ChanceReader<TNumber> chances, EvaluationOptions options, CancellationToken cancellationToken)
+/// <summary>
+/// One run of a safe plan in one number type, or one part of it where the run is split by a variable of the answers.
+/// </summary>
+internal sealed class SafeRun<TNumber>
     where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
     // A power of two: the clock is looked at every so many rows.
     private const int RowsBetweenChecks = 4096;
 
-    private readonly Dictionary<Field, Encoder> _encoders = [];
-    private readonly ProgressReporter _progress = new(options);
-    private readonly long _start = options.Clock.GetTimestamp();
+    private readonly RunControl _control;
+    private readonly Dictionary<Field, Encoder> _encoders;
+    private readonly SplitRun<TNumber>? _split;
+    private readonly int _part;
 
-    public ChanceReader<TNumber> Chances { get; } = chances;
+    public SafeRun(ChanceReader<TNumber> chances, RunControl control)
+    {
+        Chances = chances;
+        _control = control;
+        _encoders = [];
+    }
 
-    /// <summary>Rows that steps have produced so far.</summary>
-    public long Rows { get; private set; }
+    private SafeRun(SafeRun<TNumber> whole, SplitRun<TNumber> split, int part)
+    {
+        Chances = whole.Chances;
+        _control = whole._control;
+        _encoders = whole._encoders;
+        _split = split;
+        _part = part;
+    }
+
+    public ChanceReader<TNumber> Chances { get; }
+
+    /// <summary>The run of one part of a split; what it encodes has been encoded before.</summary>
+    public SafeRun<TNumber> Part(SplitRun<TNumber> split, int part) => new(this, split, part);
 
     public Encoder EncoderOf(Field variable)
     {
@@ -36,35 +54,39 @@ internal sealed class SafeRun<TNumber>(
     /// <summary>For each variable a number that all its codes are smaller than, as far as they are known now.</summary>
     public int[] RangesOf(IEnumerable<Field> variables) => [.. variables.Select(variable => EncoderOf(variable).Count)];
 
+    /// <summary>The result of a step that is the same for all parts, or null.</summary>
+    public CodeTable<TNumber>? Shared(SafeStep step) => _split?.TableOf(step);
+
+    /// <summary>The rows of a scan that belong to this part, or null if the run is not split.</summary>
+    public ScanRows? RowsOf(ScanStep scan) => _split?.RowsOf(scan, _part);
+
+    /// <summary>An index of a step's result; made once for all parts where the result is.</summary>
+    public JoinIndex IndexOf(SafeStep step, CodeTable<TNumber> table, IReadOnlyList<Field> variables) =>
+        _split is not null && _split.TableOf(step) is not null
+            ? _split.IndexOf(step, variables, () => JoinIndex.Of(table, variables, RangesOf(variables)))
+            : JoinIndex.Of(table, variables, RangesOf(variables));
+
+    /// <summary>Whether a step's result is the same for all parts.</summary>
+    public bool IsShared(SafeStep step) => Shared(step) is not null;
+
     /// <summary>
     /// To be called for every row: looks at the token each time, since a caller's lambda may be slow, and at the deadline now and then.
     /// </summary>
     public void Tick(int row)
     {
-        cancellationToken.ThrowIfCancellationRequested();
+        _control.ThrowIfCancelled();
         if ((row & (RowsBetweenChecks - 1)) == 0)
         {
             Checkpoint();
         }
     }
 
-    public void Checkpoint()
-    {
-        cancellationToken.ThrowIfCancellationRequested();
-        if (options.Clock.GetElapsedTime(_start) > options.Deadline)
-        {
-            throw new EvaluationRefusedException(
-                $"The safe plan did not end within the deadline of {options.Deadline}. Give it more time, or filter the sources first: "
-                + "no faster exact evaluator exists for such a query.");
-        }
-    }
+    public void Checkpoint() => _control.Checkpoint();
 
     /// <summary>Counts a step's rows and reports progress.</summary>
     public CodeTable<TNumber> Done(CodeTable<TNumber> table)
     {
-        Checkpoint();
-        Rows += table.Count;
-        _progress.Report(EvaluationStage.Evaluating, Rows, null);
+        _control.Done(table.Count);
         return table;
     }
 }

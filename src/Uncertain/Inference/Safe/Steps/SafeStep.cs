@@ -18,7 +18,13 @@ internal abstract class SafeStep(IEnumerable<Field> variables, params SafeStep[]
     /// <summary>The step in words, without its inputs: one line.</summary>
     public abstract string Describe();
 
-    public abstract CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    /// <summary>The result; of a step whose result is the same for all parts of a split run, the one computed for all.</summary>
+    public CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+        => run.Shared(this) ?? run.Done(Compute(run));
+
+    protected abstract CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
         where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>;
 

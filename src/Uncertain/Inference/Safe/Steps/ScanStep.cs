@@ -29,40 +29,71 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         return $"read {Names(Variables)} of {Part.Source.Name}{filter}: {how}";
     }
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         if (Part.IsExclusive)
         {
-            return run.Done(Alternatives<TNumber>.Of(this, run).ToTable());
+            return Alternatives<TNumber>.Of(this, run).ToTable();
         }
 
-        int[] rows = Read(run, out int[][] columns);
-        RowKeys keys = RowKeys.Of(columns, run.RangesOf(Variables), rows.Length, out int[] keyOf);
+        ScanRows rows = run.RowsOf(this) ?? Read(run);
+        RowKeys keys = RowKeys.Of(rows.Columns, run.RangesOf(Variables), rows.Count, out int[] keyOf);
         var tails = new Tails<TNumber>[keys.Count];
         var members = new int[tails.Length];
         Array.Fill(tails, Tails<TNumber>.Never);
-        for (int i = 0; i < rows.Length; i++)
+        ReadOnlySpan<double> chances = ChancesOf(rows, run);
+        for (int i = 0; i < rows.Count; i++)
         {
             run.Tick(i);
-            LineageRef lineage = Part.IsGuard ? LineageRef.True : Part.Source.LineageOf(rows[i]);
-            tails[keyOf[i]] |= lineage == LineageRef.True
-                ? Tails<TNumber>.Always
-                : run.Chances.OfSlot(lineage.Index);
+            tails[keyOf[i]] |= run.Chances.OfChance(chances[i]);
             members[keyOf[i]]++;
         }
 
-        return run.Done(new CodeTable<TNumber>(
-            Variables, Compact(columns, keyOf, tails.Length), tails, Part.IsChancy ? members.DefaultIfEmpty().Max() : 1));
+        return new CodeTable<TNumber>(
+            Variables, Compact(rows.Columns, keyOf, tails.Length), tails, Part.IsChancy ? members.DefaultIfEmpty().Max() : 1);
     }
 
-    /// <summary>The rows that pass, and the codes of the variables for them.</summary>
-    public int[] Read<TNumber>(SafeRun<TNumber> run, out int[][] columns)
+    /// <summary>The chances of rows of a source that is not exclusive; null for one that is.</summary>
+    public double[]? ChancesOf<TNumber>(ScanRows rows, SafeRun<TNumber> run)
+        where TNumber : struct, System.Numerics.IAdditionOperators<TNumber, TNumber, TNumber>,
+            System.Numerics.IMultiplyOperators<TNumber, TNumber, TNumber>, System.Numerics.IAdditiveIdentity<TNumber, TNumber>,
+            System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        if (Part.IsExclusive || rows.Chances is not null)
+        {
+            return rows.Chances;
+        }
+
+        var chances = new double[rows.Count];
+        if (!Part.IsChancy)
+        {
+            Array.Fill(chances, 1);
+        }
+        else if (rows.Records is null && Part.Source.FirstSlot >= 0)
+        {
+            run.Chances.Variables.Chances(Part.Source.FirstSlot, rows.Count).CopyTo(chances);
+        }
+        else
+        {
+            for (int i = 0; i < chances.Length; i++)
+            {
+                LineageRef lineage = Part.Source.LineageOf(rows.Record(i));
+                chances[i] = lineage == LineageRef.True ? 1 : run.Chances.Variables.Chance(lineage.Index);
+            }
+        }
+
+        return chances;
+    }
+
+    /// <summary>The rows that pass the filters, with the codes of the variables.</summary>
+    public ScanRows Read<TNumber>(SafeRun<TNumber> run)
         where TNumber : struct, System.Numerics.IAdditionOperators<TNumber, TNumber, TNumber>,
             System.Numerics.IMultiplyOperators<TNumber, TNumber, TNumber>, System.Numerics.IAdditiveIdentity<TNumber, TNumber>,
             System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
     {
         ISource source = Part.Source;
-        int[] rows = source.Choose([.. Part.Filters.Select(filter => Expression.Lambda(filter, Part.Atom.Row))], run.Tick);
+        int[]? records = source.Choose([.. Part.Filters.Select(filter => Expression.Lambda(filter, Part.Atom.Row))], run.Checkpoint);
+        int count = records?.Length ?? source.RecordCount;
         var codes = new List<(Field Variable, int[] Codes)>();
         foreach (Field field in Part.Fields)
         {
@@ -74,32 +105,20 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
                 continue;
             }
 
-            var column = new int[rows.Length];
+            var column = new int[count];
             source.Encode(
-                run.EncoderOf(variable), Expression.Lambda(field.Expression, Part.Atom.Row), rows, field.DropsNulls, column, run.Tick);
+                run.EncoderOf(variable), Expression.Lambda(field.Expression, Part.Atom.Row), records, field.DropsNulls, column,
+                run.Checkpoint);
             codes.Add((variable, column));
         }
 
-        if (codes.Count == codes.Select(column => column.Variable).Distinct().Count()
-            && !Part.Fields.Any(field => field.DropsNulls && CanBeNull(field.Expression.Type)))
-        {
-            columns = [.. Variables.Select(variable => codes.Find(column => column.Variable == variable).Codes)];
-            return rows;
-        }
-
-        var kept = new List<int>(rows.Length);
-        for (int i = 0; i < rows.Length; i++)
-        {
-            if (codes.TrueForAll(column => column.Codes[i] != Encoder.Dropped)
-                && codes.TrueForAll(column => column.Codes[i] == codes.Find(first => first.Variable == column.Variable).Codes[i]))
-            {
-                kept.Add(i);
-            }
-        }
-
-        int[][] all = [.. Variables.Select(variable => codes.Find(column => column.Variable == variable).Codes)];
-        columns = kept.Count == rows.Length ? all : [.. all.Select(column => kept.Select(i => column[i]).ToArray())];
-        return kept.Count == rows.Length ? rows : [.. kept.Select(i => rows[i])];
+        var rows = new ScanRows(
+            count, records, null, [.. Variables.Select(variable => codes.Find(column => column.Variable == variable).Codes)]);
+        bool allKept = codes.Count == codes.Select(column => column.Variable).Distinct().Count()
+            && !Part.Fields.Any(field => field.DropsNulls && CanBeNull(field.Expression.Type));
+        return allKept ? rows : rows.Keep(row =>
+            codes.TrueForAll(column => column.Codes[row] != Encoder.Dropped
+                && column.Codes[row] == codes.Find(first => first.Variable == column.Variable).Codes[row]));
     }
 
     private static bool CanBeNull(Type type) => !type.IsValueType || Nullable.GetUnderlyingType(type) is not null;

@@ -11,13 +11,13 @@ internal sealed class UnionStep(SafeStep left, SafeStep right, IEnumerable<Field
 
     public override string Describe() => $"union of {Names(Variables)}: independent, by disjunction";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> left = _left.Run(run);
         CodeTable<TNumber> right = _right.Run(run);
         int[][] columns = [.. left.ColumnsOf(Variables).Zip(right.ColumnsOf(Variables), (l, r) => (int[])[.. l, .. r])];
         var both = new CodeTable<TNumber>(
             Variables, columns, [.. left.Tails, .. right.Tails], Math.Max(left.Factors, right.Factors));
-        return run.Done(ProjectStep.MergeRows(both, Variables, run));
+        return ProjectStep.MergeRows(both, Variables, run);
     }
 }

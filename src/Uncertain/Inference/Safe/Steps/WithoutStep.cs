@@ -15,29 +15,23 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
 
     public override string Describe() => $"without the same {Names(_absent.Variables)}: independent, multiply by the complement";
 
-    public override CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> input = _input.Run(run);
         CodeTable<TNumber> absent = _absent.Run(run);
-        RowKeys keys = RowKeys.Of(absent.Columns, run.RangesOf(absent.Variables), absent.Count, out int[] keyOf);
-        var rowOfKey = new int[absent.Count];
-        for (int row = 0; row < absent.Count; row++)
-        {
-            rowOfKey[keyOf[row]] = row;
-        }
-
+        JoinIndex index = run.IndexOf(_absent, absent, absent.Variables);
         int[][] columns = input.ColumnsOf(absent.Variables);
         var tails = (Tails<TNumber>[])input.Tails.Clone();
         for (int row = 0; row < tails.Length; row++)
         {
             run.Tick(row);
-            int key = keys.Find(columns, row);
-            if (key >= 0)
+            int match = index.First(columns, row);
+            if (match >= 0)
             {
-                tails[row] &= !absent.Tails[rowOfKey[key]];
+                tails[row] &= !absent.Tails[match];
             }
         }
 
-        return run.Done(input with { Tails = tails, Factors = input.Factors + absent.Factors });
+        return input with { Tails = tails, Factors = input.Factors + absent.Factors };
     }
 }

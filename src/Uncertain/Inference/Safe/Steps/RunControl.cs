@@ -1,0 +1,35 @@
+using System.Globalization;
+using Uncertain.Execution;
+
+namespace Uncertain.Inference.Safe.Steps;
+
+/// <summary>What all parts of a run share: the caller's token, the deadline, progress and the count of rows.</summary>
+internal sealed class RunControl(EvaluationOptions options, CancellationToken cancellationToken)
+{
+    private readonly ProgressReporter _progress = new(options);
+    private readonly long _start = options.Clock.GetTimestamp();
+    private long _rows;
+
+    /// <summary>Rows that steps have produced so far.</summary>
+    public long Rows => Volatile.Read(ref _rows);
+
+    public void ThrowIfCancelled() => cancellationToken.ThrowIfCancellationRequested();
+
+    public void Checkpoint()
+    {
+        cancellationToken.ThrowIfCancellationRequested();
+        if (options.Deadline is { } deadline && options.Clock.GetElapsedTime(_start) > deadline)
+        {
+            throw new EvaluationRefusedException(string.Create(
+                CultureInfo.InvariantCulture,
+                $"The safe plan did not end by the deadline of {deadline.TotalSeconds:0.###} s, after {Rows:N0} rows. Allow a later "
+                + $"EvaluationOptions.Deadline, or filter the sources first: no faster exact evaluator exists for such a query."));
+        }
+    }
+
+    public void Done(int rows)
+    {
+        Checkpoint();
+        _progress.Report(EvaluationStage.Evaluating, Interlocked.Add(ref _rows, rows), null);
+    }
+}
