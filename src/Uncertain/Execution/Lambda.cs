@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Linq.Expressions;
 
 namespace Uncertain.Execution;
@@ -16,7 +17,9 @@ internal sealed class Lambda<T, TResult>(Expression<Func<T, TResult>> tree, stri
     /// <param name="chosen">Which of them, or null for all.</param>
     /// <param name="start">The first one wanted, as a place in <paramref name="chosen"/> or in the records.</param>
     /// <param name="results">Takes the results; its length says how many are wanted.</param>
-    public void InvokeAll(T[] records, int[]? chosen, int start, Span<TResult> results)
+    /// <param name="cancellationToken">Looked at for each record, since the lambda may be slow.</param>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    public void InvokeAll(T[] records, int[]? chosen, int start, Span<TResult> results, CancellationToken cancellationToken)
     {
         Func<T, TResult> compiled = Compiled;
         int i = 0;
@@ -26,6 +29,7 @@ internal sealed class Lambda<T, TResult>(Expression<Func<T, TResult>> tree, stri
             {
                 for (; i < results.Length; i++)
                 {
+                    cancellationToken.ThrowIfCancellationRequested();
                     results[i] = compiled(records[start + i]);
                 }
             }
@@ -33,6 +37,7 @@ internal sealed class Lambda<T, TResult>(Expression<Func<T, TResult>> tree, stri
             {
                 for (; i < results.Length; i++)
                 {
+                    cancellationToken.ThrowIfCancellationRequested();
                     results[i] = compiled(records[chosen[start + i]]);
                 }
             }

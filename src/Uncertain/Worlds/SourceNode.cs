@@ -64,7 +64,7 @@ internal sealed class SourceNode<T>(
 
     public int FirstSlot => Lineages.FirstSlot;
 
-    public int[]? Choose(IReadOnlyList<LambdaExpression> filters, Action checkpoint)
+    public int[]? Choose(IReadOnlyList<LambdaExpression> filters, CancellationToken cancellationToken)
     {
         if (filters.Count == 0 && Lineages.AllPossible)
         {
@@ -75,11 +75,7 @@ internal sealed class SourceNode<T>(
         var chosen = new List<int>();
         for (int i = 0; i < Records.Length; i++)
         {
-            if (i % Batch<T>.Capacity == 0)
-            {
-                checkpoint();
-            }
-
+            cancellationToken.ThrowIfCancellationRequested();
             if (Lineages[i] != LineageRef.False && AllHold(conditions, Records[i]))
             {
                 chosen.Add(i);
@@ -89,8 +85,8 @@ internal sealed class SourceNode<T>(
         return [.. chosen];
     }
 
-    public void Encode(Encoder encoder, LambdaExpression field, int[]? chosen, bool dropNulls, int[] codes, Action checkpoint) =>
-        encoder.Encode(Records, chosen, field, dropNulls, codes, checkpoint);
+    public void Encode(Encoder encoder, LambdaExpression field, int[]? chosen, bool dropNulls, int[] codes, CancellationToken cancellationToken) =>
+        encoder.Encode(Records, chosen, field, dropNulls, codes, cancellationToken);
 
     public LineageRef LineageOf(int record) => Lineages[record];
 

@@ -188,6 +188,33 @@ public sealed class SafePlanTests
         Assert.InRange(none.LogValue / (1_000_000 * Math.Log(0.25)), 1 - 1e-12, 1 + 1e-12);
     }
 
+    [Theory]
+    [InlineData(1)]
+    [InlineData(3)]
+    public void Evaluate_ManyRows_IsSplitWithoutChangingAnyAnswer(int threads)
+    {
+        // Enough rows for a run in parts; repeats of (X, Y) and places without a point among them.
+        const int Rows = 300_000;
+        var random = new Random(7);
+        Edge[] edges = [.. Enumerable.Range(0, Rows).Select(_ => new Edge(random.Next(900), random.Next(-50, 400), random.NextDouble() / 100))];
+        Point[] points = [.. Enumerable.Range(100, 700).Select(x => new Point(x, 0.01 + (0.9 * random.NextDouble())))];
+        var query = from edge in _worlds.Independent(edges, edge => edge.Chance)
+                    join point in _worlds.Independent(points, point => point.Chance) on edge.X equals point.X
+                    select edge.Y;
+
+        var complements = new Dictionary<int, double>();
+        foreach (var pair in edges.Where(edge => edge.X is >= 100 and < 800).GroupBy(edge => (edge.X, edge.Y)))
+        {
+            double any = 1 - pair.Aggregate(1.0, (product, edge) => product * (1 - edge.Chance));
+            complements[pair.Key.Y] = complements.GetValueOrDefault(pair.Key.Y, 1) * (1 - (any * points[pair.Key.X - 100].Chance));
+        }
+
+        IReadOnlyList<Answer<int>> answers =
+            query.Evaluate(new EvaluationOptions { Evaluator = Evaluators.SafePlan, Threads = threads });
+        Assert.Equal(complements.Count, answers.Count);
+        Assert.All(answers, answer => Assert.Equal(complements[answer.Value], answer.Probability.Complement, 1e-12));
+    }
+
     [Fact]
     public void Evaluate_LineageAskedAfterwards_IsDerivedThen()
     {

@@ -16,15 +16,14 @@ internal sealed class Encoder<TValue> : Encoder
     public override int Count => _values.Count;
 
     public override void Encode<TRow>(
-        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action checkpoint)
+        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, CancellationToken cancellationToken)
     {
         var lambda = new Lambda<TRow, TValue>((Expression<Func<TRow, TValue>>)field, "a field");
         var values = new TValue[Math.Min(Chunk, codes.Length)];
         for (int start = 0; start < codes.Length; start += Chunk)
         {
-            checkpoint();
             Span<TValue> chunk = values.AsSpan(0, Math.Min(Chunk, codes.Length - start));
-            lambda.InvokeAll(rows, chosen, start, chunk);
+            lambda.InvokeAll(rows, chosen, start, chunk, cancellationToken);
             for (int i = 0; i < chunk.Length; i++)
             {
                 codes[start + i] = chunk[i] is not null ? CodeOf(chunk[i]) : dropNulls ? Dropped : NullCode();

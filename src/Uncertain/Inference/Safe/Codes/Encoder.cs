@@ -7,7 +7,7 @@ namespace Uncertain.Inference.Safe.Codes;
 /// </summary>
 internal abstract class Encoder
 {
-    /// <summary>Rows that are encoded between two looks at the token.</summary>
+    /// <summary>Rows whose values are computed before they are encoded.</summary>
     protected const int Chunk = 4096;
 
     /// <summary>The code of a null that must not join.</summary>
@@ -21,7 +21,7 @@ internal abstract class Encoder
         : (Encoder)Activator.CreateInstance(typeof(Encoder<>).MakeGenericType(type))!;
 
     /// <summary>Codes of one field for chosen rows of a source, or for all rows if <paramref name="chosen"/> is null.</summary>
-    public abstract void Encode<TRow>(TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action checkpoint);
+    public abstract void Encode<TRow>(TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, CancellationToken cancellationToken);
 
     /// <summary>An expression that gives the value back for a code.</summary>
     public abstract Expression Decode(Expression code);

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Linq.Expressions;
 using Uncertain.Execution;
 
@@ -20,14 +21,14 @@ internal sealed class IntegerEncoder : Encoder
 
     public override int Count => _width + _otherValues.Count;
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public override void Encode<TRow>(
-        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, Action checkpoint)
+        TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, CancellationToken cancellationToken)
     {
         var lambda = new Lambda<TRow, int>((Expression<Func<TRow, int>>)field, "a field");
         for (int start = 0; start < codes.Length; start += Chunk)
         {
-            checkpoint();
-            lambda.InvokeAll(rows, chosen, start, codes.AsSpan(start, Math.Min(Chunk, codes.Length - start)));
+            lambda.InvokeAll(rows, chosen, start, codes.AsSpan(start, Math.Min(Chunk, codes.Length - start)), cancellationToken);
         }
 
         if (!_hasRange && codes.Length > 0)

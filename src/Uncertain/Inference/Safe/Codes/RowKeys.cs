@@ -1,8 +1,10 @@
+using System.Runtime.CompilerServices;
+
 namespace Uncertain.Inference.Safe.Codes;
 
 /// <summary>
-/// Dense numbers, in order of first appearance, for combinations of codes. Columns are combined from left to right: by position where
-/// the product of their ranges is small, else through a hash table. No columns are one combination.
+/// Dense numbers, in order of first appearance, for combinations of codes. Columns are combined one by one, the narrowest first: by
+/// position while the product of their ranges is small, else through a hash table. No columns are one combination.
 /// </summary>
 internal sealed class RowKeys
 {
@@ -11,7 +13,7 @@ internal sealed class RowKeys
 
     private readonly Level[] _levels;
 
-    // From the last level's direct places to dense numbers plus one; null where that level hashes, which numbers densely itself.
+    // From the last level's places to dense numbers plus one; null where the numbers of that level are dense already.
     private int[]? _numberOfPlace;
 
     private RowKeys(Level[] levels) => _levels = levels;
@@ -21,28 +23,28 @@ internal sealed class RowKeys
 
     /// <summary>Numbers the rows of the given columns; equal combinations have equal numbers.</summary>
     /// <param name="columns">Codes by column and row.</param>
-    /// <param name="ranges">For each column, a number that all codes are smaller than.</param>
     /// <param name="rows">Number of rows.</param>
     /// <param name="keys">The number of each row's combination.</param>
-    public static RowKeys Of(IReadOnlyList<int[]> columns, IReadOnlyList<int> ranges, int rows, out int[] keys)
+    public static RowKeys Of(int[][] columns, int rows, out int[] keys)
     {
         keys = new int[rows];
-        var result = new RowKeys(new Level[columns.Count]);
-        long places = 1;
-        for (int i = 0; i < columns.Count; i++)
+        if (columns.Length == 0 || rows == 0)
         {
-            bool direct = places * ranges[i] <= ((long)rows * PlacesPerRow) + 1024;
-            var level = result._levels[i] = new Level(ranges[i], direct ? null : new PairTable());
-            level.Number(keys, columns[i]);
-            places = direct ? places * ranges[i] : level.Table!.Count;
+            return new RowKeys([]) { Count = rows == 0 ? 0 : 1 };
+        }
+
+        Level[] levels = [.. columns.Select(Level.Over).OrderBy(level => level.Width)];
+        var result = new RowKeys(levels);
+        long places = 1;
+        for (int i = 0; i < levels.Length; i++)
+        {
+            bool direct = places * levels[i].Width <= ((long)rows * PlacesPerRow) + 1024;
+            levels[i].Number(keys, columns[levels[i].Column], direct ? null : new PairTable(rows));
+            places = direct ? places * levels[i].Width : levels[i].Table!.Count;
         }
 
         result.Count = (int)places;
-        if (columns.Count == 0)
-        {
-            result.Count = rows == 0 ? 0 : 1;
-        }
-        else if (result._levels[^1].Table is null)
+        if (levels[^1].Table is null)
         {
             result.Renumber(keys, (int)places);
         }
@@ -51,12 +53,12 @@ internal sealed class RowKeys
     }
 
     /// <summary>The number of a combination, or -1 if no row has it.</summary>
-    public int Find(IReadOnlyList<int[]> columns, int row)
+    public int Find(int[][] columns, int row)
     {
         int key = 0;
-        for (int i = 0; i < _levels.Length; i++)
+        foreach (Level level in _levels)
         {
-            key = _levels[i].Find(key, columns[i][row]);
+            key = level.Find(key, columns[level.Column][row]);
             if (key < 0)
             {
                 return -1;
@@ -66,45 +68,77 @@ internal sealed class RowKeys
         return _levels.Length == 0 ? Count - 1 : _numberOfPlace is null ? key : _numberOfPlace[key] - 1;
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Renumber(int[] keys, int places)
     {
-        _numberOfPlace = new int[places];
-        Count = 0;
+        var numbers = new int[places];
+        int count = 0;
+        bool inOrder = true;
         for (int row = 0; row < keys.Length; row++)
         {
-            ref int number = ref _numberOfPlace[keys[row]];
+            ref int number = ref numbers[keys[row]];
             if (number == 0)
             {
-                number = ++Count;
+                number = ++count;
+                inOrder &= keys[row] == count - 1;
             }
 
             keys[row] = number - 1;
         }
+
+        Count = count;
+        _numberOfPlace = inOrder && count == places ? null : numbers;
     }
 
-    private sealed record Level(int Range, PairTable? Table)
+    /// <summary>One column: its smallest code, the width of its range, and how it is combined with the columns before it.</summary>
+    private sealed class Level
     {
-        public void Number(int[] keys, int[] column)
+        private int _low;
+
+        public int Column { get; private init; }
+
+        public long Width { get; private init; }
+
+        public PairTable? Table { get; private set; }
+
+        public static Level Over(int[] codes, int column)
         {
-            if (Table is null)
+            int low = codes.Min();
+            return new Level { Column = column, _low = low, Width = (long)codes.Max() - low + 1 };
+        }
+
+        [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+        public void Number(int[] keys, int[] column, PairTable? table)
+        {
+            Table = table;
+            int low = _low;
+            int width = (int)Width;
+            if (table is null)
             {
                 for (int row = 0; row < keys.Length; row++)
                 {
-                    keys[row] = (keys[row] * Range) + column[row];
+                    keys[row] = (keys[row] * width) + (column[row] - low);
                 }
             }
             else
             {
                 for (int row = 0; row < keys.Length; row++)
                 {
-                    keys[row] = Table.NumberOf(Pair(keys[row], column[row]));
+                    keys[row] = table.NumberOf(Pair(keys[row], column[row]));
                 }
             }
         }
 
-        // Codes that came up after the numbering are outside the range and have no number.
-        public int Find(int key, int code) =>
-            Table is not null ? Table.Find(Pair(key, code)) : code < Range ? (key * Range) + code : -1;
+        public int Find(int key, int code)
+        {
+            if (Table is not null)
+            {
+                return Table.Find(Pair(key, code));
+            }
+
+            uint place = (uint)(code - _low);
+            return place < Width ? (key * (int)Width) + (int)place : -1;
+        }
 
         private static long Pair(int high, int low) => ((long)high << 32) | (uint)low;
     }

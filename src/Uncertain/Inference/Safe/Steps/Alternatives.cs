@@ -42,7 +42,7 @@ internal sealed class Alternatives<TNumber>
     public static Alternatives<TNumber> Of(ScanStep scan, SafeRun<TNumber> run)
     {
         ScanRows rows = run.RowsOf(scan) ?? scan.Read(run);
-        RowKeys keys = RowKeys.Of(rows.Columns, run.RangesOf(scan.Variables), rows.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, out int[] keyOf);
         int count = keys.Count;
         var chances = new TNumber[count];
         var variableOf = new int[count];

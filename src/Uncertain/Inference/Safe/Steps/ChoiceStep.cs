@@ -25,7 +25,7 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
     {
         Alternatives<TNumber> choices = Alternatives<TNumber>.Of(_alternatives, run);
         CodeTable<TNumber> beside = _beside.Run(run);
-        RowKeys choiceKeys = RowKeys.Of(choices.Columns, run.RangesOf(_alternatives.Variables), choices.Chances.Length, out int[] keyOfChoice);
+        RowKeys choiceKeys = RowKeys.Of(choices.Columns, choices.Chances.Length, out int[] keyOfChoice);
         var choiceOfKey = new int[choiceKeys.Count];
         for (int choice = 0; choice < keyOfChoice.Length; choice++)
         {
@@ -34,7 +34,7 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
 
         int[][] choiceColumns = beside.ColumnsOf(_alternatives.Variables);
         int[][] kept = beside.ColumnsOf(Variables);
-        RowKeys outputs = RowKeys.Of(kept, run.RangesOf(Variables), beside.Count, out int[] outputOf);
+        RowKeys outputs = RowKeys.Of(kept, beside.Count, out int[] outputOf);
         var tails = new Tails<TNumber>[outputs.Count];
         var marked = new List<HashSet<int>>();
         for (int output = 0; output < tails.Length; output++)

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Numerics;
@@ -13,6 +14,7 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
 
     public override string Describe() => $"join on {Names(_left.Variables.Intersect(_right.Variables))}: independent, multiply";
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         // What is the same for all parts of a split run is indexed once, and looked up from each part.

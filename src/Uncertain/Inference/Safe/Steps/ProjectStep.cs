@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Numerics;
@@ -22,13 +23,14 @@ internal sealed class ProjectStep(SafeStep input, IEnumerable<Field> variables) 
     }
 
     /// <summary>Merges independent rows that agree on the given variables.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public static CodeTable<TNumber> MergeRows<TNumber>(CodeTable<TNumber> input, IReadOnlyList<Field> variables, SafeRun<TNumber> run)
         where TNumber : struct, System.Numerics.IAdditionOperators<TNumber, TNumber, TNumber>,
             System.Numerics.IMultiplyOperators<TNumber, TNumber, TNumber>, System.Numerics.IAdditiveIdentity<TNumber, TNumber>,
             System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
     {
         int[][] columns = input.ColumnsOf(variables);
-        RowKeys keys = RowKeys.Of(columns, run.RangesOf(variables), input.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(columns, input.Count, out int[] keyOf);
         var tails = new Tails<TNumber>[keys.Count];
         var members = new long[tails.Length];
         Array.Fill(tails, Tails<TNumber>.Never);

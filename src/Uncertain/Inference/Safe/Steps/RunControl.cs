@@ -13,11 +13,11 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
     /// <summary>Rows that steps have produced so far.</summary>
     public long Rows => Volatile.Read(ref _rows);
 
-    public void ThrowIfCancelled() => cancellationToken.ThrowIfCancellationRequested();
+    public CancellationToken Cancellation { get; } = cancellationToken;
 
     public void Checkpoint()
     {
-        cancellationToken.ThrowIfCancellationRequested();
+        Cancellation.ThrowIfCancellationRequested();
         if (options.Deadline is { } deadline && options.Clock.GetElapsedTime(_start) > deadline)
         {
             throw new EvaluationRefusedException(string.Create(

@@ -38,6 +38,8 @@ internal sealed class SafeRun<TNumber>
 
     public ChanceReader<TNumber> Chances { get; }
 
+    public CancellationToken Cancellation => _control.Cancellation;
+
     /// <summary>The run of one part of a split; what it encodes has been encoded before.</summary>
     public SafeRun<TNumber> Part(SplitRun<TNumber> split, int part) => new(this, split, part);
 
@@ -51,9 +53,6 @@ internal sealed class SafeRun<TNumber>
         return encoder;
     }
 
-    /// <summary>For each variable a number that all its codes are smaller than, as far as they are known now.</summary>
-    public int[] RangesOf(IEnumerable<Field> variables) => [.. variables.Select(variable => EncoderOf(variable).Count)];
-
     /// <summary>The result of a step that is the same for all parts, or null.</summary>
     public CodeTable<TNumber>? Shared(SafeStep step) => _split?.TableOf(step);
 
@@ -63,8 +62,8 @@ internal sealed class SafeRun<TNumber>
     /// <summary>An index of a step's result; made once for all parts where the result is.</summary>
     public JoinIndex IndexOf(SafeStep step, CodeTable<TNumber> table, IReadOnlyList<Field> variables) =>
         _split is not null && _split.TableOf(step) is not null
-            ? _split.IndexOf(step, variables, () => JoinIndex.Of(table, variables, RangesOf(variables)))
-            : JoinIndex.Of(table, variables, RangesOf(variables));
+            ? _split.IndexOf(step, variables, () => JoinIndex.Of(table, variables))
+            : JoinIndex.Of(table, variables);
 
     /// <summary>Whether a step's result is the same for all parts.</summary>
     public bool IsShared(SafeStep step) => Shared(step) is not null;
@@ -74,7 +73,7 @@ internal sealed class SafeRun<TNumber>
     /// </summary>
     public void Tick(int row)
     {
-        _control.ThrowIfCancelled();
+        Cancellation.ThrowIfCancellationRequested();
         if ((row & (RowsBetweenChecks - 1)) == 0)
         {
             Checkpoint();

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 namespace Uncertain.Inference.Safe.Steps;
 
 /// <summary>Rows of a source as a scan reads them: codes of the variables, which records they are, and the records' chances.</summary>
@@ -23,6 +24,7 @@ internal sealed record ScanRows(int Count, int[]? Records, double[]? Chances, in
     /// <param name="range">A number that all its codes are smaller than.</param>
     /// <param name="parts">Number of parts.</param>
     /// <param name="chances">The chances of all rows, to be split with them; null if they are looked up by record.</param>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public ScanRows[] Split(int column, int range, int parts, double[]? chances)
     {
         int[] codes = Columns[column];

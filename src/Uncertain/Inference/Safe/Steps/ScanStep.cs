@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Linq.Expressions;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
@@ -29,6 +30,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         return $"read {Names(Variables)} of {Part.Source.Name}{filter}: {how}";
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         if (Part.IsExclusive)
@@ -37,7 +39,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         }
 
         ScanRows rows = run.RowsOf(this) ?? Read(run);
-        RowKeys keys = RowKeys.Of(rows.Columns, run.RangesOf(Variables), rows.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, out int[] keyOf);
         var tails = new Tails<TNumber>[keys.Count];
         var members = new int[tails.Length];
         Array.Fill(tails, Tails<TNumber>.Never);
@@ -92,7 +94,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
     {
         ISource source = Part.Source;
-        int[]? records = source.Choose([.. Part.Filters.Select(filter => Expression.Lambda(filter, Part.Atom.Row))], run.Checkpoint);
+        int[]? records = source.Choose([.. Part.Filters.Select(filter => Expression.Lambda(filter, Part.Atom.Row))], run.Cancellation);
         int count = records?.Length ?? source.RecordCount;
         var codes = new List<(Field Variable, int[] Codes)>();
         foreach (Field field in Part.Fields)
@@ -108,7 +110,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             var column = new int[count];
             source.Encode(
                 run.EncoderOf(variable), Expression.Lambda(field.Expression, Part.Atom.Row), records, field.DropsNulls, column,
-                run.Checkpoint);
+                run.Cancellation);
             codes.Add((variable, column));
         }
 
@@ -124,6 +126,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
     private static bool CanBeNull(Type type) => !type.IsValueType || Nullable.GetUnderlyingType(type) is not null;
 
     /// <summary>One row for each key.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public static int[][] Compact(int[][] columns, int[] keyOf, int keys)
     {
         var result = new int[columns.Length][];

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Numerics;
@@ -15,6 +16,7 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
 
     public override string Describe() => $"without the same {Names(_absent.Variables)}: independent, multiply by the complement";
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> input = _input.Run(run);
