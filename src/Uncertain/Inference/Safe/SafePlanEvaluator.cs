@@ -63,11 +63,27 @@ internal sealed class SafePlanEvaluator : IEvaluator
     {
         long start = options.Clock.GetTimestamp();
         VariableTable table = query.Worlds.Variables;
+        double smallest = 1;
         var plain = new SafeRun<double>(
-            new ChanceReader<double>(table, slot => TailConversions.FromChance(table.Chance(slot)), table.NoneChance),
+            new ChanceReader<double>(
+                table,
+                slot =>
+                {
+                    Tails<double> tails = TailConversions.FromChance(table.Chance(slot));
+                    smallest = Math.Min(smallest, Math.Min(tails.True, tails.False));
+                    return tails;
+                },
+                variable =>
+                {
+                    double none = table.NoneChance(variable);
+                    smallest = none > 0 ? Math.Min(smallest, none) : smallest;
+                    return none;
+                }),
             options, cancellationToken);
         CodeTable<double> plainResult = plan.Root.Run(plain);
-        if (plainResult.Factors <= PlainFactorLimit && Array.TrueForAll(plainResult.Tails, TailConversions.IsInRange))
+        bool isZeroExact = plainResult.Factors * Math.Log(smallest) > Math.Log(TailConversions.SafeRange);
+        if (plainResult.Factors <= PlainFactorLimit
+            && Array.TrueForAll(plainResult.Tails, tails => TailConversions.IsInRange(tails, isZeroExact)))
         {
             return Answers(plain, plainResult, Probability.Exact);
         }
@@ -76,7 +92,17 @@ internal sealed class SafePlanEvaluator : IEvaluator
             new ChanceReader<ExtendedDouble>(
                 table, slot => TailConversions.FromChanceExtended(table.Chance(slot)), table.NoneChanceExtended),
             options, cancellationToken);
-        return Answers(extended, plan.Root.Run(extended), Probability.Exact);
+        try
+        {
+            return Answers(extended, plan.Root.Run(extended), Probability.Exact);
+        }
+        catch (OverflowException exception)
+        {
+            throw new EvaluationRefusedException(
+                "A probability of this query is below 2^-2,000,000,000, beyond the range of the evaluator's numbers. Split the query "
+                + "into independent parts, and add up the logarithms of their probabilities.",
+                exception);
+        }
 
         IEnumerable<Answer<T>> Answers<TNumber>(
             SafeRun<TNumber> run, CodeTable<TNumber> result, Func<Tails<TNumber>, string, Cost, Probability> exact)
