@@ -188,7 +188,22 @@ public readonly partial struct Lineage : IEquatable<Lineage>
     public override bool Equals(object? obj) => obj is Lineage other && Equals(other);
 
     /// <inheritdoc/>
-    public override int GetHashCode() => Ref.IsNode ? HashCode.Combine(Kind, Arena.Operands(Ref.Index).Length) : Ref.Word;
+    public override int GetHashCode()
+    {
+        if (!Ref.IsNode)
+        {
+            return Ref.Word;
+        }
+
+        // The literals among the operands are the same in every arena; numbers and order of nodes are not.
+        int literals = 0;
+        foreach (LineageRef operand in Arena.Operands(Ref.Index))
+        {
+            literals = unchecked(literals + (operand.IsLiteral ? HashCode.Combine(operand.Word) : 1));
+        }
+
+        return HashCode.Combine(Kind, literals);
+    }
 
     /// <summary>
     /// The formula in the usual signs, shortened after about 200 characters; see <see cref="ToString(int)"/>.

@@ -82,9 +82,22 @@ public sealed partial class WorldSpace
         var lineages = new LineageRef[copy.Length];
         lock (Gate)
         {
+            // One import for all lineages of an evaluation: they share parts.
+            var imports = new Dictionary<LineageArena, LineageImport>();
             for (int i = 0; i < given.Length; i++)
             {
-                lineages[i] = given[i].In(Arena);
+                if (!given[i].Ref.IsNode || given[i].Arena == Arena)
+                {
+                    lineages[i] = given[i].Ref;
+                    continue;
+                }
+
+                if (!imports.TryGetValue(given[i].Arena, out LineageImport? import))
+                {
+                    imports.Add(given[i].Arena, import = new LineageImport(given[i].Arena, Arena));
+                }
+
+                lineages[i] = import.Copy(given[i].Ref);
             }
         }
 

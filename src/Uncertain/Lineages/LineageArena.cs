@@ -104,6 +104,12 @@ internal sealed class LineageArena
         {
             if (flatten && Absorbs(operand))
             {
+                // Taken up into this node, it would no longer be seen beside its own negation.
+                if (operands.Contains(!operand))
+                {
+                    return LineageRef.False;
+                }
+
                 ReadOnlySpan<LineageRef> inner = Operands(operand.Index);
                 inner.CopyTo(buffer[length..]);
                 length += inner.Length;

@@ -10,7 +10,14 @@ internal static class TailConversions
     public const double SafeRange = 1e-290;
 
     /// <summary>Whether neither tail may have lost range.</summary>
-    public static bool IsInRange(Tails<double> tails) => tails.True is 0 or >= SafeRange && tails.False is 0 or >= SafeRange;
+    /// <param name="tails">The tails.</param>
+    /// <param name="isZeroExact">Whether a tail of 0 is known to be no product that underflowed.</param>
+    public static bool IsInRange(Tails<double> tails, bool isZeroExact)
+    {
+        return IsIn(tails.True) && IsIn(tails.False);
+
+        bool IsIn(double tail) => tail >= SafeRange || (tail == 0 && isZeroExact);
+    }
 
     public static Tails<double> FromChance(double chance) => new(chance, 1 - chance);
 

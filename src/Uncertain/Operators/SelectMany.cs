@@ -96,9 +96,9 @@ public sealed partial class UncertainSet<T>
             }
 
             // The key's type is known only now.
-            return (PlanNode<TResult>)((Func<LambdaExpression, LambdaExpression, PlanNode<TResult>>)JoinOn<object>).Method
+            return (PlanNode<TResult>)((Func<JoinSide, JoinSide, PlanNode<TResult>>)JoinOn<object>).Method
                 .GetGenericMethodDefinition()
-                .MakeGenericMethod(outer.ReturnType)
+                .MakeGenericMethod(outer.Key.ReturnType)
                 .Invoke(this, [outer, inner])!;
         }
 
@@ -109,11 +109,17 @@ public sealed partial class UncertainSet<T>
             return outer.And(inner) with { Value = Substitution.Apply(_result.Tree, outer.Value, inner.Value) };
         }
 
-        private JoinNode<TCollection, TKey, TResult> JoinOn<TKey>(LambdaExpression outer, LambdaExpression inner) => new(
+        private JoinNode<TCollection, TKey, TResult> JoinOn<TKey>(JoinSide outer, JoinSide inner) => new(
             new JoinInputs<T, TCollection, TKey>(
-                _input, new UncertainSet<TCollection>(_fixed!), (Expression<Func<T, TKey>>)outer,
-                (Expression<Func<TCollection, TKey>>)inner, null, nameof(SelectMany)),
+                Filtered(_input, outer).Node, Filtered(_fixed!, inner), (Expression<Func<T, TKey>>)outer.Key,
+                (Expression<Func<TCollection, TKey>>)inner.Key, null, nameof(SelectMany)),
             _result.Tree);
+
+        private static UncertainSet<TValue> Filtered<TValue>(PlanNode<TValue> input, JoinSide side)
+        {
+            var set = new UncertainSet<TValue>(input);
+            return side.Filter is null ? set : set.Where((Expression<Func<TValue, bool>>)side.Filter);
+        }
 
         private PlanNode<TCollection> SetFor(T value) => SameWorlds.Require(
             Worlds,

@@ -29,7 +29,7 @@ public sealed partial class UncertainSet<T>
         {
             Conjunction left = _left.Translate();
             Conjunction right = _right.Translate();
-            return SameSource.Union(left, right) ?? UnionAtom.Of(left, right);
+            return SameSource.Union(left, right) ?? UnionAtom.Of(left, right, typeof(T));
         }
     }
 }

@@ -13,7 +13,7 @@ public sealed partial class UncertainSet<T>
     /// as a join.
     /// </summary>
     /// <param name="predicate">The condition on a value; the same value must always give the same result.</param>
-    public UncertainSet<T> Where(Expression<Func<T, bool>> predicate) 
+    public UncertainSet<T> Where(Expression<Func<T, bool>> predicate)
     {
         ArgumentNullException.ThrowIfNull(predicate);
         return new UncertainSet<T>(new WhereNode(Node.TryJoin(predicate) ?? Node, predicate));

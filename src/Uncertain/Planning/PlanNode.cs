@@ -1,13 +1,33 @@
+using System.Globalization;
 using Uncertain.Planning.Calculus;
 
 namespace Uncertain.Planning;
 
 /// <summary>One step of a query as written. Immutable.</summary>
-internal abstract class PlanNode(WorldSpace worlds, params PlanNode[] inputs)
+internal abstract class PlanNode
 {
-    public WorldSpace Worlds { get; } = worlds;
+    // Planning and running go down a plan by calls, some kilobytes of stack a step.
+    private const int MaxDepth = 1000;
 
-    public IReadOnlyList<PlanNode> Inputs { get; } = inputs;
+    private readonly int _depth;
+
+    protected PlanNode(WorldSpace worlds, params PlanNode[] inputs)
+    {
+        Worlds = worlds;
+        Inputs = inputs;
+        _depth = 1 + inputs.Select(input => input._depth).DefaultIfEmpty().Max();
+        if (_depth > MaxDepth)
+        {
+            throw new InvalidInputException(string.Create(
+                CultureInfo.InvariantCulture,
+                $"A query may have at most {MaxDepth:N0} steps on top of each other; this one would have {_depth:N0}. Instead of an "
+                + $"operator for each of many small sets, give their records as one source, with a field that tells them apart."));
+        }
+    }
+
+    public WorldSpace Worlds { get; }
+
+    public IReadOnlyList<PlanNode> Inputs { get; }
 
     /// <summary>The step in words, without its inputs: one line.</summary>
     public abstract string Describe();

@@ -1,3 +1,4 @@
+using System.Globalization;
 using System.Linq.Expressions;
 using System.Text.RegularExpressions;
 
@@ -9,21 +10,21 @@ internal static partial class PlanText
     private const int MaxLength = 120;
 
     /// <summary>A lambda's body, with captured variables shown by their names.</summary>
-    public static string Body(LambdaExpression lambda) => Clean(lambda.Body.ToString());
+    public static string Body(LambdaExpression lambda) => Of(lambda.Body);
 
     /// <summary>A lambda as 'parameter => body'; only its body where the parameter is the row that query syntax builds up.</summary>
     public static string Lambda(LambdaExpression lambda) => Clean(lambda.Parameters is [var row] && IsRowSoFar(row.Name)
-        ? lambda.Body.ToString()
-        : $"{string.Join(", ", lambda.Parameters.Select(parameter => parameter.Name))} => {lambda.Body}");
+        ? Text(lambda.Body)
+        : $"{string.Join(", ", lambda.Parameters.Select(parameter => parameter.Name))} => {Text(lambda.Body)}");
 
     /// <summary>' into result', or nothing where the result only pairs what was joined, as query syntax does between clauses.</summary>
     public static string Into(LambdaExpression result) =>
         result.Body is NewExpression pair && pair.Arguments.SequenceEqual(result.Parameters)
             ? ""
-            : $" into {Clean(string.Join(", ", result.Parameters.Select(p => IsRowSoFar(p.Name) ? "_" : p.Name)) + " => " + result.Body)}";
+            : $" into {Clean(string.Join(", ", result.Parameters.Select(p => IsRowSoFar(p.Name) ? "_" : p.Name)) + " => " + Text(result.Body))}";
 
     /// <summary>Any expression.</summary>
-    public static string Of(Expression expression) => Clean(expression.ToString());
+    public static string Of(Expression expression) => Clean(Text(expression));
 
     public static string TypeName(Type type) => type switch
     {
@@ -34,6 +35,21 @@ internal static partial class PlanText
     };
 
     private static bool IsRowSoFar(string? parameter) => parameter?.StartsWith("<>h__", StringComparison.Ordinal) == true;
+
+    // Constants in an expression print by the thread's culture.
+    private static string Text(Expression expression)
+    {
+        CultureInfo culture = CultureInfo.CurrentCulture;
+        try
+        {
+            CultureInfo.CurrentCulture = CultureInfo.InvariantCulture;
+            return expression.ToString();
+        }
+        finally
+        {
+            CultureInfo.CurrentCulture = culture;
+        }
+    }
 
     private static string Clean(string text)
     {

@@ -36,6 +36,8 @@ public sealed class LineageTests
         Assert.Equal(_worlds.Never, _page & !_page);
         Assert.Equal(_worlds.Always, _page | !_page);
         Assert.Equal(_page, !!_page);
+        Assert.Equal(_worlds.Never, (_page & _feed) & !(_page & _feed));
+        Assert.Equal(_worlds.Always, (_page | _feed) | !(_page | _feed));
     }
 
     [Fact]

@@ -67,15 +67,27 @@ internal sealed class SafePlanEvaluator : IEvaluator
         var plain = new SafeRun<double>(
             new ChanceReader<double>(table, TailConversions.FromChance, table.NoneChance), control);
         List<CodeTable<double>> plainParts = RunParts(plan.Root, plain, options.Threads, cancellationToken);
-        if (plainParts.TrueForAll(part =>
-            part.Factors <= PlainFactorLimit && Array.TrueForAll(part.Tails, TailConversions.IsInRange)))
+        long factors = plainParts.Max(part => part.Factors);
+        bool isZeroExact = factors * Math.Log(control.SmallestChance) > Math.Log(TailConversions.SafeRange);
+        if (factors <= PlainFactorLimit
+            && plainParts.TrueForAll(part => Array.TrueForAll(part.Tails, tails => TailConversions.IsInRange(tails, isZeroExact))))
         {
             return Answers(plain, plainParts, Probability.Exact);
         }
 
         var extended = new SafeRun<ExtendedDouble>(
             new ChanceReader<ExtendedDouble>(table, TailConversions.FromChanceExtended, table.NoneChanceExtended), control);
-        return Answers(extended, RunParts(plan.Root, extended, options.Threads, cancellationToken), Probability.Exact);
+        try
+        {
+            return Answers(extended, RunParts(plan.Root, extended, options.Threads, cancellationToken), Probability.Exact);
+        }
+        catch (OverflowException exception)
+        {
+            throw new EvaluationRefusedException(
+                "A probability of this query is below 2^-2,000,000,000, beyond the range of the evaluator's numbers. Split the query "
+                + "into independent parts, and add up the logarithms of their probabilities.",
+                exception);
+        }
 
         IEnumerable<Answer<T>> Answers<TNumber>(
             SafeRun<TNumber> run, List<CodeTable<TNumber>> parts, Func<Tails<TNumber>, string, Cost, Probability> exact)

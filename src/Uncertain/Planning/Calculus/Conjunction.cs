@@ -34,7 +34,7 @@ internal sealed record Conjunction(Expression Value)
     /// <summary>With a further condition, whose equalities between rows become equalities of the conjunction.</summary>
     public Conjunction Where(Expression condition)
     {
-        if (condition is BinaryExpression { NodeType: ExpressionType.AndAlso, Method: null } both)
+        if (AsBoth(condition) is { } both)
         {
             return Where(both.Left).Where(both.Right);
         }
@@ -56,8 +56,14 @@ internal sealed record Conjunction(Expression Value)
         Absences = Absences.Add(new Absence(inner, [.. Structure.Pairs(outerKey, innerKey, nullsMatch)])),
     };
 
-    // x == y in a condition, where the operator means the same as the default comparer and the sides come from different rows.
-    private static Equality? AsEquality(Expression condition) =>
+    /// <summary>The condition as 'left and right', or null.</summary>
+    public static BinaryExpression? AsBoth(Expression condition) =>
+        condition is BinaryExpression { NodeType: ExpressionType.AndAlso, Method: null } both ? both : null;
+
+    /// <summary>
+    /// x == y in a condition, where the operator means the same as the default comparer and the sides come from different rows; or null.
+    /// </summary>
+    public static Equality? AsEquality(Expression condition) =>
         condition is BinaryExpression { NodeType: ExpressionType.Equal } equal
         && equal.Left.Type == equal.Right.Type
         && Structure.OperatorIsDefaultEquality(equal.Left.Type)

@@ -1,3 +1,4 @@
+using System.Buffers.Binary;
 using System.Linq.Expressions;
 using System.Reflection;
 using System.Runtime.CompilerServices;
@@ -25,8 +26,15 @@ internal static class Structure
         }
 
         int index = Array.IndexOf(members, member.Name);
-        return index < 0 ? null : created.Arguments[index];
+        return index < 0 ? null : WithType(created.Arguments[index], created.Constructor!.GetParameters()[index].ParameterType);
     }
+
+    /// <summary>
+    /// An expression in a place of a given static type. Upcasts are implied there, but what is around it may only make sense for the
+    /// place's type: a cast to another class, a comparison by reference.
+    /// </summary>
+    public static Expression WithType(Expression expression, Type type) =>
+        expression.Type == type ? expression : Expression.Convert(expression, type);
 
     /// <summary>The equality of two values as equalities of their parts, as far as both are constructed alike.</summary>
     public static IEnumerable<Equality> Pairs(Expression left, Expression right, bool nullsMatch)
@@ -94,15 +102,19 @@ internal static class Structure
             return parameters.Length <= 7 ? [.. Enumerable.Range(1, parameters.Length).Select(i => $"Item{i}")] : null;
         }
 
-        return IsPositionalRecord(type, parameters) ? [.. parameters.Select(parameter => parameter.Name!)] : null;
+        return IsPositionalRecord(type, parameters) && StoresArguments(created.Constructor!)
+            ? [.. parameters.Select(parameter => parameter.Name!)]
+            : null;
     }
 
     private static bool IsAnonymous(Type type) =>
         type.IsDefined(typeof(CompilerGeneratedAttribute), inherit: false) && type.Name.Contains("AnonymousType", StringComparison.Ordinal);
 
-    private static bool IsTuple(Type type) => type.IsAssignableTo(typeof(ITuple));
+    // The runtime's own: others may implement the interface as they like.
+    private static bool IsTuple(Type type) => type.IsAssignableTo(typeof(ITuple)) && type.Assembly == typeof(ITuple).Assembly;
 
-    // A record's parameters have exactly the names of its compiler-made properties, and its Equals is the compiler's.
+    // A record's parameters have exactly the names of its compiler-made properties, its Equals is the compiler's, and its constructor
+    // stores what it gets: a property may be declared again with an initializer that computes something else from the parameter.
     private static bool IsPositionalRecord(Type type, ParameterInfo[] parameters) =>
         type.GetMethod("PrintMembers", BindingFlags.NonPublic | BindingFlags.Instance) is { } print
         && print.IsDefined(typeof(CompilerGeneratedAttribute))
@@ -113,13 +125,40 @@ internal static class Structure
             && property.GetMethod!.IsDefined(typeof(CompilerGeneratedAttribute)))
         && type.GetFields(BindingFlags.NonPublic | BindingFlags.Public | BindingFlags.Instance).Length == parameters.Length;
 
+    // Whether the constructor begins by storing each argument, as it is, in the backing field of the property of its name.
+    private static bool StoresArguments(ConstructorInfo constructor)
+    {
+        ReadOnlySpan<byte> code = constructor.GetMethodBody()?.GetILAsByteArray();
+        Type[] types = constructor.DeclaringType!.GetGenericArguments();
+        foreach (ParameterInfo parameter in constructor.GetParameters())
+        {
+            // ldarg.0, ldarg, stfld
+            int number = parameter.Position + 1;
+            ReadOnlySpan<byte> load = number <= 3 ? [0x02, (byte)(0x02 + number), 0x7D] : [0x02, 0x0E, (byte)number, 0x7D];
+            if (number > byte.MaxValue || !code.StartsWith(load) || code.Length < load.Length + sizeof(int))
+            {
+                return false;
+            }
+
+            int field = BinaryPrimitives.ReadInt32LittleEndian(code[load.Length..]);
+            if (constructor.Module.ResolveField(field, types, null)!.Name != $"<{parameter.Name}>k__BackingField")
+            {
+                return false;
+            }
+
+            code = code[(load.Length + sizeof(int))..];
+        }
+
+        return true;
+    }
+
     private sealed class IdentityFinder : ExpressionVisitor
     {
         public bool Found { get; private set; }
 
         protected override Expression VisitNew(NewExpression node)
         {
-            Found |= !node.Type.IsValueType && Parts(node) is null;
+            Found |= node.Type.GetMethod(nameof(Equals), [typeof(object)])!.DeclaringType == typeof(object);
             return base.VisitNew(node);
         }
 

@@ -14,7 +14,7 @@ internal sealed class Substitution : ExpressionVisitor
         var substitution = new Substitution();
         for (int i = 0; i < arguments.Length; i++)
         {
-            substitution._values.Add(lambda.Parameters[i], arguments[i]);
+            substitution._values.Add(lambda.Parameters[i], Structure.WithType(arguments[i], lambda.Parameters[i].Type));
         }
 
         return substitution.Visit(lambda.Body);

@@ -1,4 +1,5 @@
 using System.Linq.Expressions;
+using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
 
 namespace Uncertain.Inference.Safe.Analysis;
@@ -26,11 +27,19 @@ internal sealed class Field(Expression expression, ParameterExpression row)
     {
         MemberExpression member => member.Member.Name,
         ParameterExpression whole => $"{whole.Name} record",
-        _ => Planning.PlanText.Of(Expression),
+        _ => PlanText.Of(Expression),
     };
 
+    /// <exception cref="NoSafePlanException">The fields are of different types, for example a class and one derived from it.</exception>
     public void MakeSame(Field other)
     {
+        if (Expression.Type != other.Expression.Type)
+        {
+            throw new NoSafePlanException(
+                $"{Name} and {other.Name} are compared, and are of different types ({PlanText.TypeName(Expression.Type)} and "
+                + $"{PlanText.TypeName(other.Expression.Type)}); a safe plan needs equal ones");
+        }
+
         Field left = Representative;
         Field right = other.Representative;
         if (left != right)

@@ -56,6 +56,9 @@ internal sealed class FieldTable
 
     private sealed class TemplateBuilder(FieldTable table, bool mustDetermine) : ExpressionVisitor
     {
+        // Parameters of lambdas inside the expression: what uses them is no field of a row.
+        private readonly HashSet<ParameterExpression> _bound = [];
+
         public List<(ParameterExpression Parameter, Field Field)> Fields { get; } = [];
 
         public override Expression Visit(Expression? node)
@@ -65,7 +68,8 @@ internal sealed class FieldTable
                 return null!;
             }
 
-            IReadOnlyList<ParameterExpression> rows = Rows.In(node);
+            IReadOnlyList<ParameterExpression> found = Rows.In(node);
+            List<ParameterExpression> rows = [.. found.Where(row => !_bound.Contains(row))];
             if (rows.Count == 0)
             {
                 return node;
@@ -76,7 +80,7 @@ internal sealed class FieldTable
                 return base.Visit(node);
             }
 
-            if (rows.Count == 1)
+            if (found.Count == 1)
             {
                 Field field = table.Of(node);
                 ParameterExpression parameter = Expression.Parameter(node.Type, PlanText.Of(node));
@@ -90,5 +94,18 @@ internal sealed class FieldTable
                     + "select the fields themselves")
                 : base.Visit(node);
         }
+
+        protected override Expression VisitLambda<TDelegate>(Expression<TDelegate> node)
+        {
+            _bound.UnionWith(node.Parameters);
+            return base.VisitLambda(node);
+        }
+
+        // The construction inside an initialization cannot become a field by itself; its arguments can.
+        protected override Expression VisitMemberInit(MemberInitExpression node) =>
+            node.Update((NewExpression)VisitNew(node.NewExpression), Visit(node.Bindings, VisitMemberBinding));
+
+        protected override Expression VisitListInit(ListInitExpression node) =>
+            node.Update((NewExpression)VisitNew(node.NewExpression), Visit(node.Initializers, VisitElementInit));
     }
 }

@@ -47,6 +47,7 @@ internal sealed class Alternatives<TNumber>
         var chances = new TNumber[count];
         var variableOf = new int[count];
         var chosen = new HashSet<int>();
+        double smallest = 1;
         for (int i = 0; i < rows.Count; i++)
         {
             run.Tick(i);
@@ -56,10 +57,13 @@ internal sealed class Alternatives<TNumber>
             variableOf[keyOf[i]] = certain ? -1 - keyOf[i] : run.Chances.Variables.VariableOf(lineage.Index);
             if (!certain)
             {
+                double chance = run.Chances.Variables.Chance(lineage.Index);
+                smallest = Math.Min(smallest, Math.Min(chance, 1 - chance));
                 chosen.Add(lineage.Index);
             }
         }
 
+        run.Observe([smallest]);
         var groups = new Dictionary<int, int>();
         var rest = new List<TNumber>();
         var groupOfRow = new int[count];
@@ -125,6 +129,7 @@ internal sealed class Alternatives<TNumber>
         }
 
         VariableTable table = run.Chances.Variables;
+        run.Observe([table.NoneChance(variable)]);
         TNumber rest = run.Chances.OfNone(variable);
         int first = table.FirstSlot(variable);
         for (int slot = first; slot < first + table.OutcomeCount(variable); slot++)

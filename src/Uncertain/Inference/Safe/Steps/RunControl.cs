@@ -8,7 +8,22 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
 {
     private readonly ProgressReporter _progress = new(options);
     private readonly long _start = options.Clock.GetTimestamp();
+    private readonly Lock _lock = new();
     private long _rows;
+
+    /// <summary>The smallest positive chance or complement of one that was read; products of it may leave the range of double.</summary>
+    public double SmallestChance
+    {
+        get
+        {
+            lock (_lock)
+            {
+                return field;
+            }
+        }
+
+        private set;
+    } = 1;
 
     /// <summary>Rows that steps have produced so far.</summary>
     public long Rows => Volatile.Read(ref _rows);
@@ -24,6 +39,22 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
                 CultureInfo.InvariantCulture,
                 $"The safe plan did not end by the deadline of {deadline.TotalSeconds:0.###} s, after {Rows:N0} rows. Allow a later "
                 + $"EvaluationOptions.Deadline, or filter the sources first: no faster exact evaluator exists for such a query."));
+        }
+    }
+
+    /// <summary>Takes note of chances that were read.</summary>
+    public void Observe(ReadOnlySpan<double> chances)
+    {
+        double smallest = 1;
+        foreach (double chance in chances)
+        {
+            smallest = chance > 0 ? Math.Min(smallest, chance) : smallest;
+            smallest = chance < 1 ? Math.Min(smallest, 1 - chance) : smallest;
+        }
+
+        lock (_lock)
+        {
+            SmallestChance = Math.Min(SmallestChance, smallest);
         }
     }
 

@@ -82,6 +82,9 @@ internal sealed class SafeRun<TNumber>
 
     public void Checkpoint() => _control.Checkpoint();
 
+    /// <summary>Takes note of chances that were read, so that their products are known to stay in range or not.</summary>
+    public void Observe(ReadOnlySpan<double> chances) => _control.Observe(chances);
+
     /// <summary>Counts a step's rows and reports progress.</summary>
     public CodeTable<TNumber> Done(CodeTable<TNumber> table)
     {

@@ -44,6 +44,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         var members = new int[tails.Length];
         Array.Fill(tails, Tails<TNumber>.Never);
         ReadOnlySpan<double> chances = ChancesOf(rows, run);
+        run.Observe(chances);
         for (int i = 0; i < rows.Count; i++)
         {
             run.Tick(i);
