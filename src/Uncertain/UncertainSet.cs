@@ -34,7 +34,7 @@ public sealed partial class UncertainSet<T> : IPlanned
 
     PlanNode IPlanned.Node => Node;
 
-    /// <summary>All answers with their probabilities, in order of first appearance.</summary>
+    /// <summary>All answers with their probabilities, in an order that is the same in every run.</summary>
     /// <remarks>
     /// A value that is in no world is no answer. Exact evaluators find that out; an estimate cannot tell it from a very small
     /// probability, so a sampled result may list such values with a lower bound of 0.
