@@ -14,7 +14,7 @@ namespace Uncertain;
 /// something shared says so by a lineage over named events.</para>
 /// <para>Thread safety: all members may be called concurrently. Variables are only ever added, so running
 /// evaluations are not disturbed by new sources.</para>
-/// <para>Memory: 16 bytes for a two-outcome variable (its chance included), 12 for each further alternative, 4 for each
+/// <para>Memory: 8 to 16 bytes for a two-outcome variable (its chance included), 12 for each further alternative, at most 4 for each
 /// record's lineage. Certain records cost no variable.</para>
 /// </remarks>
 [DebuggerDisplay("{VariableCount} chance variables")]
