@@ -46,7 +46,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
     /// <summary>Distinct values with their lineages; values that are in no world are left out.</summary>
     public IEnumerable<(T Value, LineageRef Lineage)> Records(QueryRun run)
     {
-        LineageRef[] grouped = GroupLineages(out int[] ends);
+        LineageRef[] grouped = GroupLineages(run, out int[] ends);
         int start = 0;
         for (int group = 0; group < ends.Length; group++)
         {
@@ -84,11 +84,12 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
         record => new ValueTuple<T>(record.Value), record => record.Lineage, new KeyComparer<T>(null));
 
     // A counting sort of the lineages by group, so that each group's are neighbours.
-    private LineageRef[] GroupLineages(out int[] ends)
+    private LineageRef[] GroupLineages(QueryRun run, out int[] ends)
     {
         ends = new int[_values.Count];
         foreach (int group in _groups)
         {
+            run.Step();
             ends[group]++;
         }
 
@@ -102,6 +103,7 @@ internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
         var grouped = new LineageRef[_lineages.Count];
         for (int i = 0; i < grouped.Length; i++)
         {
+            run.Step();
             grouped[ends[_groups[i]]++] = _lineages[i];
         }
 
