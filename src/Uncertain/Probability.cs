@@ -71,8 +71,18 @@ public sealed class Probability : IFormattable
     /// <param name="complement">1 - P in [0, 1], computed with its own relative accuracy where that matters.</param>
     /// <param name="evaluator">Name of the evaluator.</param>
     /// <param name="cost">What it cost.</param>
-    public static Probability Exact(double value, double complement, string evaluator, Cost cost = default) =>
-        Exact(new Tails<double>(Unit(value), Unit(complement)), evaluator, cost);
+    /// <exception cref="ArgumentOutOfRangeException">A tail is not in [0, 1], or the two do not add up to 1 within 1e-9.</exception>
+    public static Probability Exact(double value, double complement, string evaluator, Cost cost = default)
+    {
+        var tails = new Tails<double>(Unit(value), Unit(complement));
+        if (Math.Abs(value + complement - 1) > 1e-9)
+        {
+            throw new ArgumentOutOfRangeException(
+                nameof(complement), complement, $"A probability and its complement add up to 1; got {value:R} and {complement:R}.");
+        }
+
+        return Exact(tails, evaluator, cost);
+    }
 
     /// <summary>A figure between certain bounds.</summary>
     /// <param name="lower">Lower bound in [0, 1].</param>

@@ -8,16 +8,16 @@ namespace Uncertain.Execution;
 /// Set semantics: collects records and gives each distinct value once, in order of first appearance, with the disjunction of
 /// its lineages. Linear in the records; 12 bytes a record beside the values.
 /// </summary>
-internal sealed class Merge<T>(IEqualityComparer<T>? comparer = null)
+internal sealed class Merge<T>
 {
-    private readonly Dictionary<ValueTuple<T>, int> _groupOf = new(new KeyComparer<T>(comparer));
+    private readonly Dictionary<ValueTuple<T>, int> _groupOf = new(new KeyComparer<T>(null));
     private readonly List<T> _values = [];
     private readonly List<int> _groups = [];
     private readonly List<LineageRef> _lineages = [];
 
-    public static Merge<T> All(PlanNode<T> input, QueryRun run, IEqualityComparer<T>? comparer = null)
+    public static Merge<T> All(PlanNode<T> input, QueryRun run)
     {
-        var merge = new Merge<T>(comparer);
+        var merge = new Merge<T>();
         foreach (Batch<T> batch in input.Run(run))
         {
             for (int i = 0; i < batch.Count; i++)

@@ -216,6 +216,17 @@ public sealed class SafePlanTests
     }
 
     [Fact]
+    public void Evaluate_TuplesFromTheirFactory_AreTakenApart()
+    {
+        var points = Points("points");
+        var query = Edges().Join(
+            points.Select(point => ValueTuple.Create(point.X, point.Chance > 0.85)), edge => edge.X, pair => pair.Item1,
+            (edge, pair) => ValueTuple.Create(edge.Y, pair.Item2));
+
+        AssertAnswers(query, ((1, true), 0.5 * 0.9), ((1, false), 0.55 * 0.8), ((2, true), 0.3 * 0.9));
+    }
+
+    [Fact]
     public void Evaluate_LineageAskedAfterwards_IsDerivedThen()
     {
         Answer<int> answer = Points("points").Select(point => point.X).Evaluate(Evaluators.SafePlan)[0];

@@ -27,4 +27,15 @@ internal sealed class Substitution : ExpressionVisitor
         Expression? inner = Visit(node.Expression);
         return (inner is null ? null : Structure.MemberOf(inner, node.Member)) ?? node.Update(inner);
     }
+
+    // Tuple literals are not allowed in expression trees, so tuples come from a factory; it is the constructor to all that read them.
+    protected override Expression VisitMethodCall(MethodCallExpression node)
+    {
+        Expression visited = base.VisitMethodCall(node);
+        return visited is MethodCallExpression { Method: { Name: nameof(ValueTuple.Create), DeclaringType: var declaring } } call
+            && (declaring == typeof(ValueTuple) || declaring == typeof(Tuple))
+            && call.Type.GetConstructor([.. call.Arguments.Select(argument => argument.Type)]) is { } constructor
+            ? Expression.New(constructor, call.Arguments)
+            : visited;
+    }
 }
