@@ -1,5 +1,4 @@
 using System.Linq.Expressions;
-using Uncertain.Inference.Safe.Codes;
 using Uncertain.Lineages;
 
 namespace Uncertain.Worlds;

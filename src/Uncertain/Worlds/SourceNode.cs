@@ -1,7 +1,6 @@
 using System.Globalization;
 using System.Linq.Expressions;
 using Uncertain.Execution;
-using Uncertain.Inference.Safe.Codes;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;

@@ -1,5 +1,5 @@
 using System.Linq.Expressions;
-using Uncertain.Inference.Safe.Codes;
+using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Analysis;
 

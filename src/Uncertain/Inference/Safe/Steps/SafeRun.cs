@@ -2,6 +2,7 @@ using System.Numerics;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Numerics;
+using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Steps;
 

@@ -2,7 +2,7 @@ using System.Linq.Expressions;
 using System.Runtime.InteropServices;
 using Uncertain.Execution;
 
-namespace Uncertain.Inference.Safe.Codes;
+namespace Uncertain.Worlds;
 
 #pragma warning disable CS8714 // Nulls never reach the dictionary: they have a code of their own.
 

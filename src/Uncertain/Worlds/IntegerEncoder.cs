@@ -2,7 +2,7 @@ using System.Runtime.CompilerServices;
 using System.Linq.Expressions;
 using Uncertain.Execution;
 
-namespace Uncertain.Inference.Safe.Codes;
+namespace Uncertain.Worlds;
 
 /// <summary>
 /// The encoder for 32-bit integers. Where the first values lie close together their code is the distance from the smallest one, which

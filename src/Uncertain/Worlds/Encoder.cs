@@ -1,6 +1,6 @@
 using System.Linq.Expressions;
 
-namespace Uncertain.Inference.Safe.Codes;
+namespace Uncertain.Worlds;
 
 /// <summary>
 /// Gives each distinct value of a variable a small number from 0, so that joins and groupings work on integers whatever the type.
