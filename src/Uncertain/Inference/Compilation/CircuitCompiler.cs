@@ -1,10 +1,11 @@
 using System.Runtime.InteropServices;
+using Uncertain.Inference.Compilation.Decisions;
 using Uncertain.Lineages;
 
 namespace Uncertain.Inference.Compilation;
 
 /// <summary>
-/// Compiles a module that is no list of terms. Two variable orders compete, each with a growing share of the budget: by first
+/// Compiles a module that is no list of terms. One that consists of decisions already is taken over; else two variable orders compete, each with a growing share of the budget: by first
 /// occurrence from the last made part back to the first, and along an elimination tree of the circuit, gates included.
 /// </summary>
 internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
@@ -16,10 +17,17 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
     private const int StepsFlatWidth = 512;
     private const int TreeFlatWidth = 24;
 
+    private readonly DecisionReader _reader = new(atoms, workspace, form, budget);
+
     /// <summary>The edge to the compiled module.</summary>
     public int Compile(ModuleFormula module)
     {
-        List<int> variables = NumberVariables(module);
+        List<int> variables = workspace.NumberVariables(module, budget);
+        if (_reader.TryCompile(module, variables.Count) is { } edge)
+        {
+            return edge;
+        }
+
         int[]? byTree = null;
         int[] parents = [];
         long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
@@ -53,32 +61,6 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
 
             residuals *= alongTree ? TrialGrowth : 1;
         }
-    }
-
-    // Variables by first occurrence, users before operands: for circuits that were built step by step, the last step first.
-    private List<int> NumberVariables(ModuleFormula module)
-    {
-        var variables = new List<int>();
-        int[] mark = workspace.VariableMark;
-        int[] vertex = workspace.VertexOfVariable;
-        int stamp = workspace.NextStamp();
-        for (int node = module.Count - 1; node >= 0; node--)
-        {
-            foreach (LineageRef operand in module.Operands(node))
-            {
-                if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
-                {
-                    int variable = atoms.Variable(operand.Index);
-                    mark[variable] = stamp;
-                    vertex[variable] = variables.Count;
-                    variables.Add(variable);
-                }
-            }
-
-            budget.Step();
-        }
-
-        return variables;
     }
 
     private int[] ByTree(ModuleFormula module, List<int> variables, out int[] parents)

@@ -1,5 +1,7 @@
 using Uncertain.Execution;
+using Uncertain.Inference.Compilation.Cases;
 using Uncertain.Lineages;
+using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Compilation;
 
@@ -76,7 +78,68 @@ internal sealed class CompilationEvaluator : IEvaluator
         Lineage lineage, EvaluationOptions options, long start, CancellationToken cancellationToken)
     {
         long own = options.Clock.GetTimestamp();
-        CompiledLineage compiled = Compile(lineage, options, start, cancellationToken);
-        return compiled.Evaluate(() => new Cost(options.Clock.GetElapsedTime(own), compiled.NodeCount, 0));
+        cancellationToken.ThrowIfCancellationRequested();
+        if (!IsLate(options, start)
+            && CaseEvaluator.TryPrepare(lineage.Arena, lineage.Ref) is { } cases
+            && TryCases(cases, lineage, options, start, own, cancellationToken) is { } probability)
+        {
+            return probability;
+        }
+
+        return Evaluate(Compile(lineage, options, start, cancellationToken), options, own);
     }
+
+    /// <summary>
+    /// A small lineage by cases. Where they are many, compiling is tried first, for as long as the cases would take. Null if
+    /// neither did.
+    /// </summary>
+    private static Probability? TryCases(
+        CaseEvaluator cases, Lineage lineage, EvaluationOptions options, long start, long own, CancellationToken cancellationToken)
+    {
+        try
+        {
+            Action? checkpoint = null;
+            if (!cases.IsEasy)
+            {
+                EvaluationOptions trial = options with { NodeBudget = (int)Math.Min(options.NodeBudget, cases.CostInNodes) };
+                if (TryCompile(lineage, trial, start, cancellationToken, out CompiledLineage? compiled, out _))
+                {
+                    return Evaluate(compiled!, options, own);
+                }
+
+                if (cases.CostInNodes > options.NodeBudget)
+                {
+                    return null;
+                }
+
+                checkpoint = () =>
+                {
+                    cancellationToken.ThrowIfCancellationRequested();
+                    if (IsLate(options, start))
+                    {
+                        throw new BudgetSpentException("", isTrial: true);
+                    }
+                };
+            }
+
+            return cases.TryEvaluate(lineage.Arena, checkpoint, out Tails<double> result)
+                ? Probability.Exact(result, EvaluatorName, new Cost(options.Clock.GetElapsedTime(own), cases.NodeCount, 0))
+                : null;
+        }
+        catch (BudgetSpentException)
+        {
+            // Compiling will say so.
+            return null;
+        }
+        finally
+        {
+            cases.Release();
+        }
+    }
+
+    private static Probability Evaluate(CompiledLineage compiled, EvaluationOptions options, long own) =>
+        compiled.Evaluate(() => new Cost(options.Clock.GetElapsedTime(own), compiled.NodeCount, 0));
+
+    private static bool IsLate(EvaluationOptions options, long start) =>
+        options.Deadline is { } deadline && options.Clock.GetElapsedTime(start) >= deadline;
 }

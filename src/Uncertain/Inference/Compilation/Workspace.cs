@@ -1,3 +1,5 @@
+using Uncertain.Lineages;
+
 namespace Uncertain.Inference.Compilation;
 
 /// <summary>
@@ -47,6 +49,34 @@ internal sealed class Workspace(AtomTable atoms)
         }
 
         return [.. variables];
+    }
+
+    /// <summary>
+    /// The same for a module, users before operands: for circuits that were built step by step, the last step first.
+    /// </summary>
+    public List<int> NumberVariables(ModuleFormula module, CompilationBudget budget)
+    {
+        var variables = new List<int>();
+        int[] mark = VariableMark;
+        int[] vertex = VertexOfVariable;
+        int stamp = NextStamp();
+        for (int node = module.Count - 1; node >= 0; node--)
+        {
+            foreach (LineageRef operand in module.Operands(node))
+            {
+                if (operand.IsLiteral && mark[atoms.Variable(operand.Index)] != stamp)
+                {
+                    int variable = atoms.Variable(operand.Index);
+                    mark[variable] = stamp;
+                    vertex[variable] = variables.Count;
+                    variables.Add(variable);
+                }
+            }
+
+            budget.Step();
+        }
+
+        return variables;
     }
 
     private static int[] Ensure(ref int[] array, int count)
