@@ -92,7 +92,9 @@ public sealed class CaseSplitTests
     public void Evaluate_ManyCases_KeepsTheDeadline()
     {
         var refused = Assert.Throws<EvaluationRefusedException>(() => Evaluators.Compilation.Evaluate(
-            CompleteJoin(26, 0.1), new EvaluationOptions { Deadline = TimeSpan.FromMilliseconds(300), NodeBudget = int.MaxValue }, default));
+            CompleteJoin(28, 0.1),
+            new EvaluationOptions { Deadline = TimeSpan.FromMilliseconds(300), NodeBudget = int.MaxValue },
+            default));
 
         Assert.Contains("deadline of 0.3 s", refused.Message, StringComparison.Ordinal);
     }
@@ -131,7 +133,8 @@ public sealed class CaseSplitTests
     private static void AssertClose((double Value, double Complement) expected, Probability actual, double tolerance, string of)
     {
         Assert.True(Close(expected.Value, actual.Value), $"{of}: expected {expected.Value:R}, got {actual.Value:R}");
-        Assert.True(Close(expected.Complement, actual.Complement), $"{of}: expected 1 - {expected.Complement:R}, got 1 - {actual.Complement:R}");
+        Assert.True(
+            Close(expected.Complement, actual.Complement), $"{of}: expected 1 - {expected.Complement:R}, got 1 - {actual.Complement:R}");
 
         bool Close(double wanted, double found) => Math.Abs(wanted - found) <= tolerance * wanted;
     }

@@ -5,7 +5,9 @@ using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Compilation;
 
-/// <summary>Exact for any lineage, by compiling it to a decomposable, deterministic form.</summary>
+/// <summary>
+/// Exact for any lineage, by compiling it to a decomposable, deterministic form; where a lineage is small, by cases without such.
+/// </summary>
 internal sealed class CompilationEvaluator : IEvaluator
 {
     public const string EvaluatorName = "compilation";
@@ -91,7 +93,7 @@ internal sealed class CompilationEvaluator : IEvaluator
 
     /// <summary>
     /// A small lineage by cases. Where they are many, compiling is tried first, for as long as the cases would take. Null if
-    /// neither did.
+    /// neither did, or the cases are over the budget.
     /// </summary>
     private static Probability? TryCases(
         CaseEvaluator cases, Lineage lineage, EvaluationOptions options, long start, long own, CancellationToken cancellationToken)
@@ -101,25 +103,18 @@ internal sealed class CompilationEvaluator : IEvaluator
             Action? checkpoint = null;
             if (!cases.IsEasy)
             {
-                EvaluationOptions trial = options with { NodeBudget = (int)Math.Min(options.NodeBudget, cases.CostInNodes) };
+                if (cases.CostInNodes >= options.NodeBudget)
+                {
+                    return null;
+                }
+
+                EvaluationOptions trial = options with { NodeBudget = (int)cases.CostInNodes };
                 if (TryCompile(lineage, trial, start, cancellationToken, out CompiledLineage? compiled, out _))
                 {
                     return Evaluate(compiled!, options, own);
                 }
 
-                if (cases.CostInNodes > options.NodeBudget)
-                {
-                    return null;
-                }
-
-                checkpoint = () =>
-                {
-                    cancellationToken.ThrowIfCancellationRequested();
-                    if (IsLate(options, start))
-                    {
-                        throw new BudgetSpentException("", isTrial: true);
-                    }
-                };
+                checkpoint = Checkpoint(options, start, cancellationToken);
             }
 
             return cases.TryEvaluate(lineage.Arena, checkpoint, out Tails<double> result)
@@ -139,6 +134,15 @@ internal sealed class CompilationEvaluator : IEvaluator
 
     private static Probability Evaluate(CompiledLineage compiled, EvaluationOptions options, long own) =>
         compiled.Evaluate(() => new Cost(options.Clock.GetElapsedTime(own), compiled.NodeCount, 0));
+
+    private static Action Checkpoint(EvaluationOptions options, long start, CancellationToken cancellationToken) => () =>
+    {
+        cancellationToken.ThrowIfCancellationRequested();
+        if (IsLate(options, start))
+        {
+            throw new BudgetSpentException("", isTrial: true);
+        }
+    };
 
     private static bool IsLate(EvaluationOptions options, long start) =>
         options.Deadline is { } deadline && options.Clock.GetElapsedTime(start) >= deadline;

@@ -12,8 +12,8 @@ internal sealed class CaseEvaluator
     // With so few variables to split on it is the quickest way, whatever the structure.
     private const int FewSplit = 10;
 
-    // So few are computed side by side, so that fewer would be no gain.
-    private const int OneBlock = 2;
+    // Fewer would be no gain: factoring takes longer than sixteen cases.
+    private const int FewEnough = 4;
 
     // A node of a compilation takes the time of so much of the work of splitting.
     private const int WorkPerNode = 400;
@@ -66,7 +66,7 @@ internal sealed class CaseEvaluator
         }
 
         bool isPrepared = _split.TryPrepare(_circuit);
-        return isPrepared && _split.SplitCount <= OneBlock
+        return isPrepared && _split.SplitCount <= FewEnough
             || (_factoring.TryFactor(_circuit, _factored, CaseSplit.MostSplit) ? _split.TryPrepare(_factored) : isPrepared);
     }
 }

@@ -9,7 +9,7 @@ namespace Uncertain.Inference.Compilation.Cases;
 /// read-once, and all its conjunctions are of independent parts. Four cases are computed side by side.
 /// </summary>
 /// <remarks>
-/// Cost: operands times 2^(variables split on) / 4 steps of a nanosecond or two. Both tails are sums of products of
+/// Cost: the operands that depend on the fastest bit, times 2^(variables split on) / 4. Both tails are sums of products of
 /// non-negative numbers. What underflows loses an absolute 2^-1074 at most, which is nothing beside results in
 /// <see cref="TailConversions.SafeRange"/>.
 /// </remarks>
@@ -24,20 +24,26 @@ internal sealed class CaseSplit
     private const int LaneBits = 2;
     private const int BlocksPerSum = 256;
 
+    // With so few it takes longer to find out what can be left out than to compute all.
+    private const int FewBlocks = 4;
+
     private readonly int[] _uses = new int[CaseCircuit.MostVariables + 1 + CaseCircuit.MostNodes];
     private readonly int[] _split = new int[MostSplit];
     private readonly double[] _weights = new double[MostSplit + 1];
     private readonly Vector256<double>[] _values = new Vector256<double>[2 * (CaseCircuit.MostVariables + 1 + CaseCircuit.MostNodes)];
+    private readonly CaseProgram _program = new();
     private CaseCircuit _circuit = new();
 
     /// <summary>Number of variables split on.</summary>
     public int SplitCount { get; private set; }
 
-    /// <summary>Operands to be looked at, in steps of four cases each.</summary>
-    public long Work => Blocks * _circuit.OperandCount;
+    /// <summary>Operands to be looked at, four cases at a time.</summary>
+    public long Work => (FewBlocks * _circuit.OperandCount) + (UsesProgram ? (long)(Blocks * _program.WorkPerStep) : 0);
 
     /// <summary>Items of the circuit, which is what a node of a compiled form is.</summary>
     public int NodeCount => 1 + _circuit.VariableCount + _circuit.NodeCount;
+
+    private bool UsesProgram => Blocks > FewBlocks;
 
     private long Blocks => 1L << Math.Max(0, SplitCount - LaneBits);
 
@@ -46,7 +52,8 @@ internal sealed class CaseSplit
     {
         _circuit = circuit;
         SplitCount = 0;
-        _uses.AsSpan(0, CaseCircuit.MostVariables + 1 + circuit.NodeCount).Clear();
+        _uses.AsSpan(0, 1 + circuit.VariableCount).Clear();
+        _uses.AsSpan(1 + CaseCircuit.MostVariables, circuit.NodeCount).Clear();
         _uses[circuit.Root >> 1] = 1;
         for (int node = circuit.NodeCount - 1; node >= 0; node--)
         {
@@ -71,7 +78,17 @@ internal sealed class CaseSplit
             }
         }
 
-        return Roundings() <= SafeRoundings;
+        if (Roundings() > SafeRoundings)
+        {
+            return false;
+        }
+
+        if (UsesProgram)
+        {
+            _program.Prepare(circuit, _split.AsSpan(LaneBits, SplitCount - LaneBits));
+        }
+
+        return true;
     }
 
     /// <summary>
@@ -106,14 +123,20 @@ internal sealed class CaseSplit
         Vector256<double> yes = default;
         Vector256<double> no = default;
         int root = _circuit.Root;
+        bool usesProgram = UsesProgram;
         for (long block = from; block < to; block++)
         {
-            if (highCount > 0)
+            int highest = block == 0 ? highCount - 1 : (int)long.TrailingZeroCount(block);
+            SetHighValues(table, block, highest);
+            if (usesProgram)
             {
-                SetHighValues(table, block, block == 0 ? highCount - 1 : (int)long.TrailingZeroCount(block));
+                _program.Run(_values, block == 0 ? CaseProgram.NoBit : highest);
+            }
+            else
+            {
+                Propagate();
             }
 
-            Propagate();
             Vector256<double> weight = laneWeights * _weights[0];
             yes += weight * _values[root];
             no += weight * _values[root ^ 1];
