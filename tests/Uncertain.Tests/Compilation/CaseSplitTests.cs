@@ -16,6 +16,7 @@ public sealed class CaseSplitTests
             Lineage lineage = (seed % 3) switch
             {
                 0 => formulas.Circuit(),
+                1 when seed % 4 == 1 => formulas.Literal() & formulas.Literal() & formulas.Terms(dual: false, monotone: false),
                 _ => formulas.Terms(dual: seed % 2 == 0, monotone: seed % 3 == 1),
             };
 
@@ -47,12 +48,13 @@ public sealed class CaseSplitTests
     }
 
     [Theory]
-    [InlineData(5)]
-    [InlineData(12)]
-    [InlineData(14)]
-    public void Evaluate_CompleteJoin_EqualsCompiledForm(int size)
+    [InlineData(5, false)]
+    [InlineData(12, true)]
+    [InlineData(14, false)]
+    public void Evaluate_CompleteJoin_EqualsCompiledForm(int size, bool hasBeside)
     {
         Lineage lineage = CompleteJoin(size, 1e-3);
+        lineage = hasBeside ? !lineage.Worlds.Event("beside", 0.3) & lineage : lineage;
 
         Probability probability = Evaluators.Compilation.Evaluate(lineage, new EvaluationOptions(), default);
 

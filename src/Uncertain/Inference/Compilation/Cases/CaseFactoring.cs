@@ -5,6 +5,7 @@ namespace Uncertain.Inference.Compilation.Cases;
 /// <summary>
 /// Rewrites a list of terms so that few variables occur more than once: a cover of variables is chosen such that every term has
 /// at most one other variable that it shares with another term, and the terms with the same such variable share its occurrence.
+/// The list may be the whole formula or stand in a conjunction with literals.
 /// </summary>
 /// <remarks>The cover is found greedily: first the variable that is in most of the terms that still have two.</remarks>
 internal sealed class CaseFactoring
@@ -14,6 +15,7 @@ internal sealed class CaseFactoring
 
     private readonly List<int> _firstLiteral = [];
     private readonly List<int> _literals = [];
+    private readonly List<int> _beside = [];
     private readonly List<int> _inner = [];
     private readonly List<int> _outer = [];
     private readonly List<int> _rest = [];
@@ -29,7 +31,9 @@ internal sealed class CaseFactoring
     /// <summary>False if the circuit is no list of terms, or the cover gets too large.</summary>
     public bool TryFactor(CaseCircuit circuit, CaseCircuit factored, int mostCovered)
     {
-        if (!TryListTerms(circuit))
+        _beside.Clear();
+        int list = circuit.Root;
+        if (!TryListTerms(circuit, list) && !(TryPeel(circuit, out list) && TryListTerms(circuit, list)))
         {
             return false;
         }
@@ -42,16 +46,45 @@ internal sealed class CaseFactoring
 
         factored.ClearFor(circuit);
         Write(factored);
+        if (_beside.Count > 0)
+        {
+            _beside.Add(factored.Root ^ (list & 1));
+            factored.Root = factored.And(CollectionsMarshal.AsSpan(_beside));
+        }
+
         factored.Root ^= circuit.Root & 1;
         return true;
     }
 
+    /// <summary>Takes literals beside a list off; false if there is not exactly one other operand.</summary>
+    private bool TryPeel(CaseCircuit circuit, out int list)
+    {
+        list = CaseCircuit.True;
+        foreach (int edge in circuit.Operands(CaseCircuit.NodeOf(circuit.Root)))
+        {
+            if (CaseCircuit.IsVariable(edge))
+            {
+                _beside.Add(edge);
+            }
+            else if (list != CaseCircuit.True)
+            {
+                return false;
+            }
+            else
+            {
+                list = edge;
+            }
+        }
+
+        return list != CaseCircuit.True && _beside.Count > 0;
+    }
+
     // A conjunction of negated terms, of which some are single literals.
-    private bool TryListTerms(CaseCircuit circuit)
+    private bool TryListTerms(CaseCircuit circuit, int list)
     {
         _firstLiteral.Clear();
         _literals.Clear();
-        foreach (int edge in circuit.Operands(CaseCircuit.NodeOf(circuit.Root)))
+        foreach (int edge in circuit.Operands(CaseCircuit.NodeOf(list)))
         {
             _firstLiteral.Add(_literals.Count);
             if (CaseCircuit.IsVariable(edge))
@@ -85,6 +118,16 @@ internal sealed class CaseFactoring
             int variable = CaseCircuit.VariableOf(literal);
             _occurrences[variable]++;
             _signs[variable] |= (literal & 1) == 0 ? Positive : Negative;
+        }
+
+        foreach (int literal in _beside)
+        {
+            // In the list too, it cannot be factored out of both.
+            int variable = CaseCircuit.VariableOf(literal);
+            if (_occurrences[variable]++ > 0)
+            {
+                _signs[variable] = Positive | Negative;
+            }
         }
     }
 
