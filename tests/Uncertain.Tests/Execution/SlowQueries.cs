@@ -31,7 +31,7 @@ internal static class SlowQueries
 
             default:
                 return from x in worlds.Independent(Enumerable.Range(0, 10_000), i => 0.5)
-                       from y in Grid(worlds, 8)
+                       from y in Grid(worlds, 14)
                        select x;
         }
     }
