@@ -69,7 +69,7 @@ public sealed class CancellationTests
         var options = new EvaluationOptions
         {
             Evaluator = evaluator == "compilation" ? Evaluators.Compilation : Evaluators.Sampling,
-            Accuracy = evaluator == "compilation" ? Accuracy.Exact : Accuracy.Within(1e-5, 1e-9),
+            Accuracy = evaluator == "compilation" ? Accuracy.Exact : Accuracy.Within(1e-8, 1e-9),
             NodeBudget = int.MaxValue,
         };
 
