@@ -20,4 +20,31 @@ public static class Instances
 
         return (seen, known);
     }
+
+    /// <summary>As <see cref="Sightings"/>, each record a class with texts of its own, as read from a file.</summary>
+    public static (Card[] Cards, NamedUnit[] Units) Cards(int cards, int units, int places, int seed = 1)
+    {
+        (Sighting[] sightings, Unit[] known) = Sightings(cards, units, places, seed);
+        return (
+            [.. sightings.Select(s => new Card($"unit {s.Unit}", $"place {s.Place}", s.Chance))],
+            [.. known.Select(u => new NamedUnit($"unit {u.Id}", u.Chance))]);
+    }
+
+    /// <summary>
+    /// Answers with small lineages that do not factor, held in a set: in each, some neighbours of a row of variables are there together.
+    /// </summary>
+    public static UncertainSet<int> ManyAnswers(int answers, int variables, int seed = 1)
+    {
+        var random = new Random(seed);
+        var worlds = new WorldSpace();
+        Lineage[] records = [.. Enumerable.Range(0, answers).Select(answer =>
+        {
+            Lineage[] row =
+            [
+                .. Enumerable.Range(0, variables).Select(i => worlds.Event($"v{answer}-{i}", 0.05 + (0.9 * random.NextDouble()))),
+            ];
+            return Lineage.Any([.. Enumerable.Range(0, variables - 1).Select(i => row[i] & row[i + 1])]);
+        })];
+        return worlds.WithLineage(Enumerable.Range(0, answers), answer => records[answer]);
+    }
 }

@@ -1,0 +1,56 @@
+using System.Diagnostics;
+using System.Globalization;
+
+namespace Uncertain.Benchmarks.Ratios;
+
+/// <summary>Measures every goal, or those whose name begins with one of some names, and prints a line for each.</summary>
+public static class RatioTable
+{
+    private static readonly (string Title, IReadOnlyList<Goal> Goals)[] s_sections =
+    [
+        ("Query speed", QuerySpeed.Goals),
+        ("Small queries", SmallQueries.Goals),
+        ("Hard lineages, one core", HardLineages.Goals),
+    ];
+
+    /// <returns>Whether some goal was measured.</returns>
+    public static bool Run(string[] names)
+    {
+        long start = Stopwatch.GetTimestamp();
+        int measured = 0;
+        int met = 0;
+        Console.WriteLine($"{"name",-26} {"ours",12} {"baseline",12} {"ratio",8} {"goal",8}  met   against");
+        foreach ((string title, IReadOnlyList<Goal> goals) in s_sections)
+        {
+            foreach (Goal goal in goals.Where(goal => names.Length == 0 || names.Any(goal.Name.StartsWith)))
+            {
+                met += Print(goal) ? 1 : 0;
+                measured++;
+            }
+        }
+
+        if (measured == 0)
+        {
+            Console.WriteLine("No goal has such a name. There are: "
+                + string.Join(", ", s_sections.SelectMany(section => section.Goals).Select(goal => goal.Name)));
+            return false;
+        }
+
+        Console.WriteLine(string.Create(
+            CultureInfo.InvariantCulture,
+            $"{met} of {measured} goals met; {Environment.ProcessorCount} cores, {Stopwatch.GetElapsedTime(start).TotalSeconds:F0} s in all"));
+        return true;
+    }
+
+    private static bool Print(Goal goal)
+    {
+        Measurement measurement = goal.Measure();
+        GC.Collect();
+        bool met = goal.IsLeast ? measurement.Ratio >= goal.Limit : measurement.Ratio <= goal.Limit;
+        Console.WriteLine(string.Create(
+            CultureInfo.InvariantCulture,
+            $"{goal.Name,-26} {measurement.Text(measurement.Ours),12} {measurement.Text(measurement.Baseline),12} {measurement.Ratio,8:0.###} "
+            + $"{(goal.IsLeast ? ">= " : "<= ") + goal.Limit.ToString("0.###", CultureInfo.InvariantCulture),8}  {(met ? "yes" : "NO"),-3}   {goal.Comparison}"));
+        return met;
+    }
+}
