@@ -3,7 +3,7 @@ namespace Uncertain.Benchmarks.Ratios;
 /// <summary>Exact probabilities of lineages whose cost is exponential in their width at worst. Goals in seconds; ready lineages.</summary>
 public static class HardLineages
 {
-    private static readonly EvaluationOptions s_oneCore = new() { Evaluator = Evaluators.Compilation, Threads = 1 };
+    private static readonly EvaluationOptions s_oneCore = new() { Evaluator = Evaluators.Compilation, Threads = 1, NodeBudget = 50_000_000 };
 
     public static IReadOnlyList<Goal> Goals { get; } =
     [

@@ -44,7 +44,17 @@ public static class RatioTable
 
     private static bool Print(Goal goal)
     {
-        Measurement measurement = goal.Measure();
+        Measurement measurement;
+        try
+        {
+            measurement = goal.Measure();
+        }
+        catch (EvaluationRefusedException e)
+        {
+            Console.WriteLine($"{goal.Name,-26} {"-",12} {"-",12} {"-",8} {"",8}  NO    refused: {e.Message}");
+            return false;
+        }
+
         GC.Collect();
         bool met = goal.IsLeast ? measurement.Ratio >= goal.Limit : measurement.Ratio <= goal.Limit;
         Console.WriteLine(string.Create(
