@@ -1,5 +1,7 @@
 using System.Globalization;
 using Uncertain.Inference.Compilation;
+using Uncertain.Lineages;
+using Uncertain.Numerics;
 using Uncertain.Worlds;
 
 namespace Uncertain.Inference;
@@ -53,12 +55,73 @@ public sealed class CompiledLineage
         return _form.Evaluate(Setting(changedChances), CompilationEvaluator.EvaluatorName, cost);
     }
 
+    /// <summary>
+    /// How much the probability changes with the chance of each literal of the lineage: for an event
+    /// P(lineage given the event) - P(lineage given its absence), in [-1, 1]; for an alternative of a many-outcome variable
+    /// P(lineage given the alternative) - P(lineage given none of the alternatives).
+    /// </summary>
+    /// <returns>
+    /// The derivatives by literal: an event's, a record's or an alternative's own lineage. Literals that are not in the form have the
+    /// derivative 0 and are not listed.
+    /// </returns>
+    /// <remarks>
+    /// <para>Reverse accumulation (A. Darwiche, "A differential approach to inference in Bayesian networks", Journal of the ACM 50,
+    /// 2003): one pass forward and one backward give all of them, in time linear in <see cref="NodeCount"/>. For an event this is
+    /// the importance after Z. W. Birnbaum, "On the importance of different components in a multicomponent system", 1969.</para>
+    /// <para>1e-12 relative, as long as the two probabilities whose difference is taken, or their complements, do not agree in
+    /// more than 18 digits.</para>
+    /// </remarks>
+    /// <exception cref="EvaluationRefusedException">A probability is below the range of the evaluator's numbers.</exception>
+    public IReadOnlyDictionary<Lineage, double> Derivatives() => Derivatives(new ChanceSetting(Lineage.Worlds.Variables));
+
+    /// <summary>The derivatives if some records or events had other chances, see <see cref="Derivatives()"/>.</summary>
+    /// <param name="changedChances">As in <see cref="Evaluate(IReadOnlyDictionary{Lineage, double})"/>.</param>
+    /// <returns>The derivatives by literal.</returns>
+    /// <exception cref="InvalidInputException">
+    /// A key is no literal, a chance is not in [0, 1], or the outcomes of a variable add up to more than 1.
+    /// </exception>
+    /// <exception cref="WorldSpaceMismatchException">A key belongs to another world space.</exception>
+    /// <exception cref="EvaluationRefusedException">A probability is below the range of the evaluator's numbers.</exception>
+    public IReadOnlyDictionary<Lineage, double> Derivatives(IReadOnlyDictionary<Lineage, double> changedChances)
+    {
+        ArgumentNullException.ThrowIfNull(changedChances);
+        return Derivatives(Setting(changedChances));
+    }
+
     /// <summary>For example <c>compiled lineage: 1,204 nodes</c>.</summary>
     public override string ToString() =>
         string.Create(CultureInfo.InvariantCulture, $"compiled lineage: {NodeCount:N0} {(NodeCount == 1 ? "node" : "nodes")}");
 
     internal Probability Evaluate(Func<Cost> cost) =>
         _form.Evaluate(new ChanceSetting(Lineage.Worlds.Variables), CompilationEvaluator.EvaluatorName, cost);
+
+    private Dictionary<Lineage, double> Derivatives(ChanceSetting setting)
+    {
+        // Doubles suffice unless a difference takes digits away.
+        if (_form.TryDerive(setting) is { } plain && Array.TrueForAll(plain.OfSlot, KeepsDigits))
+        {
+            return ByLiteral(plain.Slots, i => plain.OfSlot[i].Rise - plain.OfSlot[i].Fall);
+        }
+
+        FormDerivatives<ExtendedDouble> extended = _form.Derive(setting);
+        return ByLiteral(
+            extended.Slots, i => ExtendedDouble.Subtract(extended.OfSlot[i].Rise, extended.OfSlot[i].Fall));
+    }
+
+    private Dictionary<Lineage, double> ByLiteral(int[] slots, Func<int, double> derivative)
+    {
+        var result = new Dictionary<Lineage, double>(slots.Length);
+        for (int i = 0; i < slots.Length; i++)
+        {
+            result.Add(new Lineage(Lineage.Arena, LineageRef.Literal(slots[i])), derivative(i));
+        }
+
+        return result;
+    }
+
+    // The difference takes one digit at most, of the thirteen that there are.
+    private static bool KeepsDigits(Difference<double> difference) =>
+        Math.Abs(difference.Rise - difference.Fall) >= 0.1 * (difference.Rise + difference.Fall);
 
     private Func<Cost> Timer()
     {

@@ -16,7 +16,8 @@ internal readonly struct ExtendedDouble :
     IAdditionOperators<ExtendedDouble, ExtendedDouble, ExtendedDouble>,
     IMultiplyOperators<ExtendedDouble, ExtendedDouble, ExtendedDouble>,
     IAdditiveIdentity<ExtendedDouble, ExtendedDouble>,
-    IMultiplicativeIdentity<ExtendedDouble, ExtendedDouble>
+    IMultiplicativeIdentity<ExtendedDouble, ExtendedDouble>,
+    IComparable<ExtendedDouble>
 {
     private const double Ln2High = 0.693147180559945309417232121458;
 
@@ -101,6 +102,43 @@ internal readonly struct ExtendedDouble :
         double rounded = high - left._high;
         double low = (left._high - (high - rounded)) + (other - rounded) + left._low + (right._low * scale);
         return Normalize(high, low, left._exponent);
+    }
+
+    /// <summary>The difference as a double, which may be negative; exact but for one rounding of each digit kept.</summary>
+    public static double Subtract(ExtendedDouble left, ExtendedDouble right)
+    {
+        if (left._high == 0 || right._high == 0)
+        {
+            return left._high == 0 ? -right.ToDouble() : left.ToDouble();
+        }
+
+        int exponent = Math.Max(left._exponent, right._exponent);
+        int leftShift = (int)Math.Max((long)left._exponent - exponent, -2000);
+        int rightShift = (int)Math.Max((long)right._exponent - exponent, -2000);
+        double high = Math.ScaleB(left._high, leftShift) - Math.ScaleB(right._high, rightShift);
+        double low = Math.ScaleB(left._low, leftShift) - Math.ScaleB(right._low, rightShift);
+        if (leftShift != rightShift)
+        {
+            // TwoSum: the digits that the subtraction of the high words has lost.
+            double minuend = Math.ScaleB(left._high, leftShift);
+            double subtrahend = -Math.ScaleB(right._high, rightShift);
+            double part = high - minuend;
+            low += (minuend - (high - part)) + (subtrahend - part);
+        }
+
+        return Math.ScaleB(high + low, exponent);
+    }
+
+    public int CompareTo(ExtendedDouble other)
+    {
+        if (_high == 0 || other._high == 0)
+        {
+            return _high.CompareTo(other._high);
+        }
+
+        int order = _exponent.CompareTo(other._exponent);
+        order = order == 0 ? _high.CompareTo(other._high) : order;
+        return order == 0 ? _low.CompareTo(other._low) : order;
     }
 
     /// <summary>Nearest double; 0 below the double range.</summary>

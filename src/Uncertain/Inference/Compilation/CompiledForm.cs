@@ -11,7 +11,10 @@ internal sealed class CompiledForm
     /// <summary>Roundings along which a double keeps the promised 1e-12 with a margin: 4096 * 2^-53 = 4.5e-13.</summary>
     private const double SafeRoundings = 4096;
 
-    private readonly bool _roundsTooOften;
+    /// <summary>The same for what may lose a digit in a difference, and for each of the two passes of a derivative.</summary>
+    private const double DerivativeRoundings = 256;
+
+    private readonly double _roundings;
 
     public CompiledForm(int[] words, int nodeCount, FormDistribution[] distributions, int root)
     {
@@ -19,7 +22,7 @@ internal sealed class CompiledForm
         NodeCount = nodeCount;
         Distributions = distributions;
         Root = root;
-        _roundsTooOften = Roundings() > SafeRoundings;
+        _roundings = Roundings();
     }
 
     public int NodeCount { get; }
@@ -31,13 +34,31 @@ internal sealed class CompiledForm
     /// <summary>The edge to the whole formula.</summary>
     public int Root { get; }
 
+    /// <summary>Where the node behind the one at a position begins.</summary>
+    public int Next(int position) =>
+        position + 1 + (Words[position] >> 2) + ((FormNodeKind)(Words[position] & 3) == FormNodeKind.Choice ? 1 : 0);
+
+    /// <summary>Where each node begins; the constant has no place.</summary>
+    public int[] Positions()
+    {
+        int[] positions = new int[NodeCount];
+        int position = 0;
+        for (int node = 1; node < NodeCount; node++)
+        {
+            positions[node] = position;
+            position = Next(position);
+        }
+
+        return positions;
+    }
+
     public long Bytes => (long)Words.Length * sizeof(int);
 
     /// <summary>Both tails under a setting of the chances; 1e-12 relative in each, at any size and range.</summary>
     /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>
     public Probability Evaluate(ChanceSetting setting, string evaluator, Func<Cost> cost)
     {
-        if (!_roundsTooOften
+        if (_roundings <= SafeRoundings
             && ForwardPass<double, DoubleChances>.TryEvaluate(this, new DoubleChances(setting), out Tails<double> tails))
         {
             return Probability.Exact(tails, evaluator, cost());
@@ -51,11 +72,66 @@ internal sealed class CompiledForm
         }
         catch (OverflowException exception)
         {
-            throw new EvaluationRefusedException(
-                "A probability of this lineage is below 2^-2,000,000,000, beyond the range of the evaluator's numbers. "
-                + "Split the lineage into independent parts, and add up the logarithms of their probabilities.",
-                exception);
+            throw BelowRange(exception);
         }
+    }
+
+    /// <summary>
+    /// The derivatives in doubles, if those keep 1e-13 of the larger of the two numbers whose difference each is; else null.
+    /// </summary>
+    public FormDerivatives<double>? TryDerive(ChanceSetting setting) =>
+        _roundings > DerivativeRoundings || BackwardRoundings() > DerivativeRoundings
+            ? null
+            : BackwardPass<double, DoubleChances>.TryRun(this, new DoubleChances(setting));
+
+    /// <summary>The derivatives in extended numbers: 31 digits, of which the difference may cost the first.</summary>
+    /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>
+    public FormDerivatives<ExtendedDouble> Derive(ChanceSetting setting)
+    {
+        try
+        {
+            return BackwardPass<ExtendedDouble, ExtendedChances>.TryRun(this, new ExtendedChances(setting))!;
+        }
+        catch (OverflowException exception)
+        {
+            throw BelowRange(exception);
+        }
+    }
+
+    private static EvaluationRefusedException BelowRange(OverflowException exception) => new(
+        "A probability of this lineage is below 2^-2,000,000,000, beyond the range of the evaluator's numbers. "
+        + "Split the lineage into independent parts, and add up the logarithms of their probabilities.",
+        exception);
+
+    /// <summary>
+    /// The most roundings that meet in one derivative, beside those of the tails: a user adds its factors and one for the sum.
+    /// </summary>
+    private double BackwardRoundings()
+    {
+        var roundings = new float[NodeCount];
+        int[] positions = Positions();
+        float worst = 0;
+        for (int node = NodeCount - 1; node > 0; node--)
+        {
+            // Sums over many users round once for each; they are added one by one, so their number is a bound.
+            int position = positions[node];
+            int count = Words[position] >> 2;
+            var kind = (FormNodeKind)(Words[position] & 3);
+            float own = roundings[node];
+            worst = Math.Max(worst, own);
+            if (kind == FormNodeKind.Literal)
+            {
+                continue;
+            }
+
+            foreach (int edge in Words.AsSpan(position + (kind == FormNodeKind.Choice ? 2 : 1), count))
+            {
+                ref float inner = ref roundings[edge >> 1];
+                inner = Math.Max(inner, own + count + 2) + 1;
+            }
+        }
+
+        return worst;
     }
 
     /// <summary>

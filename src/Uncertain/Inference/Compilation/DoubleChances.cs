@@ -14,4 +14,6 @@ internal readonly struct DoubleChances(ChanceSetting setting) : IChanceReader<do
     // A tail that is 0 for certain, after a chance of 0 or 1 was set, counts too: that costs a second pass and no digits.
     public bool IsOutOfRange(Tails<double> tails) =>
         !(tails.True >= TailConversions.SafeRange && tails.False >= TailConversions.SafeRange);
+
+    public bool IsOutOfRange(double number) => !(number >= TailConversions.SafeRange);
 }

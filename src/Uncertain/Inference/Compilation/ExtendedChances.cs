@@ -11,4 +11,6 @@ internal readonly struct ExtendedChances(ChanceSetting setting) : IChanceReader<
     public ExtendedDouble[] Weights(FormDistribution distribution) => setting.Weights(distribution);
 
     public bool IsOutOfRange(Tails<ExtendedDouble> tails) => false;
+
+    public bool IsOutOfRange(ExtendedDouble number) => false;
 }

@@ -16,7 +16,7 @@ internal static class ForwardPass<TNumber, TChances>
         Tails<TNumber>[] values = ArrayPool<Tails<TNumber>>.Shared.Rent(form.NodeCount);
         try
         {
-            bool inRange = Run(form, chances, values);
+            bool inRange = TryRun(form, chances, values, new TNumber[]?[form.Distributions.Length]);
             result = inRange ? Edge(form.Root, values) : default;
             return inRange;
         }
@@ -26,9 +26,9 @@ internal static class ForwardPass<TNumber, TChances>
         }
     }
 
-    private static bool Run(CompiledForm form, TChances chances, Tails<TNumber>[] values)
+    /// <summary>The same with the tails of all nodes and the weights of all distributions that occur.</summary>
+    public static bool TryRun(CompiledForm form, TChances chances, Tails<TNumber>[] values, TNumber[]?[] weights)
     {
-        var weights = new TNumber[]?[form.Distributions.Length];
         values[0] = Tails<TNumber>.Always;
         int[] words = form.Words;
         int position = 0;

@@ -16,4 +16,7 @@ internal interface IChanceReader<TNumber>
 
     /// <summary>Whether the number may have lost digits because it is near the end of its range.</summary>
     bool IsOutOfRange(Tails<TNumber> tails);
+
+    /// <summary>The same for one number.</summary>
+    bool IsOutOfRange(TNumber number);
 }
