@@ -1,5 +1,6 @@
 using System.Text;
 using Uncertain.Inference;
+using Uncertain.Inference.Safe;
 using Uncertain.Planning;
 
 namespace Uncertain;
@@ -7,6 +8,8 @@ namespace Uncertain;
 /// <summary>A query as steps in words, for people, tests and evaluators. Immutable; touches no data.</summary>
 public sealed class QueryPlan
 {
+    private SafePlanning? _safe;
+
     internal QueryPlan(PlanNode root) => Root = root;
 
     /// <summary>The last step's description: one line.</summary>
@@ -16,6 +19,21 @@ public sealed class QueryPlan
     public IReadOnlyList<QueryPlan> Inputs => [.. Root.Inputs.Select(input => new QueryPlan(input))];
 
     internal PlanNode Root { get; }
+
+    /// <summary>The query's safe plan, or why there is none. Planned once, unless the query reads sets from captured variables.</summary>
+    internal SafePlanning Safe
+    {
+        get
+        {
+            SafePlanning safe = _safe ?? SafePlanning.Of(Root);
+            if (Root.HasOneTranslation)
+            {
+                _safe = safe;
+            }
+
+            return safe;
+        }
+    }
 
     /// <summary>Whether an evaluator can take the query, and why or why not.</summary>
     /// <param name="evaluator">The evaluator.</param>

@@ -22,13 +22,16 @@ namespace Uncertain;
 [DebuggerDisplay("{ToString(),nq}")]
 public sealed partial class UncertainSet<T> : IPlanned
 {
+    // Made when first asked for; it keeps what planning found, so that a query that is evaluated again is not planned again.
+    private QueryPlan? _plan;
+
     internal UncertainSet(PlanNode<T> node) => Node = node;
 
     /// <summary>The world space of the sources.</summary>
     public WorldSpace Worlds => Node.Worlds;
 
     /// <summary>The plan: steps in words, and which evaluators can take it. Touches no data.</summary>
-    public QueryPlan Plan => new(Node);
+    public QueryPlan Plan => _plan ??= new QueryPlan(Node);
 
     internal PlanNode<T> Node { get; }
 

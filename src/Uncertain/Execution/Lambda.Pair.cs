@@ -1,4 +1,5 @@
 using System.Linq.Expressions;
+using Uncertain.Execution.Lambdas;
 
 namespace Uncertain.Execution;
 
@@ -11,7 +12,7 @@ internal sealed class Lambda<T1, T2, TResult>(Expression<Func<T1, T2, TResult>> 
 
     public TResult Invoke(T1 first, T2 second)
     {
-        Func<T1, T2, TResult> compiled = _compiled ??= Tree.Compile();
+        Func<T1, T2, TResult> compiled = _compiled ??= DelegateCache.Of(Tree);
         try
         {
             return compiled(first, second);

@@ -1,5 +1,6 @@
 using System.Runtime.CompilerServices;
 using System.Linq.Expressions;
+using Uncertain.Execution.Lambdas;
 
 namespace Uncertain.Execution;
 
@@ -10,7 +11,7 @@ internal sealed class Lambda<T, TResult>(Expression<Func<T, TResult>> tree, stri
 
     public Expression<Func<T, TResult>> Tree { get; } = tree ?? throw new ArgumentNullException(nameof(tree));
 
-    private Func<T, TResult> Compiled => _compiled ??= Tree.Compile();
+    private Func<T, TResult> Compiled => _compiled ??= DelegateCache.Of(Tree);
 
     /// <summary>Results for many records; cheaper than one by one, since failures are watched for once.</summary>
     /// <param name="records">The records.</param>

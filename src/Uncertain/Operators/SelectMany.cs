@@ -45,6 +45,7 @@ public sealed partial class UncertainSet<T>
             Expression<Func<T, TCollection, TResult>> resultSelector)
             : base(input.Worlds, fixedSet is null ? [input] : [input, fixedSet.Node])
         {
+            HasOneTranslation &= fixedSet is not null;
             _input = input;
             _fixed = fixedSet is null ? null : SameWorlds.Require(input.Worlds, fixedSet, nameof(SelectMany));
             _collection = new Lambda<T, UncertainSet<TCollection>>(collectionSelector, nameof(SelectMany));

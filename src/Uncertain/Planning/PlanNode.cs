@@ -15,7 +15,13 @@ internal abstract class PlanNode
     {
         Worlds = worlds;
         Inputs = inputs;
-        _depth = 1 + inputs.Select(input => input._depth).DefaultIfEmpty().Max();
+        foreach (PlanNode input in inputs)
+        {
+            _depth = Math.Max(_depth, input._depth);
+            HasOneTranslation &= input.HasOneTranslation;
+        }
+
+        _depth++;
         if (_depth > MaxDepth)
         {
             throw new InvalidInputException(string.Create(
@@ -28,6 +34,12 @@ internal abstract class PlanNode
     public WorldSpace Worlds { get; }
 
     public IReadOnlyList<PlanNode> Inputs { get; }
+
+    /// <summary>
+    /// Whether <see cref="Translate"/> gives the same each time, so that a plan may be kept: it does unless a set is read from a captured
+    /// variable.
+    /// </summary>
+    public bool HasOneTranslation { get; protected init; } = true;
 
     /// <summary>The step in words, without its inputs: one line.</summary>
     public abstract string Describe();

@@ -23,10 +23,10 @@ internal sealed class ChoosingEvaluator : IEvaluator
 
     public Suitability Examine(QueryPlan plan)
     {
-        Suitability safe = Evaluators.SafePlan.Examine(plan);
-        return Suitability.Can(safe.IsSuitable
+        ArgumentNullException.ThrowIfNull(plan);
+        return Suitability.Can(plan.Safe.Refusal is not { } refusal
             ? "takes the safe plan"
-            : $"compiles each answer's lineage, and samples what is over the budget (no safe plan: {safe.Reason})");
+            : $"compiles each answer's lineage, and samples what is over the budget (no safe plan: {refusal.Message})");
     }
 
     public Probability Evaluate(Lineage lineage, EvaluationOptions options, CancellationToken cancellationToken)
@@ -40,7 +40,7 @@ internal sealed class ChoosingEvaluator : IEvaluator
         ArgumentNullException.ThrowIfNull(query);
         ArgumentNullException.ThrowIfNull(options);
         long start = options.Clock.GetTimestamp();
-        return Evaluators.SafePlan.Examine(query.Plan).IsSuitable && SafeAnswers(query, options, cancellationToken) is { } answers
+        return query.Plan.Safe.Plan is not null && SafeAnswers(query, options, cancellationToken) is { } answers
             ? answers
             : LineageAnswers(query, options, start, cancellationToken);
     }

@@ -24,14 +24,10 @@ internal sealed class SafePlanEvaluator : IEvaluator
     public Suitability Examine(QueryPlan plan)
     {
         ArgumentNullException.ThrowIfNull(plan);
-        try
-        {
-            return Suitability.Can($"a safe plan exists\n{Indent(SafePlan.For(plan.Root).Root.ToString())}");
-        }
-        catch (NoSafePlanException exception)
-        {
-            return Suitability.Cannot(exception.Message);
-        }
+        SafePlanning planning = plan.Safe;
+        return planning.Plan is { } safe
+            ? Suitability.Can($"a safe plan exists\n{Indent(safe.Root.ToString())}")
+            : Suitability.Cannot(planning.Refusal!.Message);
     }
 
     public Probability Evaluate(Lineage lineage, EvaluationOptions options, CancellationToken cancellationToken) =>
@@ -42,20 +38,13 @@ internal sealed class SafePlanEvaluator : IEvaluator
     {
         ArgumentNullException.ThrowIfNull(query);
         ArgumentNullException.ThrowIfNull(options);
-        SafePlan plan;
-        try
-        {
-            plan = SafePlan.For(query.Node);
-        }
-        catch (NoSafePlanException exception)
-        {
-            throw new EvaluationRefusedException(
-                $"The query has no safe plan: {exception.Message}. Use Evaluators.Compilation, or leave the choice to "
+        SafePlanning planning = query.Plan.Safe;
+        return planning.Plan is not null
+            ? Run(planning.Plan, query, options, cancellationToken)
+            : throw new EvaluationRefusedException(
+                $"The query has no safe plan: {planning.Refusal!.Message}. Use Evaluators.Compilation, or leave the choice to "
                 + "Evaluators.Chooser.",
-                exception);
-        }
-
-        return Run(plan, query, options, cancellationToken);
+                planning.Refusal);
     }
 
     private IEnumerable<Answer<T>> Run<T>(

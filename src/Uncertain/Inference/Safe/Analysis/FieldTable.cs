@@ -8,8 +8,10 @@ namespace Uncertain.Inference.Safe.Analysis;
 internal sealed class FieldTable
 {
     private readonly Dictionary<Expression, Field> _fields = new(ExpressionComparer.Instance);
+    private readonly Dictionary<ParameterExpression, List<Field>> _ofRow = [];
 
-    public IEnumerable<Field> All => _fields.Values;
+    /// <summary>The fields of a row, in the order in which they were found.</summary>
+    public IReadOnlyList<Field> OfRow(ParameterExpression row) => _ofRow.TryGetValue(row, out List<Field>? fields) ? fields : [];
 
     /// <summary>The field for an expression over exactly one row.</summary>
     public Field Of(Expression expression)
@@ -34,6 +36,12 @@ internal sealed class FieldTable
 
         field = new Field(expression, row);
         _fields.Add(expression, field);
+        if (!_ofRow.TryGetValue(row, out List<Field>? ofRow))
+        {
+            _ofRow.Add(row, ofRow = []);
+        }
+
+        ofRow.Add(field);
         return field;
     }
 
@@ -83,7 +91,7 @@ internal sealed class FieldTable
             if (found.Count == 1)
             {
                 Field field = table.Of(node);
-                ParameterExpression parameter = Expression.Parameter(node.Type, PlanText.Of(node));
+                ParameterExpression parameter = Expression.Parameter(node.Type);
                 Fields.Add((parameter, field));
                 return parameter;
             }

@@ -18,7 +18,7 @@ internal sealed class SourcePart(SourceAtom atom, FieldTable table) : Part
     public List<Expression> Filters { get; } = [];
 
     /// <summary>The row's fields; several of them may be one variable.</summary>
-    public IReadOnlyList<Field> Fields => [.. table.All.Where(candidate => candidate.Row == Atom.Row)];
+    public IReadOnlyList<Field> Fields => table.OfRow(Atom.Row);
 
     /// <summary>A copy that is read as if it were certain, to guard what is computed beside the original.</summary>
     public bool IsGuard { get; private init; }

@@ -1,4 +1,6 @@
 using System.Linq.Expressions;
+using Uncertain.Execution.Lambdas;
+using Uncertain.Planning;
 using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Analysis;
@@ -16,8 +18,12 @@ internal sealed record Template(Expression Body, IReadOnlyList<(ParameterExpress
             field => field.Parameter,
             field => encoderOf(field.Field.Representative).Decode(
                 Expression.ArrayIndex(codes, Expression.Constant(IndexOf(variables, field.Field.Representative))))));
-        return Expression.Lambda<Func<int[], TResult>>(decoder.Visit(Body), codes).Compile();
+        return DelegateCache.Of(Expression.Lambda<Func<int[], TResult>>(decoder.Visit(Body), codes));
     }
+
+    /// <summary>The expression for people, with the fields as they were written.</summary>
+    public override string ToString() =>
+        PlanText.Of(new Decoder(Fields.ToDictionary(use => use.Parameter, use => use.Field.Expression)).Visit(Body));
 
     private static int IndexOf(IReadOnlyList<Field> variables, Field variable)
     {

@@ -14,7 +14,7 @@ internal sealed class UnionPart(UnionAtom atom, Scope left, Scope right, FieldTa
     public Scope Right { get; } = right;
 
     /// <summary>The fields of the union's rows that matter.</summary>
-    public IEnumerable<Field> Fields => table.All.Where(candidate => Atom.Fields.Any(own => own.Row == candidate.Row));
+    public IEnumerable<Field> Fields => Atom.Fields.SelectMany(own => table.OfRow(own.Row));
 
     public override IReadOnlySet<Field> Variables => _variables ??= Fields.Select(candidate => candidate.Representative).ToHashSet();
 

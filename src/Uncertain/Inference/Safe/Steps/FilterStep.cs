@@ -1,6 +1,5 @@
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
-using Uncertain.Planning;
 
 namespace Uncertain.Inference.Safe.Steps;
 
@@ -9,7 +8,7 @@ internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(
 {
     private readonly SafeStep _input = input;
 
-    public override string Describe() => $"where {PlanText.Of(condition.Body)}";
+    public override string Describe() => $"where {condition}";
 
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
