@@ -67,6 +67,12 @@ public sealed record EvaluationOptions
     /// <summary>Receives at most about ten reports a second; null (default) for none.</summary>
     public IProgress<EvaluationProgress>? Progress { get; init; }
 
+    /// <summary>
+    /// Rows of its largest source that a part of a split safe plan has: its codes, chances, tails and hash table then take about 1 MB.
+    /// Tests set fewer, so that small inputs are split too.
+    /// </summary>
+    internal int RowsInPart { get; init; } = 32_768;
+
     /// <summary>Clock of deadlines, progress and costs. Default: the system's.</summary>
     public TimeProvider Clock
     {

@@ -1,28 +1,27 @@
-using System.Linq.Expressions;
-
 namespace Uncertain.Worlds;
 
 /// <summary>
-/// Gives each distinct value of a variable a small number from 0, so that joins and groupings work on integers whatever the type.
+/// Gives equal values of a variable equal numbers and different ones different numbers, so that joins and groupings work on integers
+/// whatever the type.
 /// </summary>
 internal abstract class Encoder
 {
-    /// <summary>Rows whose values are computed before they are encoded.</summary>
-    protected const int Chunk = 4096;
-
-    /// <summary>The code of a null that must not join.</summary>
+    /// <summary>
+    /// The code of a null that must not join. Only encoders of types that have a null give it this meaning.
+    /// </summary>
     public const int Dropped = -1;
 
-    /// <summary>All codes are smaller than this.</summary>
-    public abstract int Count { get; }
+    /// <summary>Whether codes follow from the values alone, so that several threads may encode at once.</summary>
+    public abstract bool IsDirect { get; }
 
-    public static Encoder For(Type type) => type == typeof(int)
-        ? new IntegerEncoder()
-        : (Encoder)Activator.CreateInstance(typeof(Encoder<>).MakeGenericType(type))!;
+    /// <summary>
+    /// An encoder that knows this one's values and keeps new ones to itself, so that threads may encode at the same time, each with its
+    /// own; this one must not change meanwhile.
+    /// </summary>
+    public abstract Encoder Fork();
 
-    /// <summary>Codes of one field for chosen rows of a source, or for all rows if <paramref name="chosen"/> is null.</summary>
-    public abstract void Encode<TRow>(TRow[] rows, int[]? chosen, LambdaExpression field, bool dropNulls, int[] codes, CancellationToken cancellationToken);
-
-    /// <summary>An expression that gives the value back for a code.</summary>
-    public abstract Expression Decode(Expression code);
+    /// <summary>Takes in what a fork has learnt. Forks of neighbouring rows, taken in in order, give the codes that one encoder would.</summary>
+    /// <param name="fork">A fork of this encoder.</param>
+    /// <param name="codes">What the fork encoded; the codes are changed to this encoder's.</param>
+    public abstract void Absorb(Encoder fork, Span<int> codes);
 }

@@ -3,7 +3,7 @@ using Uncertain.Lineages;
 
 namespace Uncertain.Worlds;
 
-/// <summary>What planning needs to know of a source, whatever its record type.</summary>
+/// <summary>What planning and safe plans need to know of a source, whatever its record type.</summary>
 internal interface ISource
 {
     string Name { get; }
@@ -18,15 +18,18 @@ internal interface ISource
 
     int RecordCount { get; }
 
-    /// <summary>The records that are in some world and satisfy all filters, by number; null for all records.</summary>
-    int[]? Choose(IReadOnlyList<LambdaExpression> filters, CancellationToken cancellationToken);
+    /// <summary>A reader for a field, to be held as long as the plan that uses it.</summary>
+    FieldReader ReaderOf(LambdaExpression field);
 
-    /// <summary>The slot of record 0, where record i has slot FirstSlot + i; else -1.</summary>
-    int FirstSlot { get; }
-
-    /// <summary>Codes of a field for chosen records.</summary>
-    void Encode(Encoder encoder, LambdaExpression field, int[]? chosen, bool dropNulls, int[] codes, CancellationToken cancellationToken);
+    /// <summary>A filter on records, to be held as long as the plan that uses it.</summary>
+    RecordFilter FilterOf(IReadOnlyList<LambdaExpression> conditions);
 
     /// <summary>A record's lineage; in sources without given lineages it is true or a positive literal.</summary>
     LineageRef LineageOf(int record);
+
+    /// <summary>Chances of records of a source that is certain or independent.</summary>
+    /// <param name="chosen">The record of each row; null where row i is record i.</param>
+    /// <param name="start">The first row.</param>
+    /// <param name="chances">Takes the chances; its length says how many rows.</param>
+    void ReadChances(int[]? chosen, int start, Span<double> chances);
 }

@@ -61,44 +61,30 @@ internal sealed class SourceNode<T>(
 
     public int RecordCount => Records.Length;
 
-    public int FirstSlot => Lineages.FirstSlot;
+    public FieldReader ReaderOf(LambdaExpression field) => FieldReader.Of(Records, field, "a field");
 
-    public int[]? Choose(IReadOnlyList<LambdaExpression> filters, CancellationToken cancellationToken)
-    {
-        if (filters.Count == 0 && Lineages.AllPossible)
-        {
-            return null;
-        }
-
-        Lambda<T, bool>[] conditions = [.. filters.Select(filter => new Lambda<T, bool>((Expression<Func<T, bool>>)filter, "Where"))];
-        var chosen = new List<int>();
-        for (int i = 0; i < Records.Length; i++)
-        {
-            cancellationToken.ThrowIfCancellationRequested();
-            if (Lineages[i] != LineageRef.False && AllHold(conditions, Records[i]))
-            {
-                chosen.Add(i);
-            }
-        }
-
-        return [.. chosen];
-    }
-
-    public void Encode(Encoder encoder, LambdaExpression field, int[]? chosen, bool dropNulls, int[] codes, CancellationToken cancellationToken) =>
-        encoder.Encode(Records, chosen, field, dropNulls, codes, cancellationToken);
+    public RecordFilter FilterOf(IReadOnlyList<LambdaExpression> conditions) => new RecordFilter<T>(Records, Lineages, conditions);
 
     public LineageRef LineageOf(int record) => Lineages[record];
 
-    private static bool AllHold(Lambda<T, bool>[] conditions, T record)
+    public void ReadChances(int[]? chosen, int start, Span<double> chances)
     {
-        foreach (Lambda<T, bool> condition in conditions)
+        VariableTable table = Worlds.Variables;
+        if (Kind == SourceKind.Certain)
         {
-            if (!condition.Invoke(record))
+            chances.Fill(1);
+        }
+        else if (chosen is null && Lineages.FirstSlot >= 0)
+        {
+            table.Chances(Lineages.FirstSlot + start, chances);
+        }
+        else
+        {
+            for (int i = 0; i < chances.Length; i++)
             {
-                return false;
+                LineageRef lineage = Lineages[chosen is null ? start + i : chosen[start + i]];
+                chances[i] = lineage == LineageRef.True ? 1 : table.Chance(lineage.Index);
             }
         }
-
-        return true;
     }
 }

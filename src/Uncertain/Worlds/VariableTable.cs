@@ -44,7 +44,7 @@ internal sealed class VariableTable
     public double Chance(int slot) => _chance[slot];
 
     /// <summary>The chances of consecutive slots.</summary>
-    public ReadOnlySpan<double> Chances(int firstSlot, int count) => _chance.AsSpan(firstSlot, count);
+    public void Chances(int firstSlot, Span<double> chances) => _chance.AsSpan(firstSlot, chances.Length).CopyTo(chances);
 
     public int VariableOf(int slot) => slot < _plain ? slot : _variableOfSlot[slot - _plain];
 

@@ -53,22 +53,19 @@ internal sealed class SafePlanEvaluator : IEvaluator
         long start = options.Clock.GetTimestamp();
         var control = new RunControl(options, cancellationToken);
         VariableTable table = query.Worlds.Variables;
-        var plain = new SafeRun<double>(
-            new ChanceReader<double>(table, TailConversions.FromChance, table.NoneChance), control);
-        List<CodeTable<double>> plainParts = RunParts(plan.Root, plain, options.Threads, cancellationToken);
-        long factors = plainParts.Max(part => part.Factors);
+        using var input = new RunInput(plan.Root, control);
+        List<CodeTable<double>> plain = RunParts<double>(plan.Root, input, table);
+        long factors = plain.Max(part => part.Factors);
         bool isZeroExact = factors * Math.Log(control.SmallestChance) > Math.Log(TailConversions.SafeRange);
         if (factors <= PlainFactorLimit
-            && plainParts.TrueForAll(part => Array.TrueForAll(part.Tails, tails => TailConversions.IsInRange(tails, isZeroExact))))
+            && plain.TrueForAll(part => Array.TrueForAll(part.Tails, tails => TailConversions.IsInRange(tails, isZeroExact))))
         {
-            return Answers(plain, plainParts, Probability.Exact);
+            return Answers(plain, Probability.Exact);
         }
 
-        var extended = new SafeRun<ExtendedDouble>(
-            new ChanceReader<ExtendedDouble>(table, TailConversions.FromChanceExtended, table.NoneChanceExtended), control);
         try
         {
-            return Answers(extended, RunParts(plan.Root, extended, options.Threads, cancellationToken), Probability.Exact);
+            return Answers(RunParts<ExtendedDouble>(plan.Root, input, table), Probability.Exact);
         }
         catch (OverflowException exception)
         {
@@ -79,46 +76,63 @@ internal sealed class SafePlanEvaluator : IEvaluator
         }
 
         IEnumerable<Answer<T>> Answers<TNumber>(
-            SafeRun<TNumber> run, List<CodeTable<TNumber>> parts, Func<Tails<TNumber>, string, Cost, Probability> exact)
-            where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            List<CodeTable<TNumber>> parts, Func<Tails<TNumber>, string, Cost, Probability> exact)
+            where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
                 IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
         {
             if (plan.IsComplement && parts is [{ Count: 0 } none])
             {
-                parts = [none with { Tails = [Tails<TNumber>.Never] }];
+                parts = [none with { Count = 1, Tails = [Tails<TNumber>.Never] }];
             }
 
             int count = Math.Max(1, parts.Sum(part => part.Count));
             var cost = new Cost(options.Clock.GetElapsedTime(start) / count, Math.Max(1, control.Rows / count), 0);
             var lineages = new LineageSource<T>(query);
             IReadOnlyList<Field> variables = plan.Root.Variables;
-            Func<int[], T> valueOf = plan.Value.Compile<T>(variables, run.EncoderOf);
+            Func<Encoder[], int[], T> valueOf = plan.Value.Compile<T>(variables);
+            Encoder[] encoders = input.EncodersOf(variables);
             var codes = new int[variables.Count];
             foreach (CodeTable<TNumber> part in parts)
             {
                 for (int row = 0; row < part.Count; row++)
                 {
-                    run.Tick(row);
+                    cancellationToken.ThrowIfCancellationRequested();
                     for (int column = 0; column < codes.Length; column++)
                     {
                         codes[column] = part.Columns[column][row];
                     }
 
                     yield return new Answer<T>(
-                        valueOf(codes), lineages, exact(part.Tails[row].NegateIf(plan.IsComplement), Name, cost));
+                        valueOf(encoders, codes), lineages, exact(part.Tails[row].NegateIf(plan.IsComplement), Name, cost));
                 }
             }
         }
     }
 
-    private static List<CodeTable<TNumber>> RunParts<TNumber>(
-        SafeStep root, SafeRun<TNumber> run, int threads, CancellationToken cancellationToken)
-        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
-            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber> =>
-        SplitRun<TNumber>.TryCreate(root, run) is { } split
-            ? [.. OrderedParallel.Select(
-                [.. Enumerable.Range(0, split.Parts)], threads, (part, _) => root.Run(run.Part(split, part)), cancellationToken)]
-            : [root.Run(run)];
+    private static List<CodeTable<TNumber>> RunParts<TNumber>(SafeStep root, RunInput input, VariableTable table)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        Workspace workspace = Workspace.Take(input.Control);
+        var run = new SafeRun<TNumber>(root, input, table, workspace);
+        if (input.Split is not { } split)
+        {
+            CodeTable<TNumber> result = root.Run(run).Copy();
+            workspace.Return();
+            return [result];
+        }
+
+        var parts = new CodeTable<TNumber>[split.Parts];
+        var workspaces = new Workspace?[input.Control.Threads];
+        Workers.Run(input.Control.Threads, split.Parts, (worker, part) =>
+        {
+            Workspace own = workspaces[worker] ??= Workspace.Take(input.Control);
+            parts[part] = root.Run(run.Part(part, own)).Copy();
+            own.TakeBackAll();
+        });
+        Array.ForEach(workspaces, own => own?.Return());
+        return [.. parts];
+    }
 
     private static string Indent(string text) => string.Join('\n', text.TrimEnd('\n').Split('\n').Select(line => $"  {line}"));
 }

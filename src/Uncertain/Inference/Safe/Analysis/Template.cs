@@ -10,15 +10,30 @@ internal sealed record Template(Expression Body, IReadOnlyList<(ParameterExpress
 {
     public IEnumerable<Field> Variables => Fields.Select(use => use.Field.Representative).Distinct();
 
-    /// <summary>A function of the codes of the given variables, in their order.</summary>
-    public Func<int[], TResult> Compile<TResult>(IReadOnlyList<Field> variables, Func<Field, Encoder> encoderOf)
+    /// <summary>A function of the encoders and codes of the given variables, each in their order.</summary>
+    public Func<Encoder[], int[], TResult> Compile<TResult>(IReadOnlyList<Field> variables)
     {
+        if (Fields is [var only] && Body == only.Parameter && Body.Type == typeof(TResult))
+        {
+            int index = IndexOf(variables, only.Field.Representative);
+            return (encoders, codes) => ((Encoder<TResult>)encoders[index]).ValueOf(codes[index]);
+        }
+
+        ParameterExpression encoders = Expression.Parameter(typeof(Encoder[]), "encoders");
         ParameterExpression codes = Expression.Parameter(typeof(int[]), "codes");
         var decoder = new Decoder(Fields.ToDictionary(
             field => field.Parameter,
-            field => encoderOf(field.Field.Representative).Decode(
-                Expression.ArrayIndex(codes, Expression.Constant(IndexOf(variables, field.Field.Representative))))));
-        return DelegateCache.Of(Expression.Lambda<Func<int[], TResult>>(decoder.Visit(Body), codes));
+            Expression (field) => ValueOf(encoders, codes, IndexOf(variables, field.Field.Representative), field.Parameter.Type)));
+        return DelegateCache.Of(Expression.Lambda<Func<Encoder[], int[], TResult>>(decoder.Visit(Body), encoders, codes));
+    }
+
+    private static MethodCallExpression ValueOf(Expression encoders, Expression codes, int index, Type type)
+    {
+        Type encoder = typeof(Encoder<>).MakeGenericType(type);
+        return Expression.Call(
+            Expression.Convert(Expression.ArrayIndex(encoders, Expression.Constant(index)), encoder),
+            encoder.GetMethod(nameof(Encoder<>.ValueOf))!,
+            Expression.ArrayIndex(codes, Expression.Constant(index)));
     }
 
     /// <summary>The expression for people, with the fields as they were written.</summary>

@@ -1,5 +1,5 @@
-using System.Runtime.CompilerServices;
 using System.Numerics;
+using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 
 namespace Uncertain.Inference.Safe.Codes;
@@ -18,21 +18,24 @@ internal sealed class JoinIndex
         _next = next;
     }
 
+    /// <summary>Whether no two rows have the same key.</summary>
+    public bool IsUnique => _next is null;
+
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    public static JoinIndex Of<TNumber>(CodeTable<TNumber> table, IReadOnlyList<Field> variables)
-        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+    public static JoinIndex Of<TNumber>(CodeTable<TNumber> table, IReadOnlyList<Field> variables, Workspace workspace)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
-        RowKeys keys = RowKeys.Of(table.ColumnsOf(variables), table.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(table.ColumnsOf(variables), table.Count, workspace, out int[] keyOf);
         if (keys.Count == table.Count)
         {
             // Keys are numbered in order of first appearance, so the key is the row.
             return new JoinIndex(keys, null, null);
         }
 
-        var first = new int[keys.Count];
-        var next = new int[table.Count];
-        Array.Fill(first, -1);
+        int[] first = workspace.Rent<int>(keys.Count);
+        int[] next = workspace.Rent<int>(table.Count);
+        Array.Fill(first, -1, 0, keys.Count);
         for (int row = table.Count - 1; row >= 0; row--)
         {
             // Walking backwards, each row comes before those of its key that follow it.
@@ -43,11 +46,17 @@ internal sealed class JoinIndex
         return new JoinIndex(keys, first, next);
     }
 
-    /// <summary>The first row with the codes that a row of other columns has, or -1.</summary>
-    public int First(int[][] columns, int row)
+    /// <summary>For each of some rows of other columns, the first row with the same codes, or -1.</summary>
+    public void FirstOf(int[][] columns, int start, Span<int> rows)
     {
-        int key = _keys.Find(columns, row);
-        return key < 0 || _first is null ? key : _first[key];
+        _keys.FindAll(columns, start, rows);
+        if (_first is not null)
+        {
+            foreach (ref int row in rows)
+            {
+                row = row < 0 ? -1 : _first[row];
+            }
+        }
     }
 
     /// <summary>The next row with the same codes, or -1.</summary>

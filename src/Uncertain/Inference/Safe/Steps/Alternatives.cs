@@ -11,7 +11,7 @@ namespace Uncertain.Inference.Safe.Steps;
 /// chance that is left for none of the rows.
 /// </summary>
 internal sealed class Alternatives<TNumber>
-    where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+    where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
     private readonly ScanStep _scan;
@@ -39,10 +39,9 @@ internal sealed class Alternatives<TNumber>
 
     public int[] GroupOfRow { get; }
 
-    public static Alternatives<TNumber> Of(ScanStep scan, SafeRun<TNumber> run)
+    public static Alternatives<TNumber> Of(ScanStep scan, ScanRows rows, SafeRun<TNumber> run)
     {
-        ScanRows rows = run.RowsOf(scan) ?? scan.Read(run);
-        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, out int[] keyOf);
+        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, run.Workspace, out int[] keyOf);
         int count = keys.Count;
         var chances = new TNumber[count];
         var variableOf = new int[count];
@@ -51,19 +50,19 @@ internal sealed class Alternatives<TNumber>
         for (int i = 0; i < rows.Count; i++)
         {
             run.Tick(i);
-            LineageRef lineage = scan.Part.Source.LineageOf(rows.Record(i));
+            LineageRef lineage = scan.Part.Source.LineageOf(rows.Records[i]);
             bool certain = lineage == LineageRef.True;
-            chances[keyOf[i]] += certain ? TNumber.MultiplicativeIdentity : run.Chances.OfSlot(lineage.Index);
-            variableOf[keyOf[i]] = certain ? -1 - keyOf[i] : run.Chances.Variables.VariableOf(lineage.Index);
+            chances[keyOf[i]] += certain ? TNumber.MultiplicativeIdentity : OfSlot(run.Table, lineage.Index);
+            variableOf[keyOf[i]] = certain ? -1 - keyOf[i] : run.Table.VariableOf(lineage.Index);
             if (!certain)
             {
-                double chance = run.Chances.Variables.Chance(lineage.Index);
+                double chance = run.Table.Chance(lineage.Index);
                 smallest = Math.Min(smallest, Math.Min(chance, 1 - chance));
                 chosen.Add(lineage.Index);
             }
         }
 
-        run.Observe([smallest]);
+        run.Control.Observe([smallest]);
         var groups = new Dictionary<int, int>();
         var rest = new List<TNumber>();
         var groupOfRow = new int[count];
@@ -76,7 +75,9 @@ internal sealed class Alternatives<TNumber>
             }
         }
 
-        return new Alternatives<TNumber>(scan, ScanStep.Compact(rows.Columns, keyOf, count), chances, groupOfRow, [.. rest]);
+        int[][] columns = Array.ConvertAll(
+            rows.Columns, column => Kernels.Gather<int>(column, keys.FirstRow.AsSpan(0, count), run.Workspace));
+        return new Alternatives<TNumber>(scan, columns, chances, groupOfRow, [.. rest]);
     }
 
     /// <summary>1 minus the chances of the marked rows of a group, added up from what is not marked.</summary>
@@ -118,8 +119,10 @@ internal sealed class Alternatives<TNumber>
             }
         }
 
-        return new CodeTable<TNumber>(_scan.Variables, Columns, tails, widest + 1);
+        return new CodeTable<TNumber>(_scan.Variables, tails.Length, Columns, tails, widest + 1);
     }
+
+    private static TNumber OfSlot(VariableTable table, int slot) => ChanceReader<TNumber>.OfChance(table.Chance(slot)).True;
 
     private static TNumber RestOf(int variable, HashSet<int> chosen, SafeRun<TNumber> run)
     {
@@ -128,15 +131,15 @@ internal sealed class Alternatives<TNumber>
             return TNumber.AdditiveIdentity;
         }
 
-        VariableTable table = run.Chances.Variables;
-        run.Observe([table.NoneChance(variable)]);
-        TNumber rest = run.Chances.OfNone(variable);
+        VariableTable table = run.Table;
+        run.Control.Observe([table.NoneChance(variable)]);
+        TNumber rest = ChanceReader<TNumber>.OfNone(table, variable);
         int first = table.FirstSlot(variable);
         for (int slot = first; slot < first + table.OutcomeCount(variable); slot++)
         {
             if (!chosen.Contains(slot))
             {
-                rest += run.Chances.OfSlot(slot);
+                rest += OfSlot(table, slot);
             }
         }
 

@@ -1,17 +1,23 @@
 using System.Numerics;
+using System.Runtime.CompilerServices;
 using Uncertain.Numerics;
 using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Steps;
 
-/// <summary>Reads chances from the variable table in one number type.</summary>
-/// <param name="Variables">The table.</param>
-/// <param name="OfChance">Both tails of a chance.</param>
-/// <param name="OfNone">The chance that a variable takes none of its outcomes with a slot.</param>
-internal sealed record ChanceReader<TNumber>(VariableTable Variables, Func<double, Tails<TNumber>> OfChance, Func<int, TNumber> OfNone)
-    where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+/// <summary>Chances in one of the two number types.</summary>
+internal static class ChanceReader<TNumber>
+    where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
-    /// <summary>The chance of a slot.</summary>
-    public TNumber OfSlot(int slot) => OfChance(Variables.Chance(slot)).True;
+    /// <summary>Both tails of a chance.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static Tails<TNumber> OfChance(double chance) => typeof(TNumber) == typeof(double)
+        ? Unsafe.BitCast<Tails<double>, Tails<TNumber>>(TailConversions.FromChance(chance))
+        : Unsafe.BitCast<Tails<ExtendedDouble>, Tails<TNumber>>(TailConversions.FromChanceExtended(chance));
+
+    /// <summary>The chance that a variable takes none of its outcomes with a slot.</summary>
+    public static TNumber OfNone(VariableTable table, int variable) => typeof(TNumber) == typeof(double)
+        ? Unsafe.BitCast<double, TNumber>(table.NoneChance(variable))
+        : Unsafe.BitCast<ExtendedDouble, TNumber>(table.NoneChanceExtended(variable));
 }

@@ -23,18 +23,18 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
 
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
-        Alternatives<TNumber> choices = Alternatives<TNumber>.Of(_alternatives, run);
+        Alternatives<TNumber> choices = Alternatives<TNumber>.Of(_alternatives, run.RowsOf(_alternatives), run);
         CodeTable<TNumber> beside = _beside.Run(run);
-        RowKeys choiceKeys = RowKeys.Of(choices.Columns, choices.Chances.Length, out int[] keyOfChoice);
+        RowKeys choiceKeys = RowKeys.Of(choices.Columns, choices.Chances.Length, run.Workspace, out int[] keyOfChoice);
         var choiceOfKey = new int[choiceKeys.Count];
-        for (int choice = 0; choice < keyOfChoice.Length; choice++)
+        for (int choice = 0; choice < choices.Chances.Length; choice++)
         {
             choiceOfKey[keyOfChoice[choice]] = choice;
         }
 
         int[][] choiceColumns = beside.ColumnsOf(_alternatives.Variables);
         int[][] kept = beside.ColumnsOf(Variables);
-        RowKeys outputs = RowKeys.Of(kept, beside.Count, out int[] outputOf);
+        RowKeys outputs = RowKeys.Of(kept, beside.Count, run.Workspace, out int[] outputOf);
         var tails = new Tails<TNumber>[outputs.Count];
         var marked = new List<HashSet<int>>();
         for (int output = 0; output < tails.Length; output++)
@@ -61,7 +61,8 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
             tails[output] = tails[output] with { False = tails[output].False + unused };
         }
 
-        return new CodeTable<TNumber>(
-            Variables, ScanStep.Compact(kept, outputOf, tails.Length), tails, beside.Factors + widest + 1);
+        int[][] columns = Array.ConvertAll(
+            kept, column => Kernels.Gather<int>(column, outputs.FirstRow.AsSpan(0, outputs.Count), run.Workspace));
+        return new CodeTable<TNumber>(Variables, tails.Length, columns, tails, beside.Factors + widest + 1);
     }
 }

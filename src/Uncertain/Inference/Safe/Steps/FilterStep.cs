@@ -1,5 +1,6 @@
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
+using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Steps;
 
@@ -13,9 +14,11 @@ internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> input = _input.Run(run);
-        Func<int[], bool> holds = condition.Compile<bool>(input.Variables, run.EncoderOf);
+        Func<Encoder[], int[], bool> holds = condition.Compile<bool>(input.Variables);
+        Encoder[] encoders = run.EncodersOf(input.Variables);
         var codes = new int[input.Variables.Count];
-        var rows = new List<int>();
+        int[] rows = run.Workspace.Rent<int>(input.Count);
+        int kept = 0;
         for (int row = 0; row < input.Count; row++)
         {
             run.Tick(row);
@@ -24,12 +27,12 @@ internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(
                 codes[column] = input.Columns[column][row];
             }
 
-            if (holds(codes))
+            if (holds(encoders, codes))
             {
-                rows.Add(row);
+                rows[kept++] = row;
             }
         }
 
-        return input.Rows(rows);
+        return input.Rows(rows.AsSpan(0, kept), run.Workspace);
     }
 }

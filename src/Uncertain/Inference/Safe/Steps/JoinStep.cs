@@ -1,3 +1,4 @@
+using System.Numerics;
 using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
@@ -11,53 +12,122 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
 {
     private readonly SafeStep _left = left;
     private readonly SafeStep _right = right;
+    private readonly Field[] _common = [.. left.Variables.Intersect(right.Variables)];
 
-    public override string Describe() => $"join on {Names(_left.Variables.Intersect(_right.Variables))}: independent, multiply";
+    public override string Describe() => $"join on {Names(_common)}: independent, multiply";
 
-    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         // What is the same for all parts of a split run is indexed once, and looked up from each part.
-        (SafeStep probing, SafeStep indexed) = run.IsShared(_left) && !run.IsShared(_right) ? (_right, _left) : (_left, _right);
-        CodeTable<TNumber> left = probing.Run(run);
-        CodeTable<TNumber> right = indexed.Run(run);
-        List<Field> common = [.. left.Variables.Intersect(right.Variables)];
-        JoinIndex index = run.IndexOf(indexed, right, common);
-        int[][] keys = left.ColumnsOf(common);
-        var leftRows = new List<int>(left.Count);
-        var rightRows = new List<int>(left.Count);
-        for (int row = 0; row < left.Count; row++)
+        CodeTable<TNumber> left = _left.Run(run);
+        CodeTable<TNumber> right = _right.Run(run);
+        (CodeTable<TNumber> probing, CodeTable<TNumber> indexed, SafeStep step) =
+            left.IsShared && !right.IsShared ? (right, left, _left) : (left, right, _right);
+        JoinIndex index = run.IndexOf(step, indexed, _common);
+        return index.IsUnique && !probing.IsShared && indexed.Variables.Count == _common.Length
+            ? Narrow(probing, indexed, index, run)
+            : Pair(probing, indexed, index, run);
+    }
+
+    // Each row finds at most one other, which adds no variable: rows are multiplied or left out where they are.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    private CodeTable<TNumber> Narrow<TNumber>(
+        CodeTable<TNumber> probing, CodeTable<TNumber> indexed, JoinIndex index, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        int[][] keys = probing.ColumnsOf(_common);
+        int[][] columns = probing.Columns;
+        Tails<TNumber>[] tails = probing.Tails;
+        Tails<TNumber>[] others = indexed.Tails;
+        int[] matches = run.Workspace.Rent<int>(Math.Min(probing.Count, Kernels.Slice));
+        int count = 0;
+        for (int start = 0; start < probing.Count; start += Kernels.Slice)
         {
-            run.Tick(row);
-            for (int match = index.First(keys, row); match >= 0; match = index.Next(match))
+            run.Control.Checkpoint();
+            int rows = Math.Min(Kernels.Slice, probing.Count - start);
+            index.FirstOf(keys, start, matches.AsSpan(0, rows));
+            int kept = 0;
+            for (int i = 0; i < rows; i++)
             {
-                run.Tick(leftRows.Count);
-                leftRows.Add(row);
-                rightRows.Add(match);
+                int match = matches[i];
+                if (match >= 0)
+                {
+                    tails[count + kept] = tails[start + i] & others[match];
+                    matches[kept++] = start + i;
+                }
+            }
+
+            if (count < start || kept < rows)
+            {
+                foreach (int[] column in columns)
+                {
+                    for (int i = 0; i < kept; i++)
+                    {
+                        column[count + i] = column[matches[i]];
+                    }
+                }
+            }
+
+            count += kept;
+        }
+
+        return new CodeTable<TNumber>(probing.Variables, count, columns, tails, probing.Factors + indexed.Factors).Keep(Variables);
+    }
+
+    private CodeTable<TNumber> Pair<TNumber>(
+        CodeTable<TNumber> probing, CodeTable<TNumber> indexed, JoinIndex index, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        int[][] keys = probing.ColumnsOf(_common);
+        var pairs = new RowPairs(run.Workspace, probing.Count);
+        int[] matches = run.Workspace.Rent<int>(Math.Min(probing.Count, Kernels.Slice));
+        for (int start = 0; start < probing.Count; start += Kernels.Slice)
+        {
+            run.Control.Checkpoint();
+            Span<int> found = matches.AsSpan(0, Math.Min(Kernels.Slice, probing.Count - start));
+            index.FirstOf(keys, start, found);
+            for (int i = 0; i < found.Length; i++)
+            {
+                for (int match = found[i]; match >= 0; match = index.Next(match))
+                {
+                    pairs.Add(start + i, match);
+                }
             }
         }
 
-        var tails = new Tails<TNumber>[leftRows.Count];
-        for (int i = 0; i < tails.Length; i++)
+        Tails<TNumber>[] tails = Multiply(probing.Tails, indexed.Tails, pairs, run);
+        var columns = new int[Variables.Count][];
+        for (int i = 0; i < columns.Length; i++)
         {
-            run.Tick(i);
-            tails[i] = left.Tails[leftRows[i]] & right.Tails[rightRows[i]];
+            columns[i] = probing.Variables.Contains(Variables[i])
+                ? Kernels.Gather<int>(probing.Column(Variables[i]), pairs.Left, run.Workspace)
+                : Kernels.Gather<int>(indexed.Column(Variables[i]), pairs.Right, run.Workspace);
         }
 
-        int[][] columns = [.. Variables.Select(variable => left.Variables.Contains(variable)
-            ? Gather(left.Column(variable), leftRows)
-            : Gather(right.Column(variable), rightRows))];
-        return new CodeTable<TNumber>(Variables, columns, tails, left.Factors + right.Factors);
+        return new CodeTable<TNumber>(Variables, pairs.Count, columns, tails, probing.Factors + indexed.Factors);
     }
 
-    private static int[] Gather(int[] column, List<int> rows)
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    private static Tails<TNumber>[] Multiply<TNumber>(
+        Tails<TNumber>[] left, Tails<TNumber>[] right, RowPairs pairs, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
-        var result = new int[rows.Count];
-        for (int i = 0; i < result.Length; i++)
+        Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(pairs.Count);
+        ReadOnlySpan<int> leftRows = pairs.Left;
+        ReadOnlySpan<int> rightRows = pairs.Right;
+        for (int start = 0; start < leftRows.Length; start += Kernels.Slice)
         {
-            result[i] = column[rows[i]];
+            run.Control.Checkpoint();
+            int end = Math.Min(leftRows.Length, start + Kernels.Slice);
+            for (int i = start; i < end; i++)
+            {
+                tails[i] = left[leftRows[i]] & right[rightRows[i]];
+            }
         }
 
-        return result;
+        return tails;
     }
 }

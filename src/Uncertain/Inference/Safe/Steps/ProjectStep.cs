@@ -1,4 +1,4 @@
-using System.Runtime.CompilerServices;
+using System.Numerics;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Numerics;
@@ -16,32 +16,22 @@ internal sealed class ProjectStep(SafeStep input, IEnumerable<Field> variables) 
     public override string Describe() =>
         $"project to {Names(Variables)}: independent over {Names(_input.Variables.Except(Variables))}, by disjunction";
 
-    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
-    {
-        CodeTable<TNumber> input = _input.Run(run);
-        return MergeRows(input, Variables, run);
-    }
+    protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run) => MergeRows(_input.Run(run), Variables, run);
 
     /// <summary>Merges independent rows that agree on the given variables.</summary>
-    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public static CodeTable<TNumber> MergeRows<TNumber>(CodeTable<TNumber> input, IReadOnlyList<Field> variables, SafeRun<TNumber> run)
-        where TNumber : struct, System.Numerics.IAdditionOperators<TNumber, TNumber, TNumber>,
-            System.Numerics.IMultiplyOperators<TNumber, TNumber, TNumber>, System.Numerics.IAdditiveIdentity<TNumber, TNumber>,
-            System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
         int[][] columns = input.ColumnsOf(variables);
-        RowKeys keys = RowKeys.Of(columns, input.Count, out int[] keyOf);
-        var tails = new Tails<TNumber>[keys.Count];
-        var members = new long[tails.Length];
-        Array.Fill(tails, Tails<TNumber>.Never);
-        for (int row = 0; row < input.Count; row++)
+        RowKeys keys = RowKeys.Of(columns, input.Count, run.Workspace, out int[] keyOf);
+        (Tails<TNumber>[] tails, int most) = Kernels.Merge<TNumber>(
+            input.Tails.AsSpan(0, input.Count), keyOf.AsSpan(0, input.Count), keys.Count, run.Workspace);
+        for (int i = 0; i < columns.Length; i++)
         {
-            run.Tick(row);
-            tails[keyOf[row]] |= input.Tails[row];
-            members[keyOf[row]]++;
+            columns[i] = Kernels.Gather<int>(columns[i], keys.FirstRow.AsSpan(0, keys.Count), run.Workspace);
         }
 
-        return new CodeTable<TNumber>(
-            variables, ScanStep.Compact(columns, keyOf, tails.Length), tails, input.Factors * members.DefaultIfEmpty(1).Max());
+        return new CodeTable<TNumber>(variables, keys.Count, columns, tails, input.Factors * Math.Max(1, most));
     }
 }

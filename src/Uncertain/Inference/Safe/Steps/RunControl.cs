@@ -1,29 +1,25 @@
 using System.Globalization;
+using System.Numerics;
 using Uncertain.Execution;
 
 namespace Uncertain.Inference.Safe.Steps;
 
-/// <summary>What all parts of a run share: the caller's token, the deadline, progress and the count of rows.</summary>
+/// <summary>What all parts of a run share: threads, the caller's token, the budgets, progress and the count of rows.</summary>
 internal sealed class RunControl(EvaluationOptions options, CancellationToken cancellationToken)
 {
     private readonly ProgressReporter _progress = new(options);
     private readonly long _start = options.Clock.GetTimestamp();
     private readonly Lock _lock = new();
     private long _rows;
+    private long _bytes;
+
+    public int Threads => options.Threads;
+
+    /// <summary>Rows that make a part of a run, or are worth a thread.</summary>
+    public int RowsInPart => options.RowsInPart;
 
     /// <summary>The smallest positive chance or complement of one that was read; products of it may leave the range of double.</summary>
-    public double SmallestChance
-    {
-        get
-        {
-            lock (_lock)
-            {
-                return field;
-            }
-        }
-
-        private set;
-    } = 1;
+    public double SmallestChance { get; private set; } = 1;
 
     /// <summary>Rows that steps have produced so far.</summary>
     public long Rows => Volatile.Read(ref _rows);
@@ -42,16 +38,28 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
         }
     }
 
+    /// <summary>To be called before memory for tables of rows is taken.</summary>
+    /// <exception cref="EvaluationRefusedException">The memory budget does not allow it.</exception>
+    public void Reserve(long bytes)
+    {
+        long all = Interlocked.Add(ref _bytes, bytes);
+        if (all > options.MemoryBudget)
+        {
+            throw new EvaluationRefusedException(string.Create(
+                CultureInfo.InvariantCulture,
+                $"The safe plan needs at least {all:N0} bytes for its tables of rows, more than the memory budget of "
+                + $"{options.MemoryBudget:N0}. Raise EvaluationOptions.MemoryBudget, or filter the sources first: every other exact "
+                + $"evaluator needs more."));
+        }
+    }
+
+    /// <summary>What was reserved is free again.</summary>
+    public void Release(long bytes) => Interlocked.Add(ref _bytes, -bytes);
+
     /// <summary>Takes note of chances that were read.</summary>
     public void Observe(ReadOnlySpan<double> chances)
     {
-        double smallest = 1;
-        foreach (double chance in chances)
-        {
-            smallest = chance > 0 ? Math.Min(smallest, chance) : smallest;
-            smallest = chance < 1 ? Math.Min(smallest, 1 - chance) : smallest;
-        }
-
+        double smallest = Smallest(chances);
         lock (_lock)
         {
             SmallestChance = Math.Min(SmallestChance, smallest);
@@ -62,5 +70,32 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
     {
         Checkpoint();
         _progress.Report(EvaluationStage.Evaluating, Interlocked.Add(ref _rows, rows), null);
+    }
+
+    private static double Smallest(ReadOnlySpan<double> chances)
+    {
+        var smallest = Vector<double>.One;
+        int i = 0;
+        for (; i <= chances.Length - Vector<double>.Count; i += Vector<double>.Count)
+        {
+            var chance = new Vector<double>(chances[i..]);
+            Vector<double> rest = Vector<double>.One - chance;
+            smallest = Vector.Min(smallest, Vector.ConditionalSelect(Vector.GreaterThan(chance, Vector<double>.Zero), chance, Vector<double>.One));
+            smallest = Vector.Min(smallest, Vector.ConditionalSelect(Vector.GreaterThan(rest, Vector<double>.Zero), rest, Vector<double>.One));
+        }
+
+        double result = 1;
+        for (int lane = 0; lane < Vector<double>.Count; lane++)
+        {
+            result = Math.Min(result, smallest[lane]);
+        }
+
+        for (; i < chances.Length; i++)
+        {
+            result = chances[i] > 0 ? Math.Min(result, chances[i]) : result;
+            result = chances[i] < 1 ? Math.Min(result, 1 - chances[i]) : result;
+        }
+
+        return result;
     }
 }

@@ -1,7 +1,6 @@
 using System.Numerics;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
-using Uncertain.Numerics;
 using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Steps;
@@ -10,64 +9,86 @@ namespace Uncertain.Inference.Safe.Steps;
 /// One run of a safe plan in one number type, or one part of it where the run is split by a variable of the answers.
 /// </summary>
 internal sealed class SafeRun<TNumber>
-    where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+    where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
     // A power of two: the clock is looked at every so many rows.
     private const int RowsBetweenChecks = 4096;
 
-    private readonly RunControl _control;
-    private readonly Dictionary<Field, Encoder> _encoders;
-    private readonly SplitRun<TNumber>? _split;
+    private readonly SafeRun<TNumber> _whole;
+    private readonly RunInput _input;
     private readonly int _part;
 
-    public SafeRun(ChanceReader<TNumber> chances, RunControl control)
+    // What is the same for all parts; null in a run that is not split.
+    private readonly Dictionary<SafeStep, CodeTable<TNumber>>? _shared;
+    private readonly Dictionary<SafeStep, JoinIndex>? _indexes;
+
+    /// <summary>A whole run. If it will be split, computes what all parts share.</summary>
+    public SafeRun(SafeStep root, RunInput input, VariableTable table, Workspace workspace)
     {
-        Chances = chances;
-        _control = control;
-        _encoders = [];
-    }
-
-    private SafeRun(SafeRun<TNumber> whole, SplitRun<TNumber> split, int part)
-    {
-        Chances = whole.Chances;
-        _control = whole._control;
-        _encoders = whole._encoders;
-        _split = split;
-        _part = part;
-    }
-
-    public ChanceReader<TNumber> Chances { get; }
-
-    public CancellationToken Cancellation => _control.Cancellation;
-
-    /// <summary>The run of one part of a split; what it encodes has been encoded before.</summary>
-    public SafeRun<TNumber> Part(SplitRun<TNumber> split, int part) => new(this, split, part);
-
-    public Encoder EncoderOf(Field variable)
-    {
-        if (!_encoders.TryGetValue(variable, out Encoder? encoder))
+        _whole = this;
+        _input = input;
+        Table = table;
+        Workspace = workspace;
+        if (input.Split is not null)
         {
-            _encoders.Add(variable, encoder = Encoder.For(variable.Expression.Type));
+            _shared = [];
+            _indexes = [];
+            ComputeShared(root);
         }
-
-        return encoder;
     }
+
+    private SafeRun(SafeRun<TNumber> whole, int part, Workspace workspace)
+    {
+        _whole = whole;
+        _input = whole._input;
+        _shared = whole._shared;
+        _indexes = whole._indexes;
+        _part = part;
+        Table = whole.Table;
+        Workspace = workspace;
+    }
+
+    /// <summary>The chances.</summary>
+    public VariableTable Table { get; }
+
+    /// <summary>Memory of the run or part.</summary>
+    public Workspace Workspace { get; }
+
+    public RunControl Control => _input.Control;
+
+    public CancellationToken Cancellation => Control.Cancellation;
+
+    /// <summary>One part of a split run.</summary>
+    public SafeRun<TNumber> Part(int part, Workspace workspace) => new(this, part, workspace);
+
+    public Encoder[] EncodersOf(IReadOnlyList<Field> variables) => _input.EncodersOf(variables);
 
     /// <summary>The result of a step that is the same for all parts, or null.</summary>
-    public CodeTable<TNumber>? Shared(SafeStep step) => _split?.TableOf(step);
+    public CodeTable<TNumber>? Shared(SafeStep step) => _shared?.GetValueOrDefault(step);
 
-    /// <summary>The rows of a scan that belong to this part, or null if the run is not split.</summary>
-    public ScanRows? RowsOf(ScanStep scan) => _split?.RowsOf(scan, _part);
+    /// <summary>The rows of a scan, or those of them that belong to this part.</summary>
+    public ScanRows RowsOf(ScanStep scan) => _input.Split is { } split && split.Splits(scan)
+        ? split.Rows(scan, _part, Workspace)
+        : _input.ReaderOf(scan).ReadAll(Workspace);
 
     /// <summary>An index of a step's result; made once for all parts where the result is.</summary>
-    public JoinIndex IndexOf(SafeStep step, CodeTable<TNumber> table, IReadOnlyList<Field> variables) =>
-        _split is not null && _split.TableOf(step) is not null
-            ? _split.IndexOf(step, variables, () => JoinIndex.Of(table, variables))
-            : JoinIndex.Of(table, variables);
+    /// <remarks>One step is joined by one other, on one set of variables.</remarks>
+    public JoinIndex IndexOf(SafeStep step, CodeTable<TNumber> table, IReadOnlyList<Field> variables)
+    {
+        if (!table.IsShared)
+        {
+            return JoinIndex.Of(table, variables, Workspace);
+        }
 
-    /// <summary>Whether a step's result is the same for all parts.</summary>
-    public bool IsShared(SafeStep step) => Shared(step) is not null;
+        lock (_indexes!)
+        {
+            // Not in the part's workspace, which the next part writes over.
+            return _indexes.TryGetValue(step, out JoinIndex? index)
+                ? index
+                : _indexes[step] = JoinIndex.Of(table, variables, _whole.Workspace);
+        }
+    }
 
     /// <summary>
     /// To be called for every row: looks at the token each time, since a caller's lambda may be slow, and at the deadline now and then.
@@ -77,19 +98,21 @@ internal sealed class SafeRun<TNumber>
         Cancellation.ThrowIfCancellationRequested();
         if ((row & (RowsBetweenChecks - 1)) == 0)
         {
-            Checkpoint();
+            Control.Checkpoint();
         }
     }
 
-    public void Checkpoint() => _control.Checkpoint();
-
-    /// <summary>Takes note of chances that were read, so that their products are known to stay in range or not.</summary>
-    public void Observe(ReadOnlySpan<double> chances) => _control.Observe(chances);
-
-    /// <summary>Counts a step's rows and reports progress.</summary>
-    public CodeTable<TNumber> Done(CodeTable<TNumber> table)
+    private void ComputeShared(SafeStep step)
     {
-        _control.Done(table.Count);
-        return table;
+        if (!_input.Split!.Splits(step))
+        {
+            _shared!.Add(step, step.Run(this) with { IsShared = true });
+            return;
+        }
+
+        foreach (SafeStep input in step.Inputs)
+        {
+            ComputeShared(input);
+        }
     }
 }

@@ -15,17 +15,38 @@ internal abstract class SafeStep(IEnumerable<Field> variables, params SafeStep[]
 
     public IReadOnlyList<SafeStep> Inputs { get; } = inputs;
 
+    /// <summary>This step and all below it.</summary>
+    public List<SafeStep> All()
+    {
+        List<SafeStep> steps = [this];
+        for (int i = 0; i < steps.Count; i++)
+        {
+            steps.AddRange(steps[i].Inputs);
+        }
+
+        return steps;
+    }
+
     /// <summary>The step in words, without its inputs: one line.</summary>
     public abstract string Describe();
 
     /// <summary>The result; of a step whose result is the same for all parts of a split run, the one computed for all.</summary>
     public CodeTable<TNumber> Run<TNumber>(SafeRun<TNumber> run)
-        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
-        => run.Shared(this) ?? run.Done(Compute(run));
+    {
+        if (run.Shared(this) is { } shared)
+        {
+            return shared;
+        }
+
+        CodeTable<TNumber> result = Compute(run);
+        run.Control.Done(result.Count);
+        return result;
+    }
 
     protected abstract CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
-        where TNumber : struct, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>;
 
     public override string ToString()

@@ -1,8 +1,8 @@
-using System.Runtime.CompilerServices;
 using System.Linq.Expressions;
+using System.Numerics;
+using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
-using Uncertain.Lineages;
 using Uncertain.Numerics;
 using Uncertain.Planning;
 using Uncertain.Worlds;
@@ -15,7 +15,21 @@ namespace Uncertain.Inference.Safe.Steps;
 /// </summary>
 internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : SafeStep(variables)
 {
+    private IReadOnlyList<ScanField>? _fields;
+    private RecordFilter? _filter;
+
     public SourcePart Part { get; } = part;
+
+    /// <summary>
+    /// The fields to read: one for each variable, then others that have to agree with it or must not be null. What does neither and is
+    /// no variable of the step is not read.
+    /// </summary>
+    public IReadOnlyList<ScanField> Fields => _fields ??= FieldsToRead();
+
+    public RecordFilter Filter => _filter ??= Part.Source.FilterOf([.. Part.Filters.Select(Lambda)]);
+
+    /// <summary>Whether rows are left out by comparing fields with each other or with null.</summary>
+    public bool ComparesFields => Fields.Count > Variables.Count || Fields.Any(read => read.DropsNulls);
 
     public override string Describe()
     {
@@ -30,116 +44,91 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         return $"read {Names(Variables)} of {Part.Source.Name}{filter}: {how}";
     }
 
-    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    /// <summary>The place of a variable among the step's.</summary>
+    public int ColumnOf(Field variable)
+    {
+        int column = 0;
+        while (Variables[column] != variable)
+        {
+            column++;
+        }
+
+        return column;
+    }
+
+    /// <summary>Memory for rows of the scan.</summary>
+    public ScanRows Room(int count, Workspace workspace)
+    {
+        var columns = new int[Variables.Count][];
+        for (int i = 0; i < columns.Length; i++)
+        {
+            columns[i] = workspace.Rent<int>(count);
+        }
+
+        return Part.IsExclusive
+            ? new ScanRows(count, columns, [], workspace.Rent<int>(count))
+            : new ScanRows(count, columns, workspace.Rent<double>(count), []);
+    }
+
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
+        ScanRows rows = run.RowsOf(this);
         if (Part.IsExclusive)
         {
-            return Alternatives<TNumber>.Of(this, run).ToTable();
+            return Alternatives<TNumber>.Of(this, rows, run).ToTable();
         }
 
-        ScanRows rows = run.RowsOf(this) ?? Read(run);
-        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, out int[] keyOf);
-        var tails = new Tails<TNumber>[keys.Count];
-        var members = new int[tails.Length];
-        Array.Fill(tails, Tails<TNumber>.Never);
-        ReadOnlySpan<double> chances = ChancesOf(rows, run);
-        run.Observe(chances);
-        for (int i = 0; i < rows.Count; i++)
+        Tails<TNumber>[] tails = TailsOf(rows, run);
+        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, run.Workspace, out int[] keyOf);
+        if (keys.Count == rows.Count)
         {
-            run.Tick(i);
-            tails[keyOf[i]] |= run.Chances.OfChance(chances[i]);
-            members[keyOf[i]]++;
+            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, tails, 1);
         }
 
-        return new CodeTable<TNumber>(
-            Variables, Compact(rows.Columns, keyOf, tails.Length), tails, Part.IsChancy ? members.DefaultIfEmpty().Max() : 1);
+        (tails, int most) = Kernels.Merge<TNumber>(tails.AsSpan(0, rows.Count), keyOf.AsSpan(0, rows.Count), keys.Count, run.Workspace);
+        int[][] columns = Array.ConvertAll(
+            rows.Columns, column => Kernels.Gather<int>(column, keys.FirstRow.AsSpan(0, keys.Count), run.Workspace));
+        return new CodeTable<TNumber>(Variables, keys.Count, columns, tails, Part.IsChancy ? most : 1);
     }
 
-    /// <summary>The chances of rows of a source that is not exclusive; null for one that is.</summary>
-    public double[]? ChancesOf<TNumber>(ScanRows rows, SafeRun<TNumber> run)
-        where TNumber : struct, System.Numerics.IAdditionOperators<TNumber, TNumber, TNumber>,
-            System.Numerics.IMultiplyOperators<TNumber, TNumber, TNumber>, System.Numerics.IAdditiveIdentity<TNumber, TNumber>,
-            System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
-    {
-        if (Part.IsExclusive || rows.Chances is not null)
-        {
-            return rows.Chances;
-        }
-
-        var chances = new double[rows.Count];
-        if (!Part.IsChancy)
-        {
-            Array.Fill(chances, 1);
-        }
-        else if (rows.Records is null && Part.Source.FirstSlot >= 0)
-        {
-            run.Chances.Variables.Chances(Part.Source.FirstSlot, rows.Count).CopyTo(chances);
-        }
-        else
-        {
-            for (int i = 0; i < chances.Length; i++)
-            {
-                LineageRef lineage = Part.Source.LineageOf(rows.Record(i));
-                chances[i] = lineage == LineageRef.True ? 1 : run.Chances.Variables.Chance(lineage.Index);
-            }
-        }
-
-        return chances;
-    }
-
-    /// <summary>The rows that pass the filters, with the codes of the variables.</summary>
-    public ScanRows Read<TNumber>(SafeRun<TNumber> run)
-        where TNumber : struct, System.Numerics.IAdditionOperators<TNumber, TNumber, TNumber>,
-            System.Numerics.IMultiplyOperators<TNumber, TNumber, TNumber>, System.Numerics.IAdditiveIdentity<TNumber, TNumber>,
-            System.Numerics.IMultiplicativeIdentity<TNumber, TNumber>
-    {
-        ISource source = Part.Source;
-        int[]? records = source.Choose([.. Part.Filters.Select(filter => Expression.Lambda(filter, Part.Atom.Row))], run.Cancellation);
-        int count = records?.Length ?? source.RecordCount;
-        var codes = new List<(Field Variable, int[] Codes)>();
-        foreach (Field field in Part.Fields)
-        {
-            // Fields that only repeat an unused variable need not be read; equal or null-dropping ones do.
-            Field variable = field.Representative;
-            bool filters = field.DropsNulls || Part.Fields.Any(other => other != field && other.Representative == variable);
-            if (!filters && !Variables.Contains(variable))
-            {
-                continue;
-            }
-
-            var column = new int[count];
-            source.Encode(
-                run.EncoderOf(variable), Expression.Lambda(field.Expression, Part.Atom.Row), records, field.DropsNulls, column,
-                run.Cancellation);
-            codes.Add((variable, column));
-        }
-
-        var rows = new ScanRows(
-            count, records, null, [.. Variables.Select(variable => codes.Find(column => column.Variable == variable).Codes)]);
-        bool allKept = codes.Count == codes.Select(column => column.Variable).Distinct().Count()
-            && !Part.Fields.Any(field => field.DropsNulls && CanBeNull(field.Expression.Type));
-        return allKept ? rows : rows.Keep(row =>
-            codes.TrueForAll(column => column.Codes[row] != Encoder.Dropped
-                && column.Codes[row] == codes.Find(first => first.Variable == column.Variable).Codes[row]));
-    }
-
-    private static bool CanBeNull(Type type) => !type.IsValueType || Nullable.GetUnderlyingType(type) is not null;
-
-    /// <summary>One row for each key.</summary>
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    public static int[][] Compact(int[][] columns, int[] keyOf, int keys)
+    private static Tails<TNumber>[] TailsOf<TNumber>(ScanRows rows, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
-        var result = new int[columns.Length][];
-        for (int column = 0; column < columns.Length; column++)
+        double[] chances = rows.Chances;
+        Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(rows.Count);
+        for (int start = 0; start < rows.Count; start += Kernels.Slice)
         {
-            result[column] = new int[keys];
-            for (int row = 0; row < keyOf.Length; row++)
+            run.Control.Checkpoint();
+            int end = Math.Min(rows.Count, start + Kernels.Slice);
+            for (int row = start; row < end; row++)
             {
-                result[column][keyOf[row]] = columns[column][row];
+                tails[row] = ChanceReader<TNumber>.OfChance(chances[row]);
+            }
+        }
+
+        return tails;
+    }
+
+    private List<ScanField> FieldsToRead()
+    {
+        IReadOnlyList<Field> all = Part.Fields;
+        var result = new List<ScanField>();
+        foreach (Field field in all)
+        {
+            Field variable = field.Representative;
+            bool dropsNulls = field.DropsNulls && CanBeNull(field.Expression.Type);
+            if (dropsNulls || Variables.Contains(variable) || all.Any(other => other != field && other.Representative == variable))
+            {
+                result.Add(new ScanField(variable, Part.Source.ReaderOf(Lambda(field.Expression)), dropsNulls));
             }
         }
 
         return result;
     }
+
+    private LambdaExpression Lambda(Expression body) => Expression.Lambda(body, Part.Atom.Row);
+
+    private static bool CanBeNull(Type type) => !type.IsValueType || Nullable.GetUnderlyingType(type) is not null;
 }

@@ -1,5 +1,6 @@
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
+using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Safe.Steps;
 
@@ -15,9 +16,21 @@ internal sealed class UnionStep(SafeStep left, SafeStep right, IEnumerable<Field
     {
         CodeTable<TNumber> left = _left.Run(run);
         CodeTable<TNumber> right = _right.Run(run);
-        int[][] columns = [.. left.ColumnsOf(Variables).Zip(right.ColumnsOf(Variables), (l, r) => (int[])[.. l, .. r])];
-        var both = new CodeTable<TNumber>(
-            Variables, columns, [.. left.Tails, .. right.Tails], Math.Max(left.Factors, right.Factors));
+        int count = checked(left.Count + right.Count);
+        int[][] columns = [.. left.ColumnsOf(Variables).Zip(
+            right.ColumnsOf(Variables), (l, r) => Concatenate<int>(l.AsSpan(0, left.Count), r.AsSpan(0, right.Count), run.Workspace))];
+        Tails<TNumber>[] tails = Concatenate<Tails<TNumber>>(
+            left.Tails.AsSpan(0, left.Count), right.Tails.AsSpan(0, right.Count), run.Workspace);
+        var both = new CodeTable<TNumber>(Variables, count, columns, tails, Math.Max(left.Factors, right.Factors));
         return ProjectStep.MergeRows(both, Variables, run);
+    }
+
+    private static T[] Concatenate<T>(ReadOnlySpan<T> left, ReadOnlySpan<T> right, Workspace workspace)
+        where T : unmanaged
+    {
+        T[] result = workspace.Rent<T>(left.Length + right.Length);
+        left.CopyTo(result);
+        right.CopyTo(result.AsSpan(left.Length));
+        return result;
     }
 }

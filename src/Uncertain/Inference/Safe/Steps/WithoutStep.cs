@@ -23,17 +23,22 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
         CodeTable<TNumber> absent = _absent.Run(run);
         JoinIndex index = run.IndexOf(_absent, absent, absent.Variables);
         int[][] columns = input.ColumnsOf(absent.Variables);
-        var tails = (Tails<TNumber>[])input.Tails.Clone();
-        for (int row = 0; row < tails.Length; row++)
+        Tails<TNumber>[] tails = input.IsShared ? input.Tails[..input.Count] : input.Tails;
+        int[] matches = run.Workspace.Rent<int>(Math.Min(input.Count, Kernels.Slice));
+        for (int start = 0; start < input.Count; start += Kernels.Slice)
         {
-            run.Tick(row);
-            int match = index.First(columns, row);
-            if (match >= 0)
+            run.Control.Checkpoint();
+            Span<int> found = matches.AsSpan(0, Math.Min(Kernels.Slice, input.Count - start));
+            index.FirstOf(columns, start, found);
+            for (int i = 0; i < found.Length; i++)
             {
-                tails[row] &= !absent.Tails[match];
+                if (found[i] >= 0)
+                {
+                    tails[start + i] &= !absent.Tails[found[i]];
+                }
             }
         }
 
-        return input with { Tails = tails, Factors = input.Factors + absent.Factors };
+        return input with { Tails = tails, Factors = input.Factors + absent.Factors, IsShared = false };
     }
 }
