@@ -16,6 +16,9 @@ namespace Uncertain;
 /// from world to world.</para>
 /// <para>The meaning is that of possible worlds: in each world the query is an ordinary one over the records that are there;
 /// an answer's lineage says in which worlds it comes out, its probability is their total chance.</para>
+/// <para>Variables that a lambda captures are read when the query is evaluated, at every record, not when it is written: an evaluation
+/// after a change sees the new value. A set that is evaluated again is planned once; lambdas are compiled once for each text in the
+/// process, so that building a small query anew each time costs little.</para>
 /// <para>Thread safety: sets may be used from any thread.</para>
 /// </remarks>
 /// <typeparam name="T">Type of the values: class, struct, record, tuple or anonymous type. Equal values are one element.</typeparam>
@@ -49,7 +52,10 @@ public sealed partial class UncertainSet<T> : IPlanned
     public IReadOnlyList<Answer<T>> Evaluate(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
     {
         options ??= EvaluationOptions.Default;
-        return [.. Answers(options, cancellationToken)];
+        IEnumerable<Answer<T>> answers = options.Evaluator.Evaluate(this, options, cancellationToken);
+
+        // An array without anything to leave out is handed on as it is.
+        return answers is Answer<T>[] all && Array.TrueForAll(all, IsPossible) ? all : [.. answers.Where(IsPossible)];
     }
 
     /// <summary>All answers by a given evaluator; short for options that name it.</summary>
@@ -65,7 +71,13 @@ public sealed partial class UncertainSet<T> : IPlanned
     /// <exception cref="EvaluationRefusedException">The chosen evaluator cannot take the query, or a budget ran out.</exception>
     public IAsyncEnumerable<Answer<T>> EvaluateAsync(
         EvaluationOptions? options = null, CancellationToken cancellationToken = default) =>
-        Background.Stream(token => Answers(options ?? EvaluationOptions.Default, token), cancellationToken);
+        Background.Stream(
+            token =>
+            {
+                EvaluationOptions asked = options ?? EvaluationOptions.Default;
+                return asked.Evaluator.Evaluate(this, asked, token).Where(IsPossible);
+            },
+            cancellationToken);
 
     /// <summary>
     /// Runs the query and gives each distinct value once with its lineage, in order of first appearance, without probabilities.
@@ -86,9 +98,8 @@ public sealed partial class UncertainSet<T> : IPlanned
     }
 
     // What is in no world is not an answer; that a lineage holds in none may show only when it is evaluated.
-    private IEnumerable<Answer<T>> Answers(EvaluationOptions options, CancellationToken cancellationToken) =>
-        options.Evaluator.Evaluate(this, options, cancellationToken).Where(answer =>
-            answer.Probability.Guarantee.Kind != GuaranteeKind.Exact || answer.Probability.LogValue > double.NegativeInfinity);
+    private static bool IsPossible(Answer<T> answer) =>
+        answer.Probability.Guarantee.Kind != GuaranteeKind.Exact || answer.Probability.LogValue > double.NegativeInfinity;
 
     /// <summary>One line; runs nothing.</summary>
     public override string ToString() => $"uncertain set of {typeof(T).Name}: {Node.Describe()}";

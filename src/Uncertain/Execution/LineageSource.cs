@@ -5,12 +5,28 @@ namespace Uncertain.Execution;
 /// <summary>The lineages of a query's answers, derived for all of them when the first one is asked for.</summary>
 internal sealed class LineageSource<T>(UncertainSet<T> query)
 {
-    private readonly Lazy<(LineageArena Arena, Dictionary<ValueTuple<T>, LineageRef> ByValue)> _derived = new(() =>
-    {
-        var run = new QueryRun(query.Worlds, EvaluationOptions.Default, CancellationToken.None);
-        return (run.Arena, Merge<T>.All(query.Node, run).ByValue(run));
-    });
+    // Every small query makes one of these and few are asked: no lock of its own, no delegate.
+    private Derived? _derived;
 
-    public Lineage Of(T value) =>
-        new(_derived.Value.Arena, _derived.Value.ByValue.GetValueOrDefault(new(value), LineageRef.False));
+    public Lineage Of(T value)
+    {
+        Derived derived = _derived ?? Derive();
+        return new Lineage(derived.Arena, derived.ByValue.GetValueOrDefault(new(value), LineageRef.False));
+    }
+
+    private Derived Derive()
+    {
+        lock (this)
+        {
+            if (_derived is null)
+            {
+                var run = new QueryRun(query.Worlds, EvaluationOptions.Default, CancellationToken.None);
+                _derived = new Derived(run.Arena, Merge<T>.All(query.Node, run).ByValue(run));
+            }
+
+            return _derived;
+        }
+    }
+
+    private sealed record Derived(LineageArena Arena, Dictionary<ValueTuple<T>, LineageRef> ByValue);
 }

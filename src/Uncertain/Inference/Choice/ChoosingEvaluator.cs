@@ -47,12 +47,13 @@ internal sealed class ChoosingEvaluator : IEvaluator
 
     // A safe plan may apply a condition to rows that the query as written joins away before. If the caller's lambda cannot take such
     // a row, the query as written decides.
-    private static List<Answer<T>>? SafeAnswers<T>(
+    private static Answer<T>[]? SafeAnswers<T>(
         UncertainSet<T> query, EvaluationOptions options, CancellationToken cancellationToken)
     {
         try
         {
-            return [.. Evaluators.SafePlan.Evaluate(query, options, cancellationToken)];
+            IEnumerable<Answer<T>> answers = Evaluators.SafePlan.Evaluate(query, options, cancellationToken);
+            return answers as Answer<T>[] ?? [.. answers];
         }
         catch (InvalidInputException)
         {
