@@ -1,6 +1,7 @@
 using System.Diagnostics;
 using Uncertain.Execution;
 using Uncertain.Inference;
+using Uncertain.Inference.Posteriors;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 
@@ -84,7 +85,9 @@ public sealed partial class UncertainSet<T> : IPlanned
 
     // What is in no world is not an answer; that a lineage holds in none may show only when it is evaluated.
     private IEnumerable<Answer<T>> Answers(EvaluationOptions options, CancellationToken cancellationToken) =>
-        options.Evaluator.Evaluate(this, options, cancellationToken).Where(answer =>
+        (options.Given is null || options.Evaluator is IEvidenceEvaluator
+            ? options.Evaluator.Evaluate(this, options, cancellationToken)
+            : ConditionalEvaluation.Evaluate(this, options, cancellationToken)).Where(answer =>
             answer.Probability.Guarantee.Kind != GuaranteeKind.Exact || answer.Probability.LogValue > double.NegativeInfinity);
 
     /// <summary>One line; runs nothing.</summary>

@@ -33,10 +33,15 @@ public sealed class CaseChecker
     }
 
     /// <summary>Compares the answers of an evaluator in both tails; null if they are right.</summary>
-    public string? CheckEvaluator(Expectation expected, IBuiltQuery built, IEvaluator evaluator)
+    public string? CheckEvaluator(Expectation expected, IBuiltQuery built, IEvaluator evaluator) =>
+        CheckEvaluator(expected, built, new EvaluationOptions { Evaluator = evaluator });
+
+    /// <summary>The same with other options, which ask for exact figures.</summary>
+    public string? CheckEvaluator(Expectation expected, IBuiltQuery built, EvaluationOptions options)
     {
+        IEvaluator evaluator = options.Evaluator;
         var missing = expected.Answers.ToDictionary(pair => pair.Key, pair => pair.Value);
-        foreach ((object answer, Probability probability, Lineage lineage) in built.Evaluate(new EvaluationOptions { Evaluator = evaluator }))
+        foreach ((object answer, Probability probability, Lineage lineage) in built.Evaluate(options))
         {
             Answers++;
             Presence presence = PresenceOf(expected, answer);

@@ -1,5 +1,6 @@
 using System.Numerics;
 using Uncertain.Execution;
+using Uncertain.Inference.Posteriors;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Inference.Safe.Steps;
@@ -14,7 +15,7 @@ namespace Uncertain.Inference.Safe;
 /// also by declared keys, certain sets and exclusive alternatives where the theory allows it, and for unions and differences of such
 /// parts over different sources. Refuses the rest and names the reason.
 /// </summary>
-internal sealed class SafePlanEvaluator : IEvaluator
+internal sealed class SafePlanEvaluator : IEvidenceEvaluator
 {
     // Up to so many factors in one probability, doubles keep 1e-12; beyond, the plan is run again in extended numbers.
     private const int PlainFactorLimit = 2048;
@@ -63,7 +64,7 @@ internal sealed class SafePlanEvaluator : IEvaluator
     {
         long start = options.Clock.GetTimestamp();
         var control = new RunControl(options, cancellationToken);
-        VariableTable table = query.Worlds.Variables;
+        VariableTable table = SafeEvidence.Chances(query.Node, options, cancellationToken);
         var plain = new SafeRun<double>(
             new ChanceReader<double>(table, TailConversions.FromChance, table.NoneChance), control);
         List<CodeTable<double>> plainParts = RunParts(plan.Root, plain, options.Threads, cancellationToken);
