@@ -22,6 +22,12 @@ public sealed record EvaluationOptions
         init => field = value ?? throw new ArgumentNullException(nameof(value));
     } = Accuracy.Exact;
 
+    /// <summary>
+    /// What has been found out: each probability is then that of the worlds in which the evidence holds, given that it does.
+    /// Null (default) for nothing. From <see cref="WorldSpace.Given"/>.
+    /// </summary>
+    public Evidence? Given { get; init; }
+
     /// <summary>Time that the evaluation may take in all, from the call on; null (default) for no limit. Positive.</summary>
     public TimeSpan? Deadline
     {

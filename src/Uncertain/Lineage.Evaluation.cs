@@ -1,4 +1,5 @@
 using Uncertain.Inference;
+using Uncertain.Inference.Posteriors;
 
 namespace Uncertain;
 
@@ -13,7 +14,9 @@ public readonly partial struct Lineage
     {
         options ??= EvaluationOptions.Default;
         _ = Arena; // default(Lineage) is refused here, whatever the evaluator.
-        return options.Evaluator.Evaluate(this, options, cancellationToken);
+        return options.Given is null
+            ? options.Evaluator.Evaluate(this, options, cancellationToken)
+            : ConditionalEvaluation.Evaluate(this, options, cancellationToken);
     }
 
     /// <summary>The probability by a given evaluator; short for options that name it.</summary>

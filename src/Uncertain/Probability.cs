@@ -1,4 +1,5 @@
 using System.Globalization;
+using System.Runtime.CompilerServices;
 using Uncertain.Numerics;
 
 namespace Uncertain;
@@ -14,9 +15,12 @@ namespace Uncertain;
 /// </remarks>
 public sealed class Probability : IFormattable
 {
+    // Only where a tail is too close to the end of double's range, or beyond it.
+    private readonly StrongBox<Tails<ExtendedDouble>>? _tails;
+
     private Probability(
         double value, double complement, double logValue, double logComplement, double lower, double upper, Guarantee guarantee,
-        string evaluator, ulong? seed, Cost cost, string? shortfall)
+        string evaluator, ulong? seed, Cost cost, string? shortfall, StrongBox<Tails<ExtendedDouble>>? tails = null)
     {
         Value = value;
         Complement = complement;
@@ -29,6 +33,7 @@ public sealed class Probability : IFormattable
         Seed = seed;
         Cost = cost;
         Shortfall = shortfall;
+        _tails = tails;
     }
 
     /// <summary>The probability in [0, 1]; the estimate where it is not exact.</summary>
@@ -65,6 +70,9 @@ public sealed class Probability : IFormattable
     /// In which way the figure is less than what was asked, and why; null where it delivers all that was asked.
     /// </summary>
     public string? Shortfall { get; }
+
+    /// <summary>Both tails with the range of extended numbers, for further computation.</summary>
+    internal Tails<ExtendedDouble> Tails => _tails?.Value ?? new Tails<double>(Value, Complement).Widen();
 
     /// <summary>An exact figure from its two tails.</summary>
     /// <param name="value">P in [0, 1].</param>
@@ -119,7 +127,7 @@ public sealed class Probability : IFormattable
     {
         ArgumentException.ThrowIfNullOrEmpty(shortfall);
         return new Probability(
-            Value, Complement, LogValue, LogComplement, Lower, Upper, Guarantee, Evaluator, Seed, Cost, shortfall);
+            Value, Complement, LogValue, LogComplement, Lower, Upper, Guarantee, Evaluator, Seed, Cost, shortfall, _tails);
     }
 
     /// <summary>For example <c>0.8731 (exact)</c> or <c>0.87 [0.86, 0.88] (99 % confidence)</c>; invariant culture.</summary>
@@ -163,9 +171,10 @@ public sealed class Probability : IFormattable
         // Close to 1 the other tail carries more of the logarithm's digits.
         double logValue = complement < 1e-3 ? LogOf(value, complement) : tails.True.Log();
         double logComplement = value < 1e-3 ? LogOf(complement, value) : tails.False.Log();
+        bool isInRange = TailConversions.IsInRange(new Tails<double>(value, complement), isZeroExact: false);
         return new Probability(
             value, complement, Math.Min(0, logValue), Math.Min(0, logComplement), value, value, Guarantee.Exact, evaluator, null,
-            cost, null);
+            cost, null, isInRange ? null : new StrongBox<Tails<ExtendedDouble>>(tails));
     }
 
     /// <summary>An estimate of which an evaluator knows the logarithms too, below the range of double.</summary>

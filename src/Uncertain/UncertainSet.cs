@@ -1,6 +1,7 @@
 using System.Diagnostics;
 using Uncertain.Execution;
 using Uncertain.Inference;
+using Uncertain.Inference.Posteriors;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 
@@ -52,7 +53,7 @@ public sealed partial class UncertainSet<T> : IPlanned
     public IReadOnlyList<Answer<T>> Evaluate(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
     {
         options ??= EvaluationOptions.Default;
-        IEnumerable<Answer<T>> answers = options.Evaluator.Evaluate(this, options, cancellationToken);
+        IEnumerable<Answer<T>> answers = AnswersOf(options, cancellationToken);
 
         // An array without anything to leave out is handed on as it is.
         return answers is Answer<T>[] all && Array.TrueForAll(all, IsPossible) ? all : [.. answers.Where(IsPossible)];
@@ -71,13 +72,7 @@ public sealed partial class UncertainSet<T> : IPlanned
     /// <exception cref="EvaluationRefusedException">The chosen evaluator cannot take the query, or a budget ran out.</exception>
     public IAsyncEnumerable<Answer<T>> EvaluateAsync(
         EvaluationOptions? options = null, CancellationToken cancellationToken = default) =>
-        Background.Stream(
-            token =>
-            {
-                EvaluationOptions asked = options ?? EvaluationOptions.Default;
-                return asked.Evaluator.Evaluate(this, asked, token).Where(IsPossible);
-            },
-            cancellationToken);
+        Background.Stream(token => AnswersOf(options ?? EvaluationOptions.Default, token).Where(IsPossible), cancellationToken);
 
     /// <summary>
     /// Runs the query and gives each distinct value once with its lineage, in order of first appearance, without probabilities.
@@ -100,6 +95,12 @@ public sealed partial class UncertainSet<T> : IPlanned
     // What is in no world is not an answer; that a lineage holds in none may show only when it is evaluated.
     private static bool IsPossible(Answer<T> answer) =>
         answer.Probability.Guarantee.Kind != GuaranteeKind.Exact || answer.Probability.LogValue > double.NegativeInfinity;
+
+    // An evaluator that knows nothing of evidence is asked about lineages that the evidence is worked into.
+    private IEnumerable<Answer<T>> AnswersOf(EvaluationOptions options, CancellationToken cancellationToken) =>
+        options.Given is null || options.Evaluator is IEvidenceEvaluator
+            ? options.Evaluator.Evaluate(this, options, cancellationToken)
+            : ConditionalEvaluation.Evaluate(this, options, cancellationToken);
 
     /// <summary>One line; runs nothing.</summary>
     public override string ToString() => $"uncertain set of {typeof(T).Name}: {Node.Describe()}";

@@ -31,6 +31,14 @@ public sealed partial class WorldSpace
         Names = new SlotNames();
     }
 
+    /// <summary>The same variables with other chances, for one evaluation; nothing is added to it.</summary>
+    internal WorldSpace(VariableTable variables, SlotNames names)
+    {
+        Variables = variables;
+        Arena = new LineageArena(this);
+        Names = names;
+    }
+
     /// <summary>Number of chance variables so far.</summary>
     public int VariableCount => Variables.VariableCount;
 

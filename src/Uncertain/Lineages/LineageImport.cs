@@ -1,7 +1,10 @@
 namespace Uncertain.Lineages;
 
 /// <summary>Copies formulas from one arena to another and remembers what it has copied; needs no recursion.</summary>
-internal sealed class LineageImport(LineageArena from, LineageArena to)
+/// <param name="from">The arena of the formulas.</param>
+/// <param name="to">The arena of the copies; it may be the same one.</param>
+/// <param name="known">What is put in place of the literals of some slots; null for nothing.</param>
+internal sealed class LineageImport(LineageArena from, LineageArena to, IReadOnlyDictionary<int, LineageRef>? known = null)
 {
     private readonly Dictionary<int, LineageRef> _copied = [];
     private readonly Stack<int> _pending = new();
@@ -10,7 +13,7 @@ internal sealed class LineageImport(LineageArena from, LineageArena to)
     {
         if (!formula.IsNode)
         {
-            return formula;
+            return Literal(formula);
         }
 
         _pending.Push(formula.Index);
@@ -51,9 +54,14 @@ internal sealed class LineageImport(LineageArena from, LineageArena to)
         for (int i = 0; i < operands.Length; i++)
         {
             LineageRef operand = operands[i];
-            copies[i] = operand.IsNode ? _copied[operand.Index].NegateIf(operand.IsNegated) : operand;
+            copies[i] = operand.IsNode ? _copied[operand.Index].NegateIf(operand.IsNegated) : Literal(operand);
         }
 
         return to.And(copies);
     }
+
+    private LineageRef Literal(LineageRef formula) =>
+        known is not null && formula.IsLiteral && known.TryGetValue(formula.Index, out LineageRef value)
+            ? value.NegateIf(formula.IsNegated)
+            : formula;
 }

@@ -73,6 +73,16 @@ internal readonly struct ExtendedDouble :
         return Normalize(high, low, checked(left._exponent + right._exponent));
     }
 
+    /// <summary>The quotient; the divisor is not 0.</summary>
+    public static ExtendedDouble operator /(ExtendedDouble left, ExtendedDouble right)
+    {
+        double quotient = left._high / right._high;
+        double product = quotient * right._high;
+        double rest = (left._high - product) - Math.FusedMultiplyAdd(quotient, right._high, -product)
+            + left._low - (quotient * right._low);
+        return Normalize(quotient, rest / right._high, checked(left._exponent - right._exponent));
+    }
+
     public static ExtendedDouble operator +(ExtendedDouble left, ExtendedDouble right)
     {
         if (right._high == 0)

@@ -18,6 +18,9 @@ internal interface ISource
 
     int RecordCount { get; }
 
+    /// <summary>The slot of record 0, where record i has slot FirstSlot + i; else -1.</summary>
+    int FirstSlot { get; }
+
     /// <summary>A reader for a field, to be held as long as the plan that uses it.</summary>
     FieldReader ReaderOf(LambdaExpression field);
 
@@ -28,8 +31,9 @@ internal interface ISource
     LineageRef LineageOf(int record);
 
     /// <summary>Chances of records of a source that is certain or independent.</summary>
+    /// <param name="table">The chances: the world space's own, or what evidence makes of them.</param>
     /// <param name="chosen">The record of each row; null where row i is record i.</param>
     /// <param name="start">The first row.</param>
     /// <param name="chances">Takes the chances; its length says how many rows.</param>
-    void ReadChances(int[]? chosen, int start, Span<double> chances);
+    void ReadChances(VariableTable table, int[]? chosen, int start, Span<double> chances);
 }

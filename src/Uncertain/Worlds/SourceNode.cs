@@ -61,15 +61,16 @@ internal sealed class SourceNode<T>(
 
     public int RecordCount => Records.Length;
 
+    public int FirstSlot => Lineages.FirstSlot;
+
     public FieldReader ReaderOf(LambdaExpression field) => FieldReader.Of(Records, field, "a field");
 
     public RecordFilter FilterOf(IReadOnlyList<LambdaExpression> conditions) => new RecordFilter<T>(Records, Lineages, conditions);
 
     public LineageRef LineageOf(int record) => Lineages[record];
 
-    public void ReadChances(int[]? chosen, int start, Span<double> chances)
+    public void ReadChances(VariableTable table, int[]? chosen, int start, Span<double> chances)
     {
-        VariableTable table = Worlds.Variables;
         if (Kind == SourceKind.Certain)
         {
             chances.Fill(1);

@@ -34,6 +34,9 @@ internal sealed class VariableTable
     private int[] _variableOfSlot = [];
     private int[] _firstSlot = [0];
 
+    // Only in copies that evidence has changed: what is left for 'none of them', where it is not 1 minus the chances.
+    private Dictionary<int, ExtendedDouble>? _none;
+
     public int VariableCount { get; private set; }
 
     public int SlotCount { get; private set; }
@@ -60,8 +63,9 @@ internal sealed class VariableTable
     public double NoneChance(int variable) => NoneChanceExtended(variable).ToDouble();
 
     /// <summary>As <see cref="NoneChance"/>, with the digits that a sum of many chances needs.</summary>
-    public ExtendedDouble NoneChanceExtended(int variable) =>
-        Remainder(_chance.AsSpan(FirstSlot(variable), OutcomeCount(variable)));
+    public ExtendedDouble NoneChanceExtended(int variable) => _none is not null && _none.TryGetValue(variable, out ExtendedDouble none)
+        ? none
+        : Remainder(_chance.AsSpan(FirstSlot(variable), OutcomeCount(variable)));
 
     /// <summary>1 minus the sum of the chances, 0 where several make up 1 within <see cref="SumTolerance"/>.</summary>
     public static ExtendedDouble Remainder(ReadOnlySpan<double> chances)
@@ -119,6 +123,29 @@ internal sealed class VariableTable
         }
 
         return first;
+    }
+
+    /// <summary>A copy whose chances may be changed by <see cref="Set"/>; variables are added to neither through the other.</summary>
+    public VariableTable Copy() => new()
+    {
+        _chance = _chance.AsSpan(0, SlotCount).ToArray(),
+        _plain = _plain,
+        _variableOfSlot = _variableOfSlot,
+        _firstSlot = _firstSlot,
+        _none = _none is null ? null : new Dictionary<int, ExtendedDouble>(_none),
+        VariableCount = VariableCount,
+        SlotCount = SlotCount,
+        HasAlternatives = HasAlternatives,
+    };
+
+    /// <summary>Changes the chances of one variable of a copy; what is left for none of the outcomes comes with its own digits.</summary>
+    public void Set(int variable, ReadOnlySpan<double> chances, ExtendedDouble none)
+    {
+        chances.CopyTo(_chance.AsSpan(FirstSlot(variable)));
+        if (OutcomeCount(variable) > 1)
+        {
+            (_none ??= [])[variable] = none;
+        }
     }
 
     private int Append(ReadOnlySpan<double> chances)

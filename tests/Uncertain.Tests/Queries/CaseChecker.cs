@@ -36,7 +36,8 @@ public sealed class CaseChecker
     public string? CheckEvaluator(Expectation expected, IBuiltQuery built, IEvaluator evaluator) =>
         CheckEvaluator(expected, built, new EvaluationOptions { Evaluator = evaluator });
 
-    private string? CheckEvaluator(Expectation expected, IBuiltQuery built, EvaluationOptions options)
+    /// <summary>The same with other options, which ask for exact figures.</summary>
+    public string? CheckEvaluator(Expectation expected, IBuiltQuery built, EvaluationOptions options)
     {
         IEvaluator evaluator = options.Evaluator;
         var missing = expected.Answers.ToDictionary(pair => pair.Key, pair => pair.Value);

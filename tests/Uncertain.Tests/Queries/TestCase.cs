@@ -16,6 +16,9 @@ namespace Uncertain.Tests.Queries;
 public sealed record TestCase(
     Shape Shape, IReadOnlyList<double[]> Shared, IReadOnlyList<SourceSpec> Sources, Step Query, Question Question)
 {
+    /// <summary>What is given, if anything.</summary>
+    public IReadOnlyList<EvidencePiece> Evidence { get; init; } = [];
+
     /// <summary>Answers by System.Linq in every world.</summary>
     public Expectation Expect()
     {
@@ -32,6 +35,17 @@ public sealed record TestCase(
     /// <summary>Cases with one thing less or simpler, the smallest first.</summary>
     public IEnumerable<TestCase> Shrink()
     {
+        for (int i = 0; i < Evidence.Count; i++)
+        {
+            yield return this with { Evidence = [.. Evidence.Where((_, other) => other != i)] };
+            foreach (EvidencePiece smaller in Evidence[i].Shrink())
+            {
+                EvidencePiece[] pieces = [.. Evidence];
+                pieces[i] = smaller;
+                yield return this with { Evidence = pieces };
+            }
+        }
+
         foreach (Question question in Question.Shrink())
         {
             yield return this with { Question = question };
@@ -73,6 +87,11 @@ public sealed record TestCase(
             {
                 text.Append(Sources[i].Text($"s{i}")).Append('\n');
             }
+        }
+
+        foreach (EvidencePiece piece in Evidence)
+        {
+            text.Append(CultureInfo.InvariantCulture, $"given {piece}\n");
         }
 
         return text.Append(CultureInfo.InvariantCulture, $"{Question.Text($"{Query}")};   // Row is a {Shape}\n").ToString();

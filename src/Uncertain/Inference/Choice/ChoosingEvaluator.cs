@@ -1,4 +1,5 @@
 using Uncertain.Execution;
+using Uncertain.Inference.Posteriors;
 
 namespace Uncertain.Inference.Choice;
 
@@ -7,7 +8,7 @@ namespace Uncertain.Inference.Choice;
 /// lineage is compiled, and sampled where compiling would go over its budget and something less than exact is asked for, or is all that
 /// can be had; then the answer says so.
 /// </summary>
-internal sealed class ChoosingEvaluator : IEvaluator
+internal sealed class ChoosingEvaluator : IEvidenceEvaluator
 {
     // Where sampling would do, compiling gets about as many nodes as sampling to two digits would visit in the same time.
     private const int TrialNodes = 50_000;
@@ -40,9 +41,13 @@ internal sealed class ChoosingEvaluator : IEvaluator
         ArgumentNullException.ThrowIfNull(query);
         ArgumentNullException.ThrowIfNull(options);
         long start = options.Clock.GetTimestamp();
-        return query.Plan.Safe.Plan is not null && SafeAnswers(query, options, cancellationToken) is { } answers
+        bool isSafe = query.Plan.Safe.Plan is not null
+            && (options.Given is not { } evidence || SafeEvidence.WhyNot(query.Node, evidence, cancellationToken) is null);
+        return isSafe && SafeAnswers(query, options, cancellationToken) is { } answers
             ? answers
-            : LineageAnswers(query, options, start, cancellationToken);
+            : options.Given is null
+                ? LineageAnswers(query, options, start, cancellationToken)
+                : ConditionalEvaluation.Evaluate(query, options, cancellationToken);
     }
 
     // A safe plan may apply a condition to rows that the query as written joins away before. If the caller's lambda cannot take such

@@ -32,7 +32,7 @@ internal sealed class ChanceSetting(VariableTable table, Dictionary<int, double>
         var weights = new ExtendedDouble[slots.Length + 1];
         double[] chances = ChancesOf(distribution.Variable);
         int first = table.FirstSlot(distribution.Variable);
-        ExtendedDouble rest = VariableTable.Remainder(chances);
+        ExtendedDouble rest = NoneChance(distribution.Variable, chances);
         int next = 0;
         for (int i = 0; i < chances.Length; i++)
         {
@@ -63,6 +63,9 @@ internal sealed class ChanceSetting(VariableTable table, Dictionary<int, double>
         return chances;
     }
 
+    private ExtendedDouble NoneChance(int variable, double[] chances) =>
+        changes is null ? table.NoneChanceExtended(variable) : VariableTable.Remainder(chances);
+
     // For each outcome the chance of all the others, from sums before and behind it.
     private ExtendedDouble[] Others(int variable)
     {
@@ -74,7 +77,7 @@ internal sealed class ChanceSetting(VariableTable table, Dictionary<int, double>
 
         double[] chances = ChancesOf(variable);
         others = new ExtendedDouble[chances.Length];
-        ExtendedDouble behind = VariableTable.Remainder(chances);
+        ExtendedDouble behind = NoneChance(variable, chances);
         for (int i = chances.Length - 1; i >= 0; i--)
         {
             others[i] = behind;

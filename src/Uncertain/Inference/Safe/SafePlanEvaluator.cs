@@ -1,5 +1,6 @@
 using System.Numerics;
 using Uncertain.Execution;
+using Uncertain.Inference.Posteriors;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Inference.Safe.Steps;
@@ -14,7 +15,7 @@ namespace Uncertain.Inference.Safe;
 /// also by declared keys, certain sets and exclusive alternatives where the theory allows it, and for unions and differences of such
 /// parts over different sources. Refuses the rest and names the reason.
 /// </summary>
-internal sealed class SafePlanEvaluator : IEvaluator
+internal sealed class SafePlanEvaluator : IEvidenceEvaluator
 {
     // Up to so many factors in one probability, doubles keep 1e-12; beyond, the plan is run again in extended numbers.
     private const int PlainFactorLimit = 2048;
@@ -52,9 +53,9 @@ internal sealed class SafePlanEvaluator : IEvaluator
     {
         long start = options.Clock.GetTimestamp();
         var control = new RunControl(options, cancellationToken);
-        VariableTable table = query.Worlds.Variables;
-        using var input = new RunInput(plan.Root, control);
-        List<CodeTable<double>> plain = RunParts<double>(plan.Root, input, table);
+        VariableTable table = SafeEvidence.Chances(query.Node, options, cancellationToken);
+        using var input = new RunInput(plan.Root, table, control);
+        List<CodeTable<double>> plain = RunParts<double>(plan.Root, input);
         long factors = plain.Max(part => part.Factors);
         bool isZeroExact = factors * Math.Log(control.SmallestChance) > Math.Log(TailConversions.SafeRange);
         if (factors <= PlainFactorLimit
@@ -65,7 +66,7 @@ internal sealed class SafePlanEvaluator : IEvaluator
 
         try
         {
-            return Answers(RunParts<ExtendedDouble>(plan.Root, input, table), Probability.Exact);
+            return Answers(RunParts<ExtendedDouble>(plan.Root, input), Probability.Exact);
         }
         catch (OverflowException exception)
         {
@@ -109,12 +110,12 @@ internal sealed class SafePlanEvaluator : IEvaluator
         }
     }
 
-    private static List<CodeTable<TNumber>> RunParts<TNumber>(SafeStep root, RunInput input, VariableTable table)
+    private static List<CodeTable<TNumber>> RunParts<TNumber>(SafeStep root, RunInput input)
         where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
         Workspace workspace = Workspace.Take(input.Control);
-        var run = new SafeRun<TNumber>(root, input, table, workspace);
+        var run = new SafeRun<TNumber>(root, input, workspace);
         if (input.Split is not { } split)
         {
             CodeTable<TNumber> result = root.Run(run).Copy();

@@ -11,6 +11,8 @@ internal sealed class Cone(LineageArena arena)
 
     public int NodeCount => _nodes.Count;
 
+    public IReadOnlyCollection<int> NodeIndices => _nodes;
+
     public IReadOnlyCollection<int> Slots => _slots;
 
     /// <summary>Operands of all nodes.</summary>

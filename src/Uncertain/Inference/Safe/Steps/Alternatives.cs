@@ -57,7 +57,7 @@ internal sealed class Alternatives<TNumber>
             if (!certain)
             {
                 double chance = run.Table.Chance(lineage.Index);
-                smallest = Math.Min(smallest, Math.Min(chance, 1 - chance));
+                smallest = chance is 0 or 1 ? smallest : Math.Min(smallest, Math.Min(chance, 1 - chance));
                 chosen.Add(lineage.Index);
             }
         }

@@ -10,8 +10,9 @@ internal sealed class RunInput : IDisposable
     private readonly Dictionary<ScanStep, ScanReader> _readers = [];
 
     /// <summary>Makes all sources of a plan ready.</summary>
-    public RunInput(SafeStep root, RunControl control)
+    public RunInput(SafeStep root, VariableTable table, RunControl control)
     {
+        Table = table;
         Control = control;
 
         // Small ones first: a large one then finds most of its values known.
@@ -24,6 +25,9 @@ internal sealed class RunInput : IDisposable
 
         Split = SplitRows.TryCreate(root, this);
     }
+
+    /// <summary>The chances: the world space's own, or what evidence makes of them.</summary>
+    public VariableTable Table { get; }
 
     public RunControl Control { get; }
 

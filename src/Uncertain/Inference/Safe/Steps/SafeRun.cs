@@ -24,11 +24,10 @@ internal sealed class SafeRun<TNumber>
     private readonly Dictionary<SafeStep, JoinIndex>? _indexes;
 
     /// <summary>A whole run. If it will be split, computes what all parts share.</summary>
-    public SafeRun(SafeStep root, RunInput input, VariableTable table, Workspace workspace)
+    public SafeRun(SafeStep root, RunInput input, Workspace workspace)
     {
         _whole = this;
         _input = input;
-        Table = table;
         Workspace = workspace;
         if (input.Split is not null)
         {
@@ -45,12 +44,11 @@ internal sealed class SafeRun<TNumber>
         _shared = whole._shared;
         _indexes = whole._indexes;
         _part = part;
-        Table = whole.Table;
         Workspace = workspace;
     }
 
     /// <summary>The chances.</summary>
-    public VariableTable Table { get; }
+    public VariableTable Table => _input.Table;
 
     /// <summary>Memory of the run or part.</summary>
     public Workspace Workspace { get; }

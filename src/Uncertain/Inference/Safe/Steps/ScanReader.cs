@@ -13,20 +13,22 @@ internal sealed class ScanReader
 {
     private readonly ScanStep _scan;
     private readonly Column[] _columns;
-    private readonly RunControl _control;
+    private readonly RunInput _input;
     private readonly int[]? _chosen;
 
-    private ScanReader(ScanStep scan, Column[] columns, int[]? chosen, int count, RunControl control)
+    private ScanReader(ScanStep scan, Column[] columns, int[]? chosen, int count, RunInput input)
     {
         _scan = scan;
         _columns = columns;
         _chosen = chosen;
         Count = count;
-        _control = control;
+        _input = input;
     }
 
     /// <summary>Number of rows.</summary>
     public int Count { get; }
+
+    private RunControl Control => _input.Control;
 
     public static ScanReader Open(ScanStep scan, RunInput input)
     {
@@ -48,7 +50,7 @@ internal sealed class ScanReader
         }
 
         return new ScanReader(
-            scan, [.. scan.Variables.Select(variable => columns.Find(column => column.Field.Variable == variable))], chosen, count, control);
+            scan, [.. scan.Variables.Select(variable => columns.Find(column => column.Field.Variable == variable))], chosen, count, input);
     }
 
     /// <summary>Reads neighbouring rows.</summary>
@@ -75,8 +77,8 @@ internal sealed class ScanReader
             Span<double> chances = rows.Chances.AsSpan(at, count);
             if (_scan.Part.IsChancy)
             {
-                _scan.Part.Source.ReadChances(_chosen, start, chances);
-                _control.Observe(chances);
+                _scan.Part.Source.ReadChances(_input.Table, _chosen, start, chances);
+                Control.Observe(chances);
             }
             else
             {
@@ -95,7 +97,7 @@ internal sealed class ScanReader
         else
         {
             _columns[column].Field.Reader.ReadCodes(
-                _columns[column].Encoder, dropNulls: false, _chosen, start, codes, _control.Cancellation);
+                _columns[column].Encoder, dropNulls: false, _chosen, start, codes, Control.Cancellation);
         }
     }
 
@@ -103,13 +105,13 @@ internal sealed class ScanReader
     public ScanRows ReadAll(Workspace workspace)
     {
         ScanRows rows = _scan.Room(Count, workspace);
-        int ranges = Workers.Ranges(_control.Threads, Count, _control.RowsInPart);
-        Workers.Run(_control.Threads, ranges, (_, range) =>
+        int ranges = Workers.Ranges(Control.Threads, Count, Control.RowsInPart);
+        Workers.Run(Control.Threads, ranges, (_, range) =>
         {
             int end = Workers.Start(Count, ranges, range + 1);
             for (int start = Workers.Start(Count, ranges, range); start < end; start += Kernels.Slice)
             {
-                _control.Checkpoint();
+                Control.Checkpoint();
                 Read(start, Math.Min(Kernels.Slice, end - start), rows, start);
             }
         });

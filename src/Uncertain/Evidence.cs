@@ -1,0 +1,106 @@
+using System.Collections.Immutable;
+using System.Diagnostics;
+using System.Globalization;
+using Uncertain.Inference.Posteriors;
+
+namespace Uncertain;
+
+/// <summary>
+/// What has been found out about a world space: lineages that are true. Evaluations that are given it
+/// (<see cref="EvaluationOptions.Given"/>) look only at the worlds in which all of them hold. Immutable.
+/// </summary>
+/// <remarks>
+/// <para>A confirmed record or answer is its lineage, a refuted one the lineage's negation; <see cref="Lineage.Exactly"/>,
+/// <see cref="Lineage.AtLeast"/> and any other formula state the rest, and <see cref="AndUnique"/> a key constraint.</para>
+/// <para>Evidence that concerns single variables (a record is there, an alternative is not the one) only changes chances, so that
+/// every evaluator works as without evidence, safe plans too. What ties several variables together is looked at where an answer depends on
+/// one of them: then P(answer and evidence) and P(no answer and evidence) are computed, and their shares are the result. Nothing is
+/// subtracted, so both tails keep their relative accuracy however improbable the evidence was.</para>
+/// <para>Evidence that holds in no world is refused when it is first used, by an <see cref="InvalidInputException"/> that names the
+/// piece that made it so. Thread safety: may be used from any thread; what was prepared once serves all later uses.</para>
+/// </remarks>
+[DebuggerDisplay("{ToString(),nq}")]
+public sealed class Evidence
+{
+    private readonly Lock _lock = new();
+    private Findings? _findings;
+
+    internal Evidence(WorldSpace worlds, ImmutableArray<Lineage> pieces)
+    {
+        Worlds = worlds;
+        Pieces = pieces;
+    }
+
+    /// <summary>The world space of the variables.</summary>
+    public WorldSpace Worlds { get; }
+
+    /// <summary>The lineages that are true, in the order given.</summary>
+    public ImmutableArray<Lineage> Pieces { get; }
+
+    /// <summary>This evidence and more.</summary>
+    /// <param name="pieces">Lineages that are true as well.</param>
+    /// <exception cref="WorldSpaceMismatchException">A lineage belongs to another world space.</exception>
+    /// <exception cref="InvalidInputException">A lineage is <c>default</c>.</exception>
+    public Evidence And(params ReadOnlySpan<Lineage> pieces)
+    {
+        for (int i = 0; i < pieces.Length; i++)
+        {
+            if (!ReferenceEquals(pieces[i].Worlds, Worlds))
+            {
+                throw new WorldSpaceMismatchException($"Piece {i} of the evidence");
+            }
+        }
+
+        return new Evidence(Worlds, Pieces.AddRange(pieces));
+    }
+
+    /// <summary>
+    /// This evidence, and a key constraint: no two elements of a set that have the same key are there together. One piece for each key
+    /// that several elements have. Runs the set's query.
+    /// </summary>
+    /// <param name="set">The set.</param>
+    /// <param name="key">What identifies an element, for example <c>r => r.Berth</c>; elements whose key is null are left out.</param>
+    /// <param name="options">Budgets of running the query.</param>
+    /// <param name="cancellationToken">Cancels it.</param>
+    /// <typeparam name="T">Type of the elements.</typeparam>
+    /// <typeparam name="TKey">Type of the key.</typeparam>
+    /// <exception cref="WorldSpaceMismatchException">The set belongs to another world space.</exception>
+    /// <exception cref="InvalidInputException">The lambda threw.</exception>
+    public Evidence AndUnique<T, TKey>(
+        UncertainSet<T> set, Func<T, TKey> key, EvaluationOptions? options = null, CancellationToken cancellationToken = default)
+    {
+        ArgumentNullException.ThrowIfNull(set);
+        ArgumentNullException.ThrowIfNull(key);
+        if (!ReferenceEquals(set.Worlds, Worlds))
+        {
+            throw new WorldSpaceMismatchException("The set of a key constraint");
+        }
+
+        return And([.. KeyConstraint.Pieces(set, key, options, cancellationToken)]);
+    }
+
+    /// <summary>
+    /// The probability that all of it holds, without any evidence; 0 if it is impossible. Its logarithm is right below the range of double
+    /// too.
+    /// </summary>
+    /// <param name="options">What is asked and what it may cost.</param>
+    /// <param name="cancellationToken">Cancels the evaluation.</param>
+    public Probability Evaluate(EvaluationOptions? options = null, CancellationToken cancellationToken = default) =>
+        (Pieces.IsEmpty ? Worlds.Always : Lineage.All(Pieces.AsSpan()))
+            .Evaluate((options ?? EvaluationOptions.Default) with { Given = null }, cancellationToken);
+
+    /// <summary>For example <c>evidence: 3 pieces</c>.</summary>
+    public override string ToString() =>
+        string.Create(CultureInfo.InvariantCulture, $"evidence: {Pieces.Length:N0} {(Pieces.Length == 1 ? "piece" : "pieces")}");
+
+    /// <summary>What it says of single variables and of several together; prepared when first asked for.</summary>
+    /// <exception cref="InvalidInputException">No world satisfies it, as far as single variables show.</exception>
+    internal Findings Findings(CancellationToken cancellationToken)
+    {
+        lock (_lock)
+        {
+            return _findings ??= FindingsReader.TryRead(Worlds, Pieces.AsSpan(), cancellationToken)
+                ?? throw Impossible.Because(this, cancellationToken);
+        }
+    }
+}
