@@ -17,7 +17,7 @@ public sealed partial class WorldSpace
         IEnumerable<T> records, Expression<Func<T, object?>>? key = null,
         [CallerArgumentExpression(nameof(records))] string? name = null)
     {
-        T[] copy = SourceReader.Read(records);
+        T[] copy = SourceReader<T>.Read(records);
         name = SourceReader.NameOf<T>(name);
         SourceReader.CheckKey(copy, key, name);
         return Create(name, SourceKind.Certain, copy, LineageColumn.Certain, null, key);
@@ -25,7 +25,10 @@ public sealed partial class WorldSpace
 
     /// <summary>A set whose records are there or not, each independently of all else.</summary>
     /// <param name="records">The records; read once, now. Equal records count as separate evidence for one element.</param>
-    /// <param name="chance">A record's chance in [0, 1]; 0 and 1 cost no variable.</param>
+    /// <param name="chance">
+    /// A record's chance in [0, 1]; 0 and 1 cost no variable. Called once for each record, in order; a lambda that captures nothing may be
+    /// called for several records at a time.
+    /// </param>
     /// <param name="key">What identifies a record; checked, and used to find safe plans.</param>
     /// <param name="name">The set's name in plans and lineages; by default the text of the first argument.</param>
     /// <exception cref="InvalidInputException">A chance is not in [0, 1], two records have the same key, or a lambda threw.</exception>
@@ -34,11 +37,10 @@ public sealed partial class WorldSpace
         [CallerArgumentExpression(nameof(records))] string? name = null)
     {
         ArgumentNullException.ThrowIfNull(chance);
-        T[] copy = SourceReader.Read(records);
         name = SourceReader.NameOf<T>(name);
-        double[] chances = SourceReader.Chances(copy, chance, name);
-        SourceReader.CheckKey(copy, key, name);
-        return Create(name, SourceKind.Independent, copy, AddIndependent(chances, name), null, key);
+        var read = SourceReader<T>.WithChances(records, chance, name);
+        SourceReader.CheckKey(read.Records, key, name);
+        return Create(name, SourceKind.Independent, read.Records, AddIndependent(read.Chances, read.AreUncertain, name), null, key);
     }
 
     /// <summary>
@@ -58,9 +60,8 @@ public sealed partial class WorldSpace
     {
         ArgumentNullException.ThrowIfNull(group);
         ArgumentNullException.ThrowIfNull(chance);
-        T[] copy = SourceReader.Read(records);
         name = SourceReader.NameOf<T>(name);
-        double[] chances = SourceReader.Chances(copy, chance, name);
+        (T[] copy, double[] chances, _) = SourceReader<T>.WithChances(records, chance, name);
         AlternativeGroups groups = SourceReader.Groups(copy, group, chances, name);
         SourceReader.CheckKey(copy, key, name);
         return Create(name, SourceKind.Alternatives, copy, LineageColumn.Given(AddAlternatives(chances, groups, name)), group, key);
@@ -76,7 +77,7 @@ public sealed partial class WorldSpace
         IEnumerable<T> records, Func<T, Lineage> lineage, [CallerArgumentExpression(nameof(records))] string? name = null)
     {
         ArgumentNullException.ThrowIfNull(lineage);
-        T[] copy = SourceReader.Read(records);
+        T[] copy = SourceReader<T>.Read(records);
         name = SourceReader.NameOf<T>(name);
         Lineage[] given = SourceReader.Lineages(copy, lineage, this, name);
         var lineages = new LineageRef[copy.Length];
@@ -145,9 +146,9 @@ public sealed partial class WorldSpace
         string name, SourceKind kind, T[] records, LineageColumn lineages, LambdaExpression? group, LambdaExpression? key) =>
         new(new SourceNode<T>(this, name, kind, records, lineages, group, key));
 
-    private LineageColumn AddIndependent(double[] chances, string name)
+    private LineageColumn AddIndependent(double[] chances, bool areUncertain, string name)
     {
-        if (!chances.AsSpan().ContainsAny(0.0, 1.0))
+        if (areUncertain)
         {
             lock (Gate)
             {
@@ -157,10 +158,19 @@ public sealed partial class WorldSpace
             }
         }
 
-        int[] uncertain = [.. Enumerable.Range(0, chances.Length).Where(i => chances[i] is not (0 or 1))];
+        var recordOfSlot = new List<int>(chances.Length);
+        for (int i = 0; i < chances.Length; i++)
+        {
+            if (chances[i] is not (0 or 1))
+            {
+                recordOfSlot.Add(i);
+            }
+        }
+
+        int[] uncertain = [.. recordOfSlot];
+        LineageRef[] lineages = Array.ConvertAll(chances, chance => chance == 1 ? LineageRef.True : LineageRef.False);
         lock (Gate)
         {
-            LineageRef[] lineages = Array.ConvertAll(chances, chance => chance == 1 ? LineageRef.True : LineageRef.False);
             int first = Variables.AddEach(Array.ConvertAll(uncertain, i => chances[i]));
             Names.AddSource(first, name, uncertain);
             for (int i = 0; i < uncertain.Length; i++)

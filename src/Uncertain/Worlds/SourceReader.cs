@@ -7,12 +7,6 @@ namespace Uncertain.Worlds;
 /// <summary>Reads records and what the caller's lambdas say of them, and refuses at the door what is wrong.</summary>
 internal static class SourceReader
 {
-    public static T[] Read<T>(IEnumerable<T> records)
-    {
-        ArgumentNullException.ThrowIfNull(records);
-        return [.. records];
-    }
-
     public static async Task<T[]> ReadAsync<T>(IAsyncEnumerable<T> records, CancellationToken cancellationToken)
     {
         ArgumentNullException.ThrowIfNull(records);
@@ -31,21 +25,6 @@ internal static class SourceReader
         text is not null && text.Length is > 0 and <= 60 && text.All(c => char.IsLetterOrDigit(c) || c is '_' or '.' or ' ' or '-')
             ? text
             : PlanText.TypeName(typeof(T));
-
-    public static double[] Chances<T>(T[] records, Func<T, double> chance, string name)
-    {
-        var chances = new double[records.Length];
-        for (int i = 0; i < records.Length; i++)
-        {
-            chances[i] = Apply(chance, records, i, name, "chance");
-            if (!(chances[i] >= 0 && chances[i] <= 1))
-            {
-                throw Worlds.Chances.Refused(chances[i], $"record {i} of {name} ('{records[i]}')");
-            }
-        }
-
-        return chances;
-    }
 
     public static AlternativeGroups Groups<T, TGroup>(
         T[] records, Expression<Func<T, TGroup>> group, double[] chances, string name)
@@ -129,10 +108,13 @@ internal static class SourceReader
         }
         catch (Exception exception) when (exception is not UncertainException)
         {
-            throw new InvalidInputException(
-                $"The {what} lambda threw {exception.GetType().Name} on record {i} of {name} ('{records[i]}'): {exception.Message} "
-                + "Nothing was added to the world space.",
-                exception);
+            throw Failed(exception, what, i, name, records[i]);
         }
     }
+
+    /// <summary>What is thrown when a caller's lambda threw.</summary>
+    public static InvalidInputException Failed(Exception exception, string what, int record, string name, object? value) => new(
+        $"The {what} lambda threw {exception.GetType().Name} on record {record} of {name} ('{value}'): {exception.Message} "
+        + "Nothing was added to the world space.",
+        exception);
 }

@@ -10,7 +10,7 @@ namespace Uncertain.Worlds;
 /// </summary>
 /// <remarks>
 /// <code>
-/// slot:      double chance                                8 bytes
+/// slot:      double chance                                8 bytes     (in pages; those inside a large source share its array)
 /// from the first variable with several outcomes on, also
 /// slot:      int variable                                 4 bytes
 /// variable:  int first slot                               4 bytes     (its slots end where the next variable's begin)
@@ -27,7 +27,7 @@ internal sealed class VariableTable
     /// </summary>
     public const double SumTolerance = 1e-12;
 
-    private double[] _chance = new double[16];
+    private ChanceColumn _chances = new();
 
     // The leading slots, each of which is a variable of its own; the other two arrays begin after them.
     private int _plain;
@@ -44,10 +44,10 @@ internal sealed class VariableTable
     /// <summary>True once any variable has more than one slot.</summary>
     public bool HasAlternatives { get; private set; }
 
-    public double Chance(int slot) => _chance[slot];
+    public double Chance(int slot) => _chances[slot];
 
     /// <summary>The chances of consecutive slots.</summary>
-    public void Chances(int firstSlot, Span<double> chances) => _chance.AsSpan(firstSlot, chances.Length).CopyTo(chances);
+    public void Chances(int firstSlot, Span<double> chances) => _chances.CopyTo(firstSlot, chances);
 
     public int VariableOf(int slot) => slot < _plain ? slot : _variableOfSlot[slot - _plain];
 
@@ -63,9 +63,18 @@ internal sealed class VariableTable
     public double NoneChance(int variable) => NoneChanceExtended(variable).ToDouble();
 
     /// <summary>As <see cref="NoneChance"/>, with the digits that a sum of many chances needs.</summary>
-    public ExtendedDouble NoneChanceExtended(int variable) => _none is not null && _none.TryGetValue(variable, out ExtendedDouble none)
-        ? none
-        : Remainder(_chance.AsSpan(FirstSlot(variable), OutcomeCount(variable)));
+    public ExtendedDouble NoneChanceExtended(int variable)
+    {
+        if (_none is not null && _none.TryGetValue(variable, out ExtendedDouble none))
+        {
+            return none;
+        }
+
+        int outcomes = OutcomeCount(variable);
+        Span<double> chances = outcomes <= 64 ? stackalloc double[outcomes] : new double[outcomes];
+        _chances.CopyTo(FirstSlot(variable), chances);
+        return Remainder(chances);
+    }
 
     /// <summary>1 minus the sum of the chances, 0 where several make up 1 within <see cref="SumTolerance"/>.</summary>
     public static ExtendedDouble Remainder(ReadOnlySpan<double> chances)
@@ -103,12 +112,13 @@ internal sealed class VariableTable
     }
 
     /// <summary>Adds a two-outcome variable for each chance and returns the first one's slot; the others follow.</summary>
-    public int AddEach(ReadOnlySpan<double> chances)
+    /// <param name="chances">The table keeps the array, which must not change any more.</param>
+    public int AddEach(double[] chances)
     {
-        int first = Append(chances);
+        int first = Room(chances.Length);
+        _chances.Adopt(chances);
         if (HasAlternatives)
         {
-            SlotCount = first;
             foreach (double _ in chances)
             {
                 SlotCount++;
@@ -118,6 +128,7 @@ internal sealed class VariableTable
         }
         else
         {
+            SlotCount += chances.Length;
             _plain += chances.Length;
             VariableCount += chances.Length;
         }
@@ -128,7 +139,7 @@ internal sealed class VariableTable
     /// <summary>A copy whose chances may be changed by <see cref="Set"/>; variables are added to neither through the other.</summary>
     public VariableTable Copy() => new()
     {
-        _chance = _chance.AsSpan(0, SlotCount).ToArray(),
+        _chances = _chances.Copy(),
         _plain = _plain,
         _variableOfSlot = _variableOfSlot,
         _firstSlot = _firstSlot,
@@ -141,7 +152,7 @@ internal sealed class VariableTable
     /// <summary>Changes the chances of one variable of a copy; what is left for none of the outcomes comes with its own digits.</summary>
     public void Set(int variable, ReadOnlySpan<double> chances, ExtendedDouble none)
     {
-        chances.CopyTo(_chance.AsSpan(FirstSlot(variable)));
+        _chances.Set(FirstSlot(variable), chances);
         if (OutcomeCount(variable) > 1)
         {
             (_none ??= [])[variable] = none;
@@ -150,9 +161,15 @@ internal sealed class VariableTable
 
     private int Append(ReadOnlySpan<double> chances)
     {
-        int first = SlotCount;
-        long needed = (long)first + chances.Length;
-        if (needed > LineageRef.IndexLimit)
+        int first = Room(chances.Length);
+        _chances.Add(chances);
+        SlotCount += chances.Length;
+        return first;
+    }
+
+    private int Room(int slots)
+    {
+        if ((long)SlotCount + slots > LineageRef.IndexLimit)
         {
             throw new InvalidInputException(string.Create(
                 CultureInfo.InvariantCulture,
@@ -160,10 +177,7 @@ internal sealed class VariableTable
                 + $"Give records that are certain the chance 1, or split the data over several world spaces."));
         }
 
-        Reserve(ref _chance, needed);
-        chances.CopyTo(_chance.AsSpan(first));
-        SlotCount = (int)needed;
-        return first;
+        return SlotCount;
     }
 
     // The variable of the slots that were added last.
