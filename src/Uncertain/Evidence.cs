@@ -2,6 +2,8 @@ using System.Collections.Immutable;
 using System.Diagnostics;
 using System.Globalization;
 using Uncertain.Inference.Posteriors;
+using Uncertain.Numerics;
+using Uncertain.Worlds;
 
 namespace Uncertain;
 
@@ -87,11 +89,81 @@ public sealed class Evidence
     /// <param name="cancellationToken">Cancels the evaluation.</param>
     public Probability Evaluate(EvaluationOptions? options = null, CancellationToken cancellationToken = default) =>
         (Pieces.IsEmpty ? Worlds.Always : Lineage.All(Pieces.AsSpan()))
-            .Evaluate((options ?? EvaluationOptions.Default) with { Given = null }, cancellationToken);
+            .Evaluate(Plain(options), cancellationToken);
+
+    /// <summary>
+    /// The chances of all records and events given the evidence, in one backward pass over its compiled form. Linear in its size.
+    /// </summary>
+    /// <param name="options">Budgets of compiling the evidence.</param>
+    /// <param name="cancellationToken">Cancels it.</param>
+    /// <exception cref="InvalidInputException">The evidence is impossible.</exception>
+    /// <exception cref="EvaluationRefusedException">A budget ran out.</exception>
+    public Posterior Posterior(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
+    {
+        var tailsOf = new Dictionary<int, Tails<ExtendedDouble>>();
+        foreach (PartValues part in PartValues.OfAll(this, Plain(options), cancellationToken))
+        {
+            PosteriorPass.Run(part, tailsOf, cancellationToken);
+        }
+
+        return new Posterior(this, Findings(cancellationToken), tailsOf);
+    }
+
+    /// <summary>
+    /// The world of the largest probability given the evidence. Of several equal ones always the same: outcomes with smaller numbers, and
+    /// records that are there, come first where the evidence leaves them alone.
+    /// </summary>
+    /// <param name="options">Budgets of compiling the evidence.</param>
+    /// <param name="cancellationToken">Cancels it.</param>
+    /// <exception cref="InvalidInputException">The evidence is impossible.</exception>
+    /// <exception cref="EvaluationRefusedException">A budget ran out.</exception>
+    public World MostProbableWorld(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
+    {
+        List<PartValues> parts = PartValues.OfAll(this, Plain(options), cancellationToken);
+        var outcomes = new Dictionary<int, int>();
+        foreach (PartValues part in parts)
+        {
+            cancellationToken.ThrowIfCancellationRequested();
+            FormBest.Find(part, outcomes);
+        }
+
+        VariableTable chances = Findings(cancellationToken).Chances;
+        return new World(this, chances, parts, outcomes, new BestOutcome(chances));
+    }
+
+    /// <summary>
+    /// Worlds drawn exactly from the posterior, independently of each other. World number i follows from the seed and i: it is the same in
+    /// every run and on every machine, however many are drawn.
+    /// </summary>
+    /// <param name="count">How many; at least 0.</param>
+    /// <param name="options">The seed, and budgets of compiling the evidence.</param>
+    /// <param name="cancellationToken">Cancels the drawing.</param>
+    /// <returns>The worlds, each drawn when it is asked for; a draw costs at most the size of the compiled evidence.</returns>
+    /// <exception cref="InvalidInputException">The evidence is impossible.</exception>
+    /// <exception cref="EvaluationRefusedException">A budget ran out.</exception>
+    public IEnumerable<World> Draw(int count, EvaluationOptions? options = null, CancellationToken cancellationToken = default)
+    {
+        ArgumentOutOfRangeException.ThrowIfNegative(count);
+        EvaluationOptions plain = Plain(options);
+        List<PartValues> parts = PartValues.OfAll(this, plain, cancellationToken);
+        VariableTable chances = Findings(cancellationToken).Chances;
+        return Worlds();
+
+        IEnumerable<World> Worlds()
+        {
+            for (ulong number = 0; number < (ulong)count; number++)
+            {
+                cancellationToken.ThrowIfCancellationRequested();
+                yield return WorldDraw.Draw(this, chances, parts, plain.Seed, number);
+            }
+        }
+    }
 
     /// <summary>For example <c>evidence: 3 pieces</c>.</summary>
     public override string ToString() =>
         string.Create(CultureInfo.InvariantCulture, $"evidence: {Pieces.Length:N0} {(Pieces.Length == 1 ? "piece" : "pieces")}");
+
+    private static EvaluationOptions Plain(EvaluationOptions? options) => (options ?? EvaluationOptions.Default) with { Given = null };
 
     /// <summary>What it says of single variables and of several together; prepared when first asked for.</summary>
     /// <exception cref="InvalidInputException">No world satisfies it, as far as single variables show.</exception>
