@@ -67,9 +67,9 @@ internal sealed class ChanceColumn
     }
 
     /// <summary>A copy that shares all pages until <see cref="Set"/> changes them.</summary>
-    public ChanceColumn Copy() => new() { _pages = [.. _pages], _count = _count };
+    public ChanceColumn Copy() => new() { _pages = Array.ConvertAll(_pages, page => page with { IsOwn = false }), _count = _count };
 
-    /// <summary>Changes chances of a copy; what it was copied from keeps its own.</summary>
+    /// <summary>Changes chances of a copy; what it was copied from keeps its own. A copy is changed before it is copied itself.</summary>
     public void Set(int start, ReadOnlySpan<double> chances)
     {
         while (chances.Length > 0)
