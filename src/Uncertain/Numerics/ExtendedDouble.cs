@@ -38,6 +38,14 @@ internal readonly struct ExtendedDouble :
 
     public bool IsZero => _high == 0;
 
+    /// <summary>High word in [1, 2) or 0, low word, exponent.</summary>
+    public (double High, double Low, int Exponent) Parts => (_high, _low, _exponent);
+
+    /// <summary>(High + low) * 2^exponent.</summary>
+    /// <exception cref="OverflowException">The exponent has more than 32 bits.</exception>
+    public static ExtendedDouble FromParts(double high, double low, long exponent) =>
+        high == 0 ? default : Normalize(high, low, checked((int)exponent));
+
     public static ExtendedDouble From(double value) => Normalize(value, 0, 0);
 
     /// <summary>1 - value without rounding, for a value in [0, 1].</summary>

@@ -46,6 +46,12 @@ internal sealed class CompilationBudget
     /// <summary>Residual formulas that the node budget pays for.</summary>
     public long ResidualLimit => (long)ResidualsPerNode * _options.NodeBudget;
 
+    /// <summary>Nodes that decisions may still make.</summary>
+    public long NodesLeft => _options.NodeBudget - _nodes;
+
+    /// <summary>Whether so much memory may be taken.</summary>
+    public bool CanTake(long bytes) => !(_lineageBytes + _bytes + bytes > _options.MemoryBudget);
+
     private bool IsTrial => _trialEnd != long.MaxValue;
 
     /// <summary>A decision has added nodes to the form.</summary>

@@ -88,7 +88,8 @@ internal sealed class CompilationEvaluator : IEvaluator
             return probability;
         }
 
-        return Evaluate(Compile(lineage, options, start, cancellationToken), options, own);
+        return TryEvaluateForm(lineage, options, options, start, own, cancellationToken, out string? refusal)
+            ?? throw new EvaluationRefusedException(refusal!);
     }
 
     /// <summary>
@@ -109,9 +110,9 @@ internal sealed class CompilationEvaluator : IEvaluator
                 }
 
                 EvaluationOptions trial = options with { NodeBudget = (int)cases.CostInNodes };
-                if (TryCompile(lineage, trial, start, cancellationToken, out CompiledLineage? compiled, out _))
+                if (TryEvaluateForm(lineage, options, trial, start, own, cancellationToken, out _) is { } probability)
                 {
-                    return Evaluate(compiled!, options, own);
+                    return probability;
                 }
 
                 checkpoint = Checkpoint(options, start, cancellationToken);
@@ -132,8 +133,34 @@ internal sealed class CompilationEvaluator : IEvaluator
         }
     }
 
-    private static Probability Evaluate(CompiledLineage compiled, EvaluationOptions options, long own) =>
-        compiled.Evaluate(() => new Cost(options.Clock.GetElapsedTime(own), compiled.NodeCount, 0));
+    /// <summary>
+    /// By a compiled form, or by what is computed in place of it; null if the budget of <paramref name="trial"/> ran out.
+    /// </summary>
+    private static Probability? TryEvaluateForm(
+        Lineage lineage, EvaluationOptions options, EvaluationOptions trial, long start, long own, CancellationToken cancellationToken,
+        out string? refusal)
+    {
+        LineageArena arena = lineage.Arena;
+        try
+        {
+            refusal = null;
+            var budget = new CompilationBudget(trial, start, arena.Bytes, cancellationToken);
+            CompiledForm form = LineageCompiler.CompileOrEvaluate(arena, lineage.Ref, budget, out Tails<ExtendedDouble>? tails);
+            Func<Cost> cost = () => new Cost(options.Clock.GetElapsedTime(own), form.NodeCount, 0);
+            return tails is null
+                ? new CompiledLineage(lineage, form).Evaluate(cost)
+                : Probability.Exact(tails.Value, EvaluatorName, cost());
+        }
+        catch (BudgetSpentException exception)
+        {
+            refusal = exception.Message;
+            return null;
+        }
+        catch (OverflowException exception)
+        {
+            throw CompiledForm.BelowRange(exception);
+        }
+    }
 
     private static Action Checkpoint(EvaluationOptions options, long start, CancellationToken cancellationToken) => () =>
     {

@@ -98,7 +98,8 @@ internal sealed class CompiledForm
         }
     }
 
-    private static EvaluationRefusedException BelowRange(OverflowException exception) => new(
+    /// <summary>A number is too small for <see cref="ExtendedDouble"/>.</summary>
+    public static EvaluationRefusedException BelowRange(OverflowException exception) => new(
         "A probability of this lineage is below 2^-2,000,000,000, beyond the range of the evaluator's numbers. "
         + "Split the lineage into independent parts, and add up the logarithms of their probabilities.",
         exception);

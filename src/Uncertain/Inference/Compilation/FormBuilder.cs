@@ -28,6 +28,10 @@ internal sealed class FormBuilder
     /// <summary>Nodes so far, the constant included.</summary>
     public int NodeCount { get; private set; } = 1;
 
+    public ReadOnlySpan<int> Words => _words.AsSpan(0, _wordCount);
+
+    public IReadOnlyList<FormDistribution> Distributions => _distributions;
+
     public long Bytes => (long)_words.Length * sizeof(int);
 
     public int Literal(int slot)

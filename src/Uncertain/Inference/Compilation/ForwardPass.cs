@@ -30,35 +30,10 @@ internal static class ForwardPass<TNumber, TChances>
     public static bool TryRun(CompiledForm form, TChances chances, Tails<TNumber>[] values, TNumber[]?[] weights)
     {
         values[0] = Tails<TNumber>.Always;
-        int[] words = form.Words;
         int position = 0;
         for (int node = 1; node < form.NodeCount; node++)
         {
-            int header = words[position++];
-            int count = header >> 2;
-            Tails<TNumber> value;
-            switch ((FormNodeKind)(header & 3))
-            {
-                case FormNodeKind.Literal:
-                    value = chances.Literal(words[position++]);
-                    break;
-                case FormNodeKind.Conjunction:
-                    value = Conjunction(words.AsSpan(position, count), values);
-                    position += count;
-                    break;
-                case FormNodeKind.Decision:
-                    value = Decision(words.AsSpan(position, 3), values);
-                    position += 3;
-                    break;
-                default:
-                    int distribution = words[position++];
-                    value = Choice(
-                        words.AsSpan(position, count), weights[distribution] ??= chances.Weights(form.Distributions[distribution]),
-                        values);
-                    position += count;
-                    break;
-            }
-
+            Tails<TNumber> value = Node(form.Words, ref position, form.Distributions, chances, values, weights);
             if (chances.IsOutOfRange(value))
             {
                 return false;
@@ -68,6 +43,30 @@ internal static class ForwardPass<TNumber, TChances>
         }
 
         return true;
+    }
+
+    /// <summary>The tails of the node that begins at a position, which moves on to the next node.</summary>
+    public static Tails<TNumber> Node(
+        ReadOnlySpan<int> words, ref int position, IReadOnlyList<FormDistribution> distributions, TChances chances,
+        Tails<TNumber>[] values, TNumber[]?[] weights)
+    {
+        int header = words[position];
+        ReadOnlySpan<int> edges = words.Slice(position + 1, header >> 2);
+        position += 1 + edges.Length;
+        switch ((FormNodeKind)(header & 3))
+        {
+            case FormNodeKind.Literal:
+                return chances.Literal(edges[0]);
+            case FormNodeKind.Conjunction:
+                return Conjunction(edges, values);
+            case FormNodeKind.Decision:
+                return Decision(edges, values);
+            default:
+                int distribution = edges[0];
+                edges = words.Slice(position - edges.Length + 1, edges.Length);
+                position++;
+                return Choice(edges, weights[distribution] ??= chances.Weights(distributions[distribution]), values);
+        }
     }
 
     private static Tails<TNumber> Conjunction(ReadOnlySpan<int> edges, Tails<TNumber>[] values)

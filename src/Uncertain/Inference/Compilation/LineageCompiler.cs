@@ -1,4 +1,5 @@
 using Uncertain.Lineages;
+using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Compilation;
 
@@ -19,16 +20,19 @@ internal sealed class LineageCompiler
     private readonly TermFactoring _factoring;
     private readonly CircuitCompiler _circuits;
 
-    private LineageCompiler(LineageArena arena, LineageRef root, CompilationBudget budget)
+    private readonly FormValues? _values;
+
+    private LineageCompiler(LineageArena arena, LineageRef root, CompilationBudget budget, ChanceSetting? setting)
     {
         _budget = budget;
+        _values = setting is null ? null : new FormValues(_form, setting);
         _graph = FormulaGraph.Collect(arena, root, _form, budget);
         _atoms = _graph.Atoms;
         _resolved = new LineageRef[_graph.NodeCount + 1];
         _isModule = ModuleFinder.Find(_graph, budget);
         var workspace = new Workspace(_atoms);
         _simplifier = new TermSimplifier(_atoms, workspace, budget);
-        _factoring = new TermFactoring(_atoms, workspace, _form, budget);
+        _factoring = new TermFactoring(_atoms, workspace, _form, budget, _values);
         _circuits = new CircuitCompiler(_atoms, workspace, _form, budget);
     }
 
@@ -43,10 +47,31 @@ internal sealed class LineageCompiler
             return form.Finish(edge ^ (root.IsNegated ? 1 : 0));
         }
 
-        return new LineageCompiler(arena, root, budget).Run();
+        var compiler = new LineageCompiler(arena, root, budget, null);
+        return compiler._form.Finish(compiler.Run());
     }
 
-    private CompiledForm Run()
+    /// <summary>
+    /// As <see cref="Compile"/>, for one evaluation: parts may be computed on the way, without a form. Then <paramref name="tails"/>
+    /// are those of the whole, and the form is of no use but for its size.
+    /// </summary>
+    /// <exception cref="BudgetSpentException">A budget ran out.</exception>
+    public static CompiledForm CompileOrEvaluate(
+        LineageArena arena, LineageRef root, CompilationBudget budget, out Tails<ExtendedDouble>? tails)
+    {
+        tails = null;
+        if (!root.IsNode)
+        {
+            return Compile(arena, root, budget);
+        }
+
+        var compiler = new LineageCompiler(arena, root, budget, new ChanceSetting(arena.Worlds.Variables));
+        int edge = compiler.Run();
+        tails = compiler._values!.HasKnown ? compiler._values.Of(edge) : null;
+        return compiler._form.Finish(edge);
+    }
+
+    private int Run()
     {
         for (int node = 1; node <= _graph.NodeCount; node++)
         {
@@ -63,7 +88,7 @@ internal sealed class LineageCompiler
 
         LineageRef root = _resolved[_graph.Root.Index];
         int result = root.IsLiteral ? _atoms.Edge(root.Index) : FormBuilder.True;
-        return _form.Finish(result ^ (root.IsNegated != _graph.Root.IsNegated ? 1 : 0));
+        return result ^ (root.IsNegated != _graph.Root.IsNegated ? 1 : 0);
     }
 
     private int Module(int node)

@@ -1,4 +1,5 @@
 using System.Runtime.InteropServices;
+using Uncertain.Inference.Compilation.Buckets;
 
 namespace Uncertain.Inference.Compilation;
 
@@ -6,8 +7,15 @@ namespace Uncertain.Inference.Compilation;
 /// Compiles a list of terms by decisions: the variables are ordered by an elimination tree of the graph that joins variables
 /// of one term, and the terms are nested along that tree.
 /// </summary>
-internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
+internal sealed class TermCompiler(
+    AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget, FormValues? values)
 {
+    // A state of a bucket takes a tenth of a microsecond at most, a residual formula or a node of the form near one.
+    private const double StatesPerNode = 64;
+
+    // Up to here, a tenth of a second, buckets need no comparison with decisions.
+    private const double QuickStates = 1 << 24;
+
     // Up to here all pairs of a term's variables are joined; beyond, the terms become vertices between them.
     private const long JoinedPairs = 4_000_000;
 
@@ -17,7 +25,64 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
     private const int Narrow = 8;
 
     /// <summary>The edge to the compiled disjunction.</summary>
-    public int Compile(TermList terms)
+    public int Compile(TermList terms) => values is null ? Decide(terms) : Evaluate(terms, values);
+
+    /// <summary>By buckets where these are cheap; else by decisions, for as long as buckets would take where they can be.</summary>
+    private int Evaluate(TermList terms, FormValues known)
+    {
+        var network = new TermNetwork(terms, atoms, workspace, budget);
+        if (BucketPlan.TryMake(network, budget) is not { } plan)
+        {
+            return Decide(terms);
+        }
+
+        long bytes = BucketElimination.Bytes(network, plan);
+        double nodes = plan.Cost / StatesPerNode;
+        if (nodes >= budget.NodesLeft || !budget.CanTake(bytes))
+        {
+            return Decide(terms);
+        }
+
+        if (plan.Cost > QuickStates)
+        {
+            if (TryDecide(terms, (long)nodes) is { } edge)
+            {
+                return edge;
+            }
+
+            network = new TermNetwork(terms, atoms, workspace, budget);
+        }
+
+        budget.Bytes(bytes);
+        int result = known.Add(BucketElimination.Run(network, plan, atoms, known, budget));
+        budget.Bytes(-bytes);
+        budget.Nodes((int)nodes);
+        return result;
+    }
+
+    private int? TryDecide(TermList terms, long residuals)
+    {
+        (int Words, int Nodes) mark = form.Mark();
+        (long Nodes, long Residuals) spent = budget.Mark();
+        budget.StartTrial(residuals);
+        try
+        {
+            return Decide(terms);
+        }
+        catch (BudgetSpentException exception) when (exception.IsTrial)
+        {
+            form.ReturnTo(mark);
+            values!.ReturnTo(mark);
+            budget.Refund(spent);
+            return null;
+        }
+        finally
+        {
+            budget.StartTrial(null);
+        }
+    }
+
+    private int Decide(TermList terms)
     {
         int[] variables = workspace.NumberVariables(terms);
         int[] homes = new int[terms.Count];
@@ -35,10 +100,15 @@ internal sealed class TermCompiler(AtomTable atoms, Workspace workspace, FormBui
 
         var arena = new ResidualArena(atoms, ranks, FlatWidthFor(tree.Width), budget);
         int root = TreeNesting.And(arena, Clauses(arena, terms), TreeNumbering.ParentRanks(tree, order));
-        arena.StartDeciding();
-        int edge = new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root);
-        budget.Bytes(-arena.Bytes);
-        return edge ^ 1;
+        try
+        {
+            arena.StartDeciding();
+            return new DecisionCompiler(arena, atoms, variableOfRank, form, budget).Compile(root) ^ 1;
+        }
+        finally
+        {
+            budget.Bytes(-arena.Bytes);
+        }
     }
 
     private static int FlatWidthFor(int width) => width <= 3 ? 0 : width <= Narrow ? NarrowWidth : FlatWidth;

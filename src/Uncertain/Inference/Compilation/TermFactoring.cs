@@ -13,11 +13,12 @@ namespace Uncertain.Inference.Compilation;
 /// of the co-occurrence graph and of its complement give the factors; instead of normality, the number of combinations is
 /// compared, so that parts which are not read-once do no harm to those which are.
 /// </remarks>
-internal sealed class TermFactoring(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
+internal sealed class TermFactoring(
+    AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget, FormValues? values)
 {
     private const long ComplementWork = 50_000_000;
 
-    private readonly TermCompiler _compiler = new(atoms, workspace, form, budget);
+    private readonly TermCompiler _compiler = new(atoms, workspace, form, budget, values);
 
     /// <summary>The edge to the compiled disjunction of simplified terms.</summary>
     public int Compile(TermList terms)
