@@ -1,5 +1,4 @@
 using System.Numerics;
-using MathNet.Numerics;
 using MathNet.Numerics.Distributions;
 using Uncertain.Inference.Sampling;
 
@@ -26,7 +25,15 @@ public class RandomBitsTests
         {
             (int numerator, bool adds, RareBits rare) = new BiasedBits(chance, default).Parts;
             double part = rare.Mean / WorldBlock.Worlds;
-            double rest = part < 1e-10 ? part * (1 - (part / 2)) : -SpecialFunctions.Expm1(-part);
+
+            // 1 - e^-x by the series of the exponential, the last term first.
+            double rest = 1;
+            for (int n = 10; n > 1; n--)
+            {
+                rest = 1 - (part / n * rest);
+            }
+
+            rest *= part;
             double q = numerator / 256.0;
             double ones = adds ? q + ((1 - q) * rest) : q * (1 - rest);
             double zeros = adds ? (1 - q) * (1 - rest) : (1 - q) + (q * rest);
