@@ -11,14 +11,11 @@ internal readonly struct AlignedWords
     private readonly int _start;
     private readonly int _count;
 
-    /// <param name="count">Number of words.</param>
-    /// <param name="zero">Whether they start as 0; otherwise they hold anything.</param>
-    public AlignedWords(int count, bool zero = false)
+    /// <param name="count">Number of words, which hold anything.</param>
+    public AlignedWords(int count)
     {
         _count = count;
-        _array = zero
-            ? GC.AllocateArray<ulong>(count + LineWords, pinned: true)
-            : GC.AllocateUninitializedArray<ulong>(count + LineWords, pinned: true);
+        _array = GC.AllocateUninitializedArray<ulong>(count + LineWords, pinned: true);
         long address = Marshal.UnsafeAddrOfPinnedArrayElement(_array, 0);
         _start = (int)((-address >> 3) & (LineWords - 1));
     }

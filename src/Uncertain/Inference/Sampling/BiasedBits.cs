@@ -3,105 +3,86 @@ using System.Runtime.CompilerServices;
 
 namespace Uncertain.Inference.Sampling;
 
-/// <summary>
-/// A stream of independent bits, each 1 with exactly the given chance: lane by lane a random number in [0, 1) is compared with
-/// the binary expansion of the chance, one random bit at a time, until all lanes are decided.
-/// </summary>
+/// <summary>A stream of independent bits, each 1 with the given chance; drawn in blocks of worlds.</summary>
 /// <remarks>
-/// A lane is undecided with chance 2^-k after k bits, so 64 W lanes take about 7 + log2(W) random words in all, whatever the
-/// chance. The expansion of a double ends after at most 1074 bits; a chance of 1/2 takes one word, 1/4 at most two.
+/// <para>The chance is split into a multiple of 1/256 and a small rest. Bits with chance n/256 are made of at most eight random words
+/// by conjunctions and disjunctions: from the last digit of n/256 in binary to the first, a 0 halves the chance and a 1 halves the
+/// chance of the complement. The rest is made up for by <see cref="RareBits"/>, which add ones or take them away: with
+/// the multiple q below the chance p, 1 - (1 - q)(1 - r) = p for r = (p - q)/(1 - q).</para>
+/// <para>p - q and 1 - q are exact in double, so that the chance, or its complement if that is smaller, is met to some units in
+/// the last place. A chance below 1/1000 costs next to nothing.</para>
 /// </remarks>
 internal readonly struct BiasedBits
 {
-    // Words of one place of 64 worlds lie next to each other in the stream; 2^11 leaves room for the longest expansion.
-    private const int PlaceShift = 11;
+    private const int Digits = 8;
 
     private readonly SplitMixStream _stream;
-    private readonly ulong _mantissa;
-    private readonly int _leadingZeros;
-    private readonly int _length;
+    private readonly RareBits _rare;
+    private readonly ushort _numerator;
+    private readonly bool _adds;
 
     public BiasedBits(double chance, SplitMixStream stream)
     {
-        Chance = chance;
         _stream = stream;
-        if (chance is > 0 and < 1)
-        {
-            ulong bits = BitConverter.DoubleToUInt64Bits(chance);
-            int exponent = (int)(bits >> 52);
-            ulong fraction = bits & ((1UL << 52) - 1);
-            ulong significand = exponent == 0 ? fraction : fraction | (1UL << 52);
+        double scaled = chance * (1 << Digits);
+        double below = Math.Floor(scaled) / (1 << Digits);
+        double above = Math.Ceiling(scaled) / (1 << Digits);
+        double added = below < 1 ? (chance - below) / (1 - below) : 0;
+        double taken = above > 0 ? (above - chance) / above : 0;
 
-            // chance = significand * 2^-scale
-            int scale = exponent == 0 ? 1074 : 1075 - exponent;
-            int width = 64 - BitOperations.LeadingZeroCount(significand);
-            _leadingZeros = scale - width;
-            _mantissa = significand << (64 - width);
-            _length = scale - BitOperations.TrailingZeroCount(significand);
-        }
+        // One of the two is at most 1/257.
+        _adds = added <= taken;
+        _numerator = (ushort)((_adds ? below : above) * (1 << Digits));
+        _rare = new RareBits(_adds ? added : taken);
     }
 
-    public double Chance { get; }
+    /// <summary>The parts of the chance: n/256, and whether the rare bits are ones or zeros.</summary>
+    public (int Numerator, bool Adds, RareBits Rare) Parts => (_numerator, _adds, _rare);
 
-    /// <summary>Fills a whole number of vectors with the bits of the worlds from 64 * <paramref name="firstPlace"/> on.</summary>
-    public void Fill<TVector>(ulong firstPlace, Span<ulong> words)
+    /// <summary>Draws the bits of a block of worlds.</summary>
+    public void Fill<TVector>(ulong block, Span<ulong> words)
         where TVector : struct, IWordVector<TVector>
     {
-        if (_length == 0)
+        words = words[..WorldBlock.Words];
+        if (_numerator is 0 or 1 << Digits)
         {
-            words.Fill(Chance == 0 ? 0 : ulong.MaxValue);
-            return;
+            words.Fill(_numerator == 0 ? 0 : ulong.MaxValue);
         }
-
-        TVector gamma = TVector.Create(_stream.Gamma);
-        TVector step = TVector.Create((_stream.Gamma << PlaceShift) * (ulong)TVector.Count);
-        TVector place = TVector.Ramp(_stream.Start + (firstPlace << PlaceShift) * _stream.Gamma, _stream.Gamma << PlaceShift);
-        for (int i = 0; i < words.Length; i += TVector.Count)
+        else
         {
-            Compare(place, gamma).Store(ref words[i]);
-            place += step;
-        }
-    }
-
-    [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private TVector Compare<TVector>(TVector counter, TVector gamma)
-        where TVector : struct, IWordVector<TVector>
-    {
-        TVector smaller = default;
-        TVector undecided = TVector.Create(ulong.MaxValue);
-        int position = 0;
-        do
-        {
-            // Looking at the lanes costs more than a word, and hardly ever are all decided before the eighth.
-            int end = Math.Min(position == 0 ? 8 : position + 2, _length);
-            for (; position < end; position++)
+            for (int lane = 0; lane < WorldBlock.Lanes; lane += TVector.Count)
             {
-                TVector random = Mix(counter);
-                counter += gamma;
-                TVector bit = TVector.Create(Bit(position));
-                TVector other = random ^ bit;
-                smaller |= undecided & bit & other;
-                undecided = TVector.AndNot(undecided, other);
+                FillLanes<TVector>(block, lane, ref words[lane]);
             }
         }
-        while (position < _length && !undecided.IsZero);
-        return smaller;
+
+        _rare.Write(_adds, _stream, block, words);
     }
 
-    // All ones where the expansion has a 1 at the position, else 0.
-    private ulong Bit(int position)
-    {
-        // Without a branch, which would be mispredicted for every second variable.
-        int place = position - _leadingZeros;
-        return (ulong)(((long)(_mantissa << place) >> 63) & ~(long)(place >> 31));
-    }
-
-    [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private static TVector Mix<TVector>(TVector z)
+    // Not inlined: the inliner gives up half way through so many operators if it starts from a small method.
+    [MethodImpl(MethodImplOptions.NoInlining | MethodImplOptions.AggressiveOptimization)]
+    private void FillLanes<TVector>(ulong block, int lane, ref ulong words)
         where TVector : struct, IWordVector<TVector>
     {
-        z = (z ^ (z >>> 30)) * TVector.Create(SplitMixStream.FirstFactor);
-        z = (z ^ (z >>> 27)) * TVector.Create(SplitMixStream.SecondFactor);
-        return z ^ (z >>> 31);
+        var source = WordSource<TVector>.At(_stream, block, lane);
+        TVector first = default;
+        TVector second = default;
+        TVector third = default;
+        TVector fourth = default;
+        for (int digit = BitOperations.TrailingZeroCount(_numerator); digit < Digits; digit++)
+        {
+            TVector mask = TVector.Create((ulong)-(long)((_numerator >> digit) & 1));
+            (TVector a, TVector b) = source.Next();
+            first = TVector.Majority(first, a, mask);
+            second = TVector.Majority(second, b, mask);
+            (a, b) = source.Next();
+            third = TVector.Majority(third, a, mask);
+            fourth = TVector.Majority(fourth, b, mask);
+        }
+
+        first.Store(ref words);
+        second.Store(ref Unsafe.Add(ref words, WorldBlock.Lanes));
+        third.Store(ref Unsafe.Add(ref words, 2 * WorldBlock.Lanes));
+        fourth.Store(ref Unsafe.Add(ref words, 3 * WorldBlock.Lanes));
     }
 }

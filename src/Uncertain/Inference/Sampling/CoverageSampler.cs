@@ -59,8 +59,6 @@ internal sealed class CoverageSampler(SamplingTask task, VariableTable variables
 
     private Team CreateTeam(CoverageProgram program)
     {
-        const int width = CoverageWorker<OneWord>.Width;
-        long rows = (2L * program.Draws.RowCount) + program.Draws.VariableCount;
         return new Team(
             task.Width switch
             {
@@ -68,7 +66,7 @@ internal sealed class CoverageSampler(SamplingTask task, VariableTable variables
                 VectorWidth.Four => () => new CoverageWorker<FourWords>(program, task.Budget),
                 _ => () => new CoverageWorker<OneWord>(program, task.Budget),
             },
-            task.ThreadsFor(rows * width * sizeof(ulong)),
-            64L * width * Math.Max(1, WorkPerPiece / program.Work));
+            task.ThreadsFor((long)program.Draws.RowCount * WorldBlock.Words * sizeof(ulong)),
+            WorldBlock.Worlds * Math.Max(1, WorkPerPiece / (4 * program.Work)));
     }
 }

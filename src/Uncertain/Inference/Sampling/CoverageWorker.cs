@@ -10,22 +10,16 @@ namespace Uncertain.Inference.Sampling;
 internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudget budget) : IWorker
     where TVector : struct, IWordVector<TVector>
 {
-    /// <summary>Words of a row; the worlds of a block are 64 times as many.</summary>
-    public const int Width = 8;
-
-    private const int BlockSize = 64 * Width;
+    private const int Width = WorldBlock.Words;
+    private const int BlockSize = WorldBlock.Worlds;
     private const long WorkPerCheck = 100_000;
     private const int TermsPerCheck = 4096;
 
     private readonly AlignedWords _words = new(program.Draws.RowCount * Width);
     private readonly AlignedWords _covered = new(Width);
 
-    // The bits that the chosen terms force, and the variables that are forced. All 0 between blocks: a block touches few of
-    // them, which are listed.
-    private readonly AlignedWords _forced = new(program.Draws.RowCount * Width, zero: true);
-    private readonly AlignedWords _fixed = new(program.Draws.VariableCount * Width, zero: true);
-    private readonly List<int> _touchedForced = [];
-    private readonly List<int> _touchedFixed = [];
+    // What the chosen terms force: in a world, the variable's only row that holds, or -1 if none does.
+    private readonly List<(int Lane, int Variable, int Row)> _forced = [];
 
     // For each term the worlds that chose it, as a list through _next; numbers from 1, 0 for the end.
     private readonly int[] _firstLane = new int[program.TermCount];
@@ -37,11 +31,13 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
 
     public bool Run(long from, long to)
     {
-        for (long world = from; world < to; world += BlockSize)
+        int skipped;
+        for (long world = from; world < to; world += BlockSize - skipped)
         {
-            int lanes = (int)Math.Min(BlockSize, to - world);
-            Choose(world, lanes);
-            if (!Draw((ulong)world / 64) || !Count(lanes))
+            skipped = (int)(world % BlockSize);
+            int lanes = (int)Math.Min(BlockSize, to - (world - skipped));
+            Choose(world - skipped, skipped, lanes);
+            if (!Draw((ulong)(world / BlockSize)) || !Count(lanes - skipped))
             {
                 return false;
             }
@@ -50,26 +46,21 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
         return true;
     }
 
-    private void Choose(long world, int lanes)
+    private void Choose(long block, int start, int end)
     {
-        Reset(_forced.Span, _touchedForced);
-        Reset(_fixed.Span, _touchedFixed);
-        for (int lane = 0; lane < lanes; lane++)
+        _forced.Clear();
+        for (int lane = start; lane < end; lane++)
         {
-            int term = program.Choose(world + lane);
+            int term = program.Choose(block + lane);
             _nextLane[lane] = _firstLane[term];
             _firstLane[term] = lane + 1;
-            Force(program.Operands(term), lane, world + lane);
+            Force(program.Operands(term), lane, block + lane);
         }
     }
 
     private void Force(ReadOnlySpan<int> operands, int lane, long world)
     {
         Draws draws = program.Draws;
-        Span<ulong> forced = _forced.Span;
-        Span<ulong> settled = _fixed.Span;
-        ulong bit = 1UL << (lane & 63);
-        int column = lane >> 6;
         int i = 0;
         while (i < operands.Length)
         {
@@ -88,49 +79,32 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
                 isNegated = row < 0;
             }
 
-            settled[(variable * Width) + column] |= bit;
-            _touchedFixed.Add((variable * Width) + column);
-            if (!isNegated)
-            {
-                forced[(row * Width) + column] |= bit;
-                _touchedForced.Add((row * Width) + column);
-            }
+            _forced.Add((lane, variable, isNegated ? -1 : row));
         }
     }
 
-    private static void Reset(Span<ulong> words, List<int> touched)
-    {
-        foreach (int index in touched)
-        {
-            words[index] = 0;
-        }
-
-        touched.Clear();
-    }
-
-    private bool Draw(ulong place)
+    private bool Draw(ulong block)
     {
         Draws draws = program.Draws;
         Span<ulong> words = _words.Span;
-        Span<ulong> forced = _forced.Span;
-        Span<ulong> settled = _fixed.Span;
         for (int variable = 0; variable < draws.VariableCount; variable++)
         {
-            draws.Draw<TVector>(variable, place, words, Width);
-            for (int row = draws.FirstRow(variable); row < draws.EndRow(variable); row++)
-            {
-                for (int column = 0; column < Width; column += TVector.Count)
-                {
-                    int at = (row * Width) + column;
-                    TVector free = TVector.AndNot(
-                        TVector.Load(ref words[at]), TVector.Load(ref settled[(variable * Width) + column]));
-                    (free | TVector.Load(ref forced[at])).Store(ref words[at]);
-                }
-            }
-
-            if (!Spend(Draws.WorkPerRow * (draws.EndRow(variable) - draws.FirstRow(variable))))
+            int row = draws.FirstRow(variable);
+            int end = draws.EndRow(variable);
+            draws.Draw<TVector>(variable, block, words[(row * Width)..(end * Width)]);
+            if (!Spend(Draws.WorkPerRow * (end - row) * Width))
             {
                 return false;
+            }
+        }
+
+        foreach ((int lane, int variable, int forced) in _forced)
+        {
+            ulong bit = 1UL << (lane & 63);
+            for (int row = draws.FirstRow(variable); row < draws.EndRow(variable); row++)
+            {
+                ref ulong word = ref words[(row * Width) + (lane >> 6)];
+                word = row == forced ? word | bit : word & ~bit;
             }
         }
 
@@ -153,7 +127,7 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
 
             // The worlds in which an earlier term holds count for that one.
             ReadOnlySpan<int> earlier = program.Between(evaluated, term);
-            GateKernel.Unite<TVector>(earlier, ref MemoryMarshal.GetReference(covered), ref words, Width);
+            GateKernel.Unite<TVector>(earlier, ref MemoryMarshal.GetReference(covered), ref words);
             evaluated = term;
             for (int lane = _firstLane[term]; lane != 0; lane = _nextLane[lane - 1])
             {
@@ -162,7 +136,7 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
             }
 
             _firstLane[term] = 0;
-            if (!Spend(earlier.Length))
+            if (!Spend((long)earlier.Length * Width))
             {
                 return false;
             }
@@ -173,7 +147,7 @@ internal sealed class CoverageWorker<TVector>(CoverageProgram program, WorkBudge
 
     private bool Spend(long work)
     {
-        _work += work;
+        _work += work / WorldBlock.Lanes;
         if (_work < WorkPerCheck)
         {
             return true;

@@ -8,9 +8,8 @@ namespace Uncertain.Inference.Sampling;
 /// </summary>
 internal sealed class DirectSampler(SamplingTask task, LineageArena arena)
 {
-    // Rows of 32 words let four vectors share the decoding of an operand, which is worth more than the cache; at most 16 MB.
+    // Rows of a whole block let four vectors share the decoding of an operand, which is worth more than the cache; at most 16 MB.
     private const int WideRows = 65_536;
-    private const int WideWidth = 32;
     private const int NarrowWidth = 8;
     private const long WorkPerPiece = 200_000;
 
@@ -102,8 +101,8 @@ internal sealed class DirectSampler(SamplingTask task, LineageArena arena)
 
     private Team CreateTeam(WorldProgram program)
     {
-        long wideBytes = (long)program.RowCount * WideWidth * sizeof(ulong) * task.Threads;
-        int width = program.RowCount <= WideRows && !(wideBytes > task.MemoryBudget) ? WideWidth : NarrowWidth;
+        long wideBytes = (long)program.RowCount * WorldBlock.Words * sizeof(ulong) * task.Threads;
+        int width = program.RowCount <= WideRows && !(wideBytes > task.MemoryBudget) ? WorldBlock.Words : NarrowWidth;
         long tile = 64L * width;
         long pieceSize = tile * Math.Max(1, WorkPerPiece / (program.Work * (width / 8)));
         int threads = task.ThreadsFor((long)program.RowCount * width * sizeof(ulong));

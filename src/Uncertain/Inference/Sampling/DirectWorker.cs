@@ -14,6 +14,9 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
     private const int Granularity = 8;
 
     private readonly AlignedWords _words = new(program.RowCount * width);
+
+    // One variable's rows of a block of which only a part is wanted.
+    private readonly ulong[] _block = new ulong[program.Draws.MostRows * WorldBlock.Words];
     private readonly long[] _successes = new long[program.Roots.Length];
     private long _work;
 
@@ -24,10 +27,11 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
         int tile;
         for (long world = from; world < to; world += 64L * tile)
         {
-            // The last tile is only as wide as it must be.
+            // Only as wide as it must be, and within one block.
             long needed = (to - world + (64 * Granularity) - 1) / (64 * Granularity) * Granularity;
-            tile = (int)Math.Min(width, needed);
-            if (!Draw((ulong)world / 64, tile) || !Evaluate(tile))
+            int start = (int)(world / 64 % WorldBlock.Words);
+            tile = (int)Math.Min(Math.Min(width, WorldBlock.Words - start), needed);
+            if (!Draw((ulong)(world / WorldBlock.Worlds), start, tile) || !Evaluate(tile))
             {
                 return false;
             }
@@ -38,14 +42,29 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
         return true;
     }
 
-    private bool Draw(ulong place, int tile)
+    private bool Draw(ulong block, int start, int tile)
     {
         Draws draws = program.Draws;
         Span<ulong> words = _words.Span;
         for (int variable = 0; variable < draws.VariableCount; variable++)
         {
-            draws.Draw<TVector>(variable, place, words, tile);
-            if (!Spend(Draws.WorkPerRow * (draws.EndRow(variable) - draws.FirstRow(variable)) * tile))
+            int row = draws.FirstRow(variable);
+            int end = draws.EndRow(variable);
+            if (tile == WorldBlock.Words)
+            {
+                draws.Draw<TVector>(variable, block, words[(row * WorldBlock.Words)..(end * WorldBlock.Words)]);
+            }
+            else
+            {
+                Span<ulong> whole = _block.AsSpan(0, (end - row) * WorldBlock.Words);
+                draws.Draw<TVector>(variable, block, whole);
+                for (int i = 0; i < end - row; i++)
+                {
+                    whole.Slice((i * WorldBlock.Words) + start, tile).CopyTo(words[((row + i) * tile)..]);
+                }
+            }
+
+            if (!Spend(Draws.WorkPerRow * (end - row) * WorldBlock.Words))
             {
                 return false;
             }

@@ -6,12 +6,12 @@ namespace Uncertain.Inference.Sampling;
 /// <remarks>
 /// A many-outcome variable has a row for each slot up to the last one in use. Outcome i is drawn given that none before it
 /// happened, with chance c_i / (c_i + c_i+1 + ... + none): sums of non-negative numbers, so that rounding is at most some units
-/// in the last place. The bits of a slot depend on the seed, the slot and the world only, whatever else a program holds.
+/// in the last place. The bits of a slot depend on the seed, the slot and the block of worlds only, whatever else a program holds.
 /// </remarks>
 internal sealed class Draws
 {
     /// <summary>What drawing 512 bits costs, roughly, in vector operations of 512 bits.</summary>
-    public const long WorkPerRow = 100;
+    public const long WorkPerRow = 40;
 
     private readonly VariableTable _variables;
     private readonly int[] _slotOfRow;
@@ -51,6 +51,7 @@ internal sealed class Draws
         for (int variable = 0; variable < VariableCount && !((variable & 0xFFF) == 0xFFF && budget.HasEnded); variable++)
         {
             AddVariable(variable);
+            MostRows = Math.Max(MostRows, EndRow(variable) - FirstRow(variable));
         }
     }
 
@@ -61,6 +62,9 @@ internal sealed class Draws
 
     public int VariableCount => _firstRow.Length - 1;
 
+    /// <summary>Rows of the variable that has most of them.</summary>
+    public int MostRows { get; }
+
     public int RowOf(int slot) => _rowOfSlot[slot];
 
     public int SlotOf(int row) => _slotOfRow[row];
@@ -69,40 +73,39 @@ internal sealed class Draws
 
     public int EndRow(int variable) => _firstRow[variable + 1];
 
-    /// <summary>Draws the rows of one variable for the worlds from 64 * <paramref name="firstPlace"/> on.</summary>
-    public void Draw<TVector>(int variable, ulong firstPlace, Span<ulong> words, int width)
+    /// <summary>Draws a block of worlds of one variable: <see cref="WorldBlock.Words"/> words for each of its rows.</summary>
+    public void Draw<TVector>(int variable, ulong block, Span<ulong> words)
         where TVector : struct, IWordVector<TVector>
     {
-        int row = FirstRow(variable);
-        Span<ulong> target = words.Slice(row * width, width);
-        _bits[row].Fill<TVector>(firstPlace, target);
-        if (row + 1 < EndRow(variable))
+        int first = FirstRow(variable);
+        int end = EndRow(variable);
+        _bits[first].Fill<TVector>(block, words[..WorldBlock.Words]);
+        if (first + 1 < end)
         {
-            DrawFurtherOutcomes<TVector>(row + 1, EndRow(variable), firstPlace, words, width);
+            DrawFurtherOutcomes<TVector>(_bits.AsSpan((first + 1)..end), block, words);
         }
     }
 
-    private void DrawFurtherOutcomes<TVector>(int row, int end, ulong firstPlace, Span<ulong> words, int width)
+    private static void DrawFurtherOutcomes<TVector>(ReadOnlySpan<BiasedBits> outcomes, ulong block, Span<ulong> words)
         where TVector : struct, IWordVector<TVector>
     {
-        Span<ulong> open = stackalloc ulong[width];
-        Span<ulong> previous = words.Slice((row - 1) * width, width);
-        for (int i = 0; i < width; i++)
+        Span<ulong> open = stackalloc ulong[WorldBlock.Words];
+        for (int i = 0; i < WorldBlock.Words; i++)
         {
-            open[i] = ~previous[i];
+            open[i] = ~words[i];
         }
 
-        for (; row < end; row++)
+        for (int outcome = 0; outcome < outcomes.Length; outcome++)
         {
-            Span<ulong> target = words.Slice(row * width, width);
+            Span<ulong> target = words.Slice((outcome + 1) * WorldBlock.Words, WorldBlock.Words);
             if (!open.ContainsAnyExcept(0UL))
             {
                 target.Clear();
                 continue;
             }
 
-            _bits[row].Fill<TVector>(firstPlace, target);
-            for (int i = 0; i < width; i++)
+            outcomes[outcome].Fill<TVector>(block, target);
+            for (int i = 0; i < WorldBlock.Words; i++)
             {
                 target[i] &= open[i];
                 open[i] &= ~target[i];

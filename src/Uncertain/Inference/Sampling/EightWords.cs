@@ -1,5 +1,7 @@
+using System.Diagnostics.CodeAnalysis;
 using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
+using System.Runtime.Intrinsics.X86;
 
 namespace Uncertain.Inference.Sampling;
 
@@ -9,8 +11,6 @@ internal readonly struct EightWords(Vector512<ulong> value) : IWordVector<EightW
     private readonly Vector512<ulong> _value = value;
 
     public static int Count => 8;
-
-    public bool IsZero => _value == Vector512<ulong>.Zero;
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static EightWords operator &(EightWords left, EightWords right) => new(left._value & right._value);
@@ -31,7 +31,20 @@ internal readonly struct EightWords(Vector512<ulong> value) : IWordVector<EightW
     public static EightWords operator >>>(EightWords value, int shift) => new(value._value >>> shift);
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords operator <<(EightWords value, int shift) => new(value._value << shift);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static EightWords AndNot(EightWords left, EightWords right) => new(Vector512.AndNot(left._value, right._value));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords RotateLeft(EightWords value, [ConstantExpected] byte shift) => new(Avx512F.IsSupported
+        ? Avx512F.RotateLeft(value._value, shift)
+        : (value._value << shift) | (value._value >>> (64 - shift)));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static EightWords Majority(EightWords a, EightWords b, EightWords c) => new(Avx512F.IsSupported
+        ? Avx512F.TernaryLogic(a._value, b._value, c._value, 0xE8)
+        : (a._value & b._value) | (c._value & (a._value | b._value)));
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static EightWords Create(ulong word) => new(Vector512.Create(word));

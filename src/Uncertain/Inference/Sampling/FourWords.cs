@@ -1,3 +1,4 @@
+using System.Diagnostics.CodeAnalysis;
 using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
@@ -9,8 +10,6 @@ internal readonly struct FourWords(Vector256<ulong> value) : IWordVector<FourWor
     private readonly Vector256<ulong> _value = value;
 
     public static int Count => 4;
-
-    public bool IsZero => _value == Vector256<ulong>.Zero;
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static FourWords operator &(FourWords left, FourWords right) => new(left._value & right._value);
@@ -31,7 +30,18 @@ internal readonly struct FourWords(Vector256<ulong> value) : IWordVector<FourWor
     public static FourWords operator >>>(FourWords value, int shift) => new(value._value >>> shift);
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static FourWords operator <<(FourWords value, int shift) => new(value._value << shift);
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static FourWords AndNot(FourWords left, FourWords right) => new(Vector256.AndNot(left._value, right._value));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static FourWords RotateLeft(FourWords value, [ConstantExpected] byte shift) =>
+        new((value._value << shift) | (value._value >>> (64 - shift)));
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public static FourWords Majority(FourWords a, FourWords b, FourWords c) =>
+        new((a._value & b._value) | (c._value & (a._value | b._value)));
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static FourWords Create(ulong word) => new(Vector256.Create(word));

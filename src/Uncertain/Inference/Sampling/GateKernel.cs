@@ -22,7 +22,8 @@ internal static class GateKernel
             int column = 0;
             for (; column + (4 * TVector.Count) <= width; column += 4 * TVector.Count)
             {
-                FourColumns<TVector>(operands, ref Unsafe.Add(ref words, column), width, ref Unsafe.Add(ref target, column));
+                And(operands, ref Unsafe.Add(ref words, column), width, out TVector a, out TVector b, out TVector c, out TVector d);
+                Store(ref Unsafe.Add(ref target, column), a, b, c, d);
             }
 
             for (; column < width; column += TVector.Count)
@@ -38,26 +39,32 @@ internal static class GateKernel
     }
 
     /// <summary>
-    /// Adds to <paramref name="union"/>, of <paramref name="width"/> words, the worlds in which some conjunction of
-    /// <paramref name="code"/> holds.
+    /// Adds to <paramref name="union"/>, of a block's words, the worlds in which some conjunction of <paramref name="code"/> holds.
     /// </summary>
-    public static void Unite<TVector>(ReadOnlySpan<int> code, ref ulong union, ref ulong words, int width)
+    public static void Unite<TVector>(ReadOnlySpan<int> code, ref ulong union, ref ulong words)
         where TVector : struct, IWordVector<TVector>
     {
-        for (int column = 0; column < width; column += TVector.Count)
+        for (int column = 0; column < WorldBlock.Words; column += 4 * TVector.Count)
         {
             ref ulong source = ref Unsafe.Add(ref words, column);
             ref ulong target = ref Unsafe.Add(ref union, column);
-            TVector sum = TVector.Load(ref target);
+            TVector first = TVector.Load(ref target);
+            TVector second = TVector.Load(ref Unsafe.Add(ref target, TVector.Count));
+            TVector third = TVector.Load(ref Unsafe.Add(ref target, 2 * TVector.Count));
+            TVector fourth = TVector.Load(ref Unsafe.Add(ref target, 3 * TVector.Count));
             int position = 0;
             while (position < code.Length)
             {
                 ReadOnlySpan<int> operands = code.Slice(position + 1, code[position]);
-                sum |= OneColumn<TVector>(operands, ref source, width);
+                And(operands, ref source, WorldBlock.Words, out TVector a, out TVector b, out TVector c, out TVector d);
+                first |= a;
+                second |= b;
+                third |= c;
+                fourth |= d;
                 position += 1 + operands.Length;
             }
 
-            sum.Store(ref target);
+            Store(ref target, first, second, third, fourth);
         }
     }
 
@@ -74,11 +81,12 @@ internal static class GateKernel
         return all;
     }
 
+    /// <summary>One conjunction in four columns: four accumulators hide the latency of the loads and share the decoding of the operand.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private static void FourColumns<TVector>(ReadOnlySpan<int> operands, ref ulong words, int width, ref ulong target)
+    private static void And<TVector>(
+        ReadOnlySpan<int> operands, ref ulong words, int width, out TVector a, out TVector b, out TVector c, out TVector d)
         where TVector : struct, IWordVector<TVector>
     {
-        // Four accumulators hide the latency of the loads and share the decoding of the operand.
         TVector first = TVector.Create(ulong.MaxValue);
         TVector second = first;
         TVector third = first;
@@ -93,6 +101,16 @@ internal static class GateKernel
             fourth &= TVector.Load(ref Unsafe.Add(ref source, 3 * TVector.Count)) ^ sign;
         }
 
+        a = first;
+        b = second;
+        c = third;
+        d = fourth;
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static void Store<TVector>(ref ulong target, TVector first, TVector second, TVector third, TVector fourth)
+        where TVector : struct, IWordVector<TVector>
+    {
         first.Store(ref target);
         second.Store(ref Unsafe.Add(ref target, TVector.Count));
         third.Store(ref Unsafe.Add(ref target, 2 * TVector.Count));

@@ -1,3 +1,5 @@
+using System.Diagnostics.CodeAnalysis;
+
 namespace Uncertain.Inference.Sampling;
 
 /// <summary>
@@ -10,8 +12,6 @@ internal interface IWordVector<TSelf>
 {
     static abstract int Count { get; }
 
-    bool IsZero { get; }
-
     static abstract TSelf operator &(TSelf left, TSelf right);
 
     static abstract TSelf operator |(TSelf left, TSelf right);
@@ -22,10 +22,17 @@ internal interface IWordVector<TSelf>
 
     static abstract TSelf operator *(TSelf left, TSelf right);
 
+    static abstract TSelf operator <<(TSelf value, int shift);
+
     static abstract TSelf operator >>>(TSelf value, int shift);
 
     /// <summary>The bits of <paramref name="left"/> that are not in <paramref name="right"/>.</summary>
     static abstract TSelf AndNot(TSelf left, TSelf right);
+
+    static abstract TSelf RotateLeft(TSelf value, [ConstantExpected] byte shift);
+
+    /// <summary>The bits that two of three have: their conjunction where c is 0, their disjunction where it is 1.</summary>
+    static abstract TSelf Majority(TSelf a, TSelf b, TSelf c);
 
     /// <summary>The same word everywhere.</summary>
     static abstract TSelf Create(ulong word);

@@ -1,3 +1,6 @@
+using System.Diagnostics.CodeAnalysis;
+using System.Numerics;
+
 namespace Uncertain.Inference.Sampling;
 
 /// <summary>One plain word: the kernels where there are no hardware vectors, and the reference that tests compare with.</summary>
@@ -6,8 +9,6 @@ internal readonly struct OneWord(ulong value) : IWordVector<OneWord>
     private readonly ulong _value = value;
 
     public static int Count => 1;
-
-    public bool IsZero => _value == 0;
 
     public static OneWord operator &(OneWord left, OneWord right) => new(left._value & right._value);
 
@@ -21,7 +22,15 @@ internal readonly struct OneWord(ulong value) : IWordVector<OneWord>
 
     public static OneWord operator >>>(OneWord value, int shift) => new(value._value >>> shift);
 
+    public static OneWord operator <<(OneWord value, int shift) => new(value._value << shift);
+
     public static OneWord AndNot(OneWord left, OneWord right) => new(left._value & ~right._value);
+
+    public static OneWord RotateLeft(OneWord value, [ConstantExpected] byte shift) =>
+        new(BitOperations.RotateLeft(value._value, shift));
+
+    public static OneWord Majority(OneWord a, OneWord b, OneWord c) =>
+        new((a._value & b._value) | (c._value & (a._value | b._value)));
 
     public static OneWord Create(ulong word) => new(word);
 

@@ -13,8 +13,7 @@ namespace Uncertain.Inference.Sampling;
 /// </remarks>
 internal sealed class Stages
 {
-    private const long FirstSize = 1024;
-    private const long Granularity = 512;
+    private const long LeastSize = 512;
 
     private readonly double _delta;
     private readonly long _lastSize;
@@ -23,7 +22,7 @@ internal sealed class Stages
     {
         _delta = delta;
         _lastSize = lastSize;
-        Next(FirstSize);
+        Next(WorldBlock.Worlds);
     }
 
     /// <summary>Number of the stage, from 1.</summary>
@@ -47,13 +46,13 @@ internal sealed class Stages
         // Smallest n with z/(2 sqrt n) + 1/n <= epsilon: a quadratic in sqrt n.
         double z = NormalTail.Quantile(delta / 4);
         double root = (z + Math.Sqrt((z * z) + (16 * epsilon))) / (4 * epsilon);
-        return root * root >= 1e18 ? long.MaxValue : Math.Max(Granularity, (long)Math.Ceiling(root * root));
+        return root * root >= 1e18 ? long.MaxValue : Math.Max(LeastSize, (long)Math.Ceiling(root * root));
     }
 
     private void Next(long size)
     {
         Number++;
-        size = (size + Granularity - 1) / Granularity * Granularity;
+        size = (size + WorldBlock.Worlds - 1) / WorldBlock.Worlds * WorldBlock.Worlds;
 
         // A stage just before the last one would rarely pay for itself.
         IsLast = size >= _lastSize - (_lastSize / 4);
