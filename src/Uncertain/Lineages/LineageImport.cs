@@ -3,12 +3,14 @@ namespace Uncertain.Lineages;
 /// <summary>Copies formulas from one arena to another and remembers what it has copied; needs no recursion.</summary>
 internal sealed class LineageImport(LineageArena from, LineageArena to)
 {
+    // Up to here both arenas have the same nodes.
+    private readonly int _shared = to.SharedWith(from);
     private readonly Dictionary<int, LineageRef> _copied = [];
     private readonly Stack<int> _pending = new();
 
     public LineageRef Copy(LineageRef formula)
     {
-        if (!formula.IsNode)
+        if (!IsToCopy(formula))
         {
             return formula;
         }
@@ -29,12 +31,14 @@ internal sealed class LineageImport(LineageArena from, LineageArena to)
         return _copied[formula.Index].NegateIf(formula.IsNegated);
     }
 
+    private bool IsToCopy(LineageRef formula) => formula.IsNode && formula.Index > _shared;
+
     private bool PushMissing(int index)
     {
         bool missing = false;
         foreach (LineageRef operand in from.Operands(index))
         {
-            if (operand.IsNode && !_copied.ContainsKey(operand.Index))
+            if (IsToCopy(operand) && !_copied.ContainsKey(operand.Index))
             {
                 _pending.Push(operand.Index);
                 missing = true;
@@ -51,7 +55,7 @@ internal sealed class LineageImport(LineageArena from, LineageArena to)
         for (int i = 0; i < operands.Length; i++)
         {
             LineageRef operand = operands[i];
-            copies[i] = operand.IsNode ? _copied[operand.Index].NegateIf(operand.IsNegated) : operand;
+            copies[i] = IsToCopy(operand) ? _copied[operand.Index].NegateIf(operand.IsNegated) : operand;
         }
 
         return to.And(copies);
