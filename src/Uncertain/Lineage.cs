@@ -23,7 +23,7 @@ public readonly partial struct Lineage : IEquatable<Lineage>
 
     internal Lineage(LineageArena arena, LineageRef formula)
     {
-        _arena = arena;
+        _arena = arena.OwnerOf(formula);
         Ref = formula;
     }
 
@@ -170,9 +170,9 @@ public readonly partial struct Lineage : IEquatable<Lineage>
     /// <inheritdoc/>
     public bool Equals(Lineage other)
     {
-        if (ReferenceEquals(_arena, other._arena))
+        if (ReferenceEquals(_arena, other._arena) && Ref == other.Ref)
         {
-            return Ref == other.Ref;
+            return true;
         }
 
         if (_arena is null || other._arena is null || !ReferenceEquals(Worlds, other.Worlds))
@@ -180,8 +180,14 @@ public readonly partial struct Lineage : IEquatable<Lineage>
             return false;
         }
 
-        // Formulas of different evaluations meet in the world space's own arena, where equal ones are one.
-        return Ref.IsNode && other.Ref.IsNode ? InWorlds() == other.InWorlds() : Ref == other.Ref;
+        if (!Ref.IsNode || !other.Ref.IsNode)
+        {
+            return Ref == other.Ref;
+        }
+
+        // Formulas of evaluations meet in the world space's own arena, where equal ones are one.
+        return !(ReferenceEquals(_arena, Worlds.Arena) && ReferenceEquals(_arena, other._arena))
+            && GetHashCode() == other.GetHashCode() && InWorlds() == other.InWorlds();
     }
 
     /// <inheritdoc/>
@@ -195,14 +201,14 @@ public readonly partial struct Lineage : IEquatable<Lineage>
             return Ref.Word;
         }
 
-        // The literals among the operands are the same in every arena; numbers and order of nodes are not.
-        int literals = 0;
+        // Literals are the same in every arena; numbers and order of nodes are not. Two levels tell answers of joins apart.
+        int hash = 0;
         foreach (LineageRef operand in Arena.Operands(Ref.Index))
         {
-            literals = unchecked(literals + (operand.IsLiteral ? HashCode.Combine(operand.Word) : 1));
+            hash = unchecked(hash + (operand.IsNode ? HashOfNode(operand) : HashCode.Combine(operand.Word)));
         }
 
-        return HashCode.Combine(Kind, literals);
+        return HashCode.Combine(Kind, hash);
     }
 
     /// <summary>
@@ -220,6 +226,17 @@ public readonly partial struct Lineage : IEquatable<Lineage>
 
     /// <summary>The same formula in an arena, copied if it is in another one.</summary>
     internal LineageRef In(LineageArena arena) => arena.Import(Arena, Ref);
+
+    private int HashOfNode(LineageRef node)
+    {
+        int hash = 1;
+        foreach (LineageRef operand in Arena.Operands(node.Index))
+        {
+            hash = unchecked(hash + (operand.IsLiteral ? HashCode.Combine(operand.Word, node.IsNegated) : 1));
+        }
+
+        return HashCode.Combine(hash);
+    }
 
     private LineageRef InWorlds()
     {

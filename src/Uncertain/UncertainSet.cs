@@ -83,10 +83,15 @@ public sealed partial class UncertainSet<T> : IPlanned
     public IReadOnlyList<Record<T>> Derive(EvaluationOptions? options = null, CancellationToken cancellationToken = default)
     {
         var run = new QueryRun(Worlds, options ?? EvaluationOptions.Default, cancellationToken);
-        var records = new List<Record<T>>();
-        foreach ((T value, LineageRef lineage) in Merge<T>.All(Node, run).Records(run))
+        Merge<T> merge = Merge<T>.All(Node, run);
+        LineageRef[] lineages = merge.ForAnswers();
+        var records = new List<Record<T>>(lineages.Length);
+        for (int i = 0; i < lineages.Length; i++)
         {
-            records.Add(new Record<T>(value, new Lineage(run.Arena, lineage)));
+            if (lineages[i] != LineageRef.False)
+            {
+                records.Add(new Record<T>(merge.Values[i], new Lineage(run.Arena, lineages[i])));
+            }
         }
 
         return records;

@@ -6,49 +6,72 @@ namespace Uncertain.Execution;
 
 /// <summary>
 /// The inner side of a join: its records by key, in input order. A record whose key is null is left out, since null keys never
-/// match, as in System.Linq. Linear in the records; 12 bytes a record beside its value.
+/// match, as in System.Linq. Linear in the records; 8 bytes a record beside the record and the table of keys.
 /// </summary>
 internal sealed class HashIndex<TKey, TValue>
 {
-    private readonly Dictionary<ValueTuple<TKey>, (int First, int Last)> _chains;
-    private readonly List<TValue> _values = [];
-    private readonly List<LineageRef> _lineages = [];
-    private readonly List<int> _next = [];
+    /// <summary>In place of a position: there is no record.</summary>
+    public const int None = -1;
+
+    private readonly KeyNumbers<TKey> _numbers;
+    private readonly int[] _first;
+    private readonly int[] _next;
     private readonly Dictionary<int, LineageRef> _any = [];
 
-    private HashIndex(IEqualityComparer<TKey>? comparer) => _chains = new(new KeyComparer<TKey>(comparer));
+    private HashIndex(RecordList<TValue> records, TKey[] keys, IEqualityComparer<TKey>? comparer, QueryRun run)
+    {
+        Records = records;
+        _next = new int[records.Count];
+        _numbers = Number(keys, _next, comparer, run);
+        _first = new int[_numbers.Count];
+        Array.Fill(_first, None);
+
+        // From the last one on, so that each chain ascends. A key's number makes room for the next position.
+        for (int position = records.Count - 1; position >= 0; position--)
+        {
+            int number = _next[position];
+            if (number != KeyNumbers<TKey>.None && keys[position] is not null && records.IsPossible(position))
+            {
+                _next[position] = _first[number];
+                _first[number] = position;
+            }
+        }
+    }
+
+    public RecordList<TValue> Records { get; }
 
     public static HashIndex<TKey, TValue> Build(
         PlanNode<TValue> input, Lambda<TValue, TKey> key, IEqualityComparer<TKey>? comparer, QueryRun run)
     {
-        var index = new HashIndex<TKey, TValue>(comparer);
-        foreach (Batch<TValue> batch in input.Run(run))
+        RecordList<TValue> records = RecordList<TValue>.Read(input, run);
+        var keys = new TKey[records.Count];
+        for (int start = 0; start < keys.Length; start += Batch<TValue>.Capacity)
         {
-            for (int i = 0; i < batch.Count; i++)
-            {
-                run.Step();
-                index.Add(key.Invoke(batch.Values[i]), batch.Values[i], batch.Lineages[i]);
-            }
+            run.Checkpoint(0);
+            int count = Math.Min(Batch<TValue>.Capacity, keys.Length - start);
+            key.InvokeAll(records.Values, null, start, keys.AsSpan(start, count), run.Cancellation);
         }
 
-        return index;
+        return new HashIndex<TKey, TValue>(records, keys, comparer, run);
     }
 
-    /// <summary>Position of the first record with a key, or -1.</summary>
-    public int First(TKey key) => key is not null && _chains.TryGetValue(new(key), out (int First, int Last) chain) ? chain.First : -1;
+    /// <summary>Positions of the first records with the keys; <see cref="None"/> where there is none.</summary>
+    public void First(ReadOnlySpan<TKey> keys, Span<int> positions)
+    {
+        _numbers.Find(keys, positions);
+        for (int i = 0; i < keys.Length; i++)
+        {
+            positions[i] = positions[i] < 0 || keys[i] is null ? None : _first[positions[i]];
+        }
+    }
 
-    /// <summary>Position of the next record with the same key, or -1.</summary>
+    /// <summary>Position of the next record with the same key, or <see cref="None"/>.</summary>
     public int Next(int position) => _next[position];
 
-    public TValue Value(int position) => _values[position];
-
-    public LineageRef Lineage(int position) => _lineages[position];
-
-    /// <summary>The worlds in which any record with the key is there.</summary>
-    public LineageRef AnyWith(TKey key, LineageArena arena)
+    /// <summary>The worlds in which any record of those from a first one on is there.</summary>
+    public LineageRef Any(int first, LineageArena arena)
     {
-        int first = First(key);
-        if (first < 0)
+        if (first == None)
         {
             return LineageRef.False;
         }
@@ -57,9 +80,12 @@ internal sealed class HashIndex<TKey, TValue>
         if (!_any.TryGetValue(first, out LineageRef any))
         {
             var lineages = new List<LineageRef>();
-            for (int position = first; position >= 0; position = Next(position))
+            Span<LineageRef> term = stackalloc LineageRef[LineageForm.MostLiterals];
+            term = term[..Records.Form.Width];
+            for (int position = first; position != None; position = Next(position))
             {
-                lineages.Add(Lineage(position));
+                Records.CopyTerm(position, term);
+                lineages.Add(arena.And(term));
             }
 
             _any.Add(first, any = arena.Or(CollectionsMarshal.AsSpan(lineages)));
@@ -68,26 +94,22 @@ internal sealed class HashIndex<TKey, TValue>
         return any;
     }
 
-    private void Add(TKey key, TValue value, LineageRef lineage)
+    private static KeyNumbers<TKey> Number(TKey[] keys, int[] numbers, IEqualityComparer<TKey>? comparer, QueryRun run)
     {
-        if (key is null)
+        if (typeof(TKey) == typeof(int) && comparer is null && KeyRange.For((int[])(object)keys) is { } range)
         {
-            return;
+            range.Find((int[])(object)keys, numbers);
+            return (KeyNumbers<TKey>)(object)range;
         }
 
-        ref (int First, int Last) chain = ref CollectionsMarshal.GetValueRefOrAddDefault(_chains, new(key), out bool exists);
-        if (exists)
+        KeyTable<TKey> table = KeyTable<TKey>.Create(comparer);
+        for (int start = 0; start < keys.Length; start += Batch<TValue>.Capacity)
         {
-            _next[chain.Last] = _values.Count;
-        }
-        else
-        {
-            chain.First = _values.Count;
+            run.Checkpoint(0);
+            int count = Math.Min(Batch<TValue>.Capacity, keys.Length - start);
+            table.Add(keys.AsSpan(start, count), numbers.AsSpan(start, count));
         }
 
-        chain.Last = _values.Count;
-        _values.Add(value);
-        _lineages.Add(lineage);
-        _next.Add(-1);
+        return table;
     }
 }

@@ -36,7 +36,23 @@ internal sealed class JoinInputs<TOuter, TInner, TKey>
 
     public HashIndex<TKey, TInner> Index(QueryRun run) => HashIndex<TKey, TInner>.Build(Inner, _innerKey, _comparer, run);
 
-    public TKey KeyOf(TOuter outer) => _outerKey.Invoke(outer);
+    /// <summary>For one worker: the matches of outer records.</summary>
+    public Matcher<TOuter, TInner, TKey> Matcher(HashIndex<TKey, TInner> index, QueryRun run) => new(_outerKey, index, run);
+
+    /// <summary>The outer records in the worlds where they have a match, or where they have none.</summary>
+    public Flow<TOuter> StartCondition(QueryRun run, bool isNegated)
+    {
+        HashIndex<TKey, TInner> index = Index(run);
+        Matcher<TOuter, TInner, TKey> matcher = Matcher(index, run);
+        return ConditionSink<TOuter>.Apply(Outer.Start(run), run, (batch, worlds) =>
+        {
+            ReadOnlySpan<int> first = matcher.First(batch);
+            for (int i = 0; i < first.Length; i++)
+            {
+                worlds[i] = index.Any(first[i], run.Arena).NegateIf(isNegated);
+            }
+        });
+    }
 
     /// <summary>Both sides joined on the keys; the value is the outer one's, the inner value is given beside it.</summary>
     public (Conjunction Joined, Expression InnerValue) Translate()

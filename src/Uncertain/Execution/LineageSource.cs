@@ -11,7 +11,7 @@ internal sealed class LineageSource<T>(UncertainSet<T> query)
     public Lineage Of(T value)
     {
         Derived derived = _derived ?? Derive();
-        return new Lineage(derived.Arena, derived.ByValue.GetValueOrDefault(new(value), LineageRef.False));
+        return new Lineage(derived.Arena, derived.Lineages.Find(value));
     }
 
     private Derived Derive()
@@ -21,12 +21,13 @@ internal sealed class LineageSource<T>(UncertainSet<T> query)
             if (_derived is null)
             {
                 var run = new QueryRun(query.Worlds, EvaluationOptions.Default, CancellationToken.None);
-                _derived = new Derived(run.Arena, Merge<T>.All(query.Node, run).ByValue(run));
+                Merge<T> merge = Merge<T>.All(query.Node, run);
+                _derived = new Derived(run.Arena, new LineageLookup<T>(merge.Values, merge.ForAnswers()));
             }
 
             return _derived;
         }
     }
 
-    private sealed record Derived(LineageArena Arena, Dictionary<ValueTuple<T>, LineageRef> ByValue);
+    private sealed record Derived(LineageArena Arena, LineageLookup<T> Lineages);
 }

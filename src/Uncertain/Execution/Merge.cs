@@ -6,107 +6,230 @@ namespace Uncertain.Execution;
 
 /// <summary>
 /// Set semantics: collects records and gives each distinct value once, in order of first appearance, with the disjunction of
-/// its lineages. Linear in the records; 12 bytes a record beside the values.
+/// its lineages. Linear in the records.
 /// </summary>
 internal sealed class Merge<T>
 {
-    private readonly Dictionary<ValueTuple<T>, int> _groupOf = new(new KeyComparer<T>(null));
-    private readonly List<T> _values = [];
-    private readonly List<int> _groups = [];
-    private readonly List<LineageRef> _lineages = [];
+    // Fewer are sorted faster than a thread starts.
+    private const int FewRecords = 50_000;
 
-    public static Merge<T> All(PlanNode<T> input, QueryRun run)
+    private readonly QueryRun _run;
+    private readonly LineageForm _form;
+    private readonly T[] _values;
+    private readonly int[] _counts;
+    private MergeSegment[] _segments;
+
+    private Merge(Flow<T> flow, QueryRun run)
     {
-        var merge = new Merge<T>();
-        foreach (Batch<T> batch in input.Run(run))
+        _run = run;
+        _form = flow.Lineages;
+        MergeSink<T>[] sinks = flow.Run(
+            run.Threads, worker => new MergeSink<T>(run, worker, _form.Width), (sink, range) => sink.Begin(range));
+        foreach (MergeSink<T> sink in sinks)
         {
-            for (int i = 0; i < batch.Count; i++)
+            sink.End();
+        }
+
+        _segments = [.. sinks.SelectMany(sink => sink.Segments).OrderBy(segment => segment.Range)];
+        (_values, _counts) = sinks.Length == 1 ? CountOf(sinks[0].Values) : Renumber([.. sinks.Select(sink => sink.Values)]);
+    }
+
+    /// <summary>The distinct values in order of first appearance.</summary>
+    public T[] Values => _values;
+
+    public static Merge<T> All(PlanNode<T> input, QueryRun run) => new(input.Start(run), run);
+
+    /// <summary>The values' lineages for the next operator: all parts are hashed, so that equal ones are one.</summary>
+    public LineageRef[] Shared()
+    {
+        int width = _form.Width;
+        int[] next = Starts();
+        var grouped = new LineageRef[checked((long)_segments.Sum(segment => (long)(segment.End - segment.Start)) * width)];
+        foreach (MergeSegment segment in _segments)
+        {
+            _run.Checkpoint(0);
+            for (int i = segment.Start; i < segment.End; i++)
             {
-                run.Step();
-                merge.Add(batch.Values[i], batch.Lineages[i]);
+                int place = next[segment.Chunk.Groups[i]]++;
+                segment.Chunk.TermsOf(i, i + 1).CopyTo(grouped.AsSpan(place * width));
             }
         }
 
-        return merge;
-    }
-
-    public void Add(T value, LineageRef lineage)
-    {
-        ref int group = ref CollectionsMarshal.GetValueRefOrAddDefault(_groupOf, new(value), out bool exists);
-        if (!exists)
+        Release();
+        var lineages = new LineageRef[_values.Length];
+        for (int group = 0; group < lineages.Length; group++)
         {
-            group = _values.Count;
-            _values.Add(value);
+            _run.Cancellation.ThrowIfCancellationRequested();
+            int start = next[group] - _counts[group];
+            lineages[group] = width == 1
+                ? _run.Arena.Or(grouped.AsSpan(start, _counts[group]))
+                : Disjunction(grouped.AsSpan(start * width, _counts[group] * width), _counts[group]);
         }
 
-        _groups.Add(group);
-        _lineages.Add(lineage);
+        return lineages;
     }
 
-    /// <summary>Distinct values with their lineages; values that are in no world are left out.</summary>
-    public IEnumerable<(T Value, LineageRef Lineage)> Records(QueryRun run)
+    /// <summary>
+    /// The values' lineages for the caller: the terms of each are neighbours in the arena, not hashed, see <see cref="TermBlock"/>.
+    /// </summary>
+    public LineageRef[] ForAnswers()
     {
-        LineageRef[] grouped = GroupLineages(run, out int[] ends);
-        int start = 0;
-        for (int group = 0; group < ends.Length; group++)
+        if (!_form.IsTerm || _form.Width < 2)
         {
-            run.Step();
-            LineageRef lineage = run.Arena.Or(grouped.AsSpan(start, ends[group] - start));
-            start = ends[group];
-            if (lineage != LineageRef.False)
-            {
-                yield return (_values[group], lineage);
-            }
-        }
-    }
-
-    /// <summary>The distinct values in batches, for the next operator.</summary>
-    public IEnumerable<Batch<T>> Batches(QueryRun run)
-    {
-        var output = new Batch<T>();
-        foreach ((T value, LineageRef lineage) in Records(run))
-        {
-            output.Add(value, lineage);
-            if (output.IsFull)
-            {
-                run.Checkpoint(output.Count);
-                yield return output;
-                output.Count = 0;
-            }
+            return Shared();
         }
 
-        run.Checkpoint(output.Count);
-        yield return output;
+        var block = new TermBlock(_run.Arena, _form.Width, _counts);
+        _run.Checkpoint(0);
+        var lineages = new LineageRef[_values.Length];
+        var rests = new SortedDictionary<int, List<LineageRef>>();
+        int[] ends = Parts();
+        Workers.Run(_run.Threads, ends.Length, (_, part) =>
+            Finish(block, lineages, rests, part == 0 ? 0 : ends[part - 1], ends[part]));
+        Release();
+        foreach ((int group, List<LineageRef> rest) in rests)
+        {
+            lineages[group] = _run.Arena.Or(CollectionsMarshal.AsSpan(rest));
+        }
+
+        return lineages;
     }
+
+    /// <summary>The distinct values as records, for the next operator.</summary>
+    public Flow<T> Flow() => new RecordList<T>(_values, Worlds.LineageColumn.Given(Shared())).Flow(_run);
 
     /// <summary>The distinct values with their lineages, to be looked up.</summary>
-    public Dictionary<ValueTuple<T>, LineageRef> ByValue(QueryRun run) => Records(run).ToDictionary(
-        record => new ValueTuple<T>(record.Value), record => record.Lineage, new KeyComparer<T>(null));
+    public LineageLookup<T> Lookup() => new(_values, Shared());
 
-    // A counting sort of the lineages by group, so that each group's are neighbours.
-    private LineageRef[] GroupLineages(QueryRun run, out int[] ends)
+    // Groups are numbered as the only worker has met them.
+    private (T[] Values, int[] Counts) CountOf(KeyTable<T> values)
     {
-        ends = new int[_values.Count];
-        foreach (int group in _groups)
+        var counts = new int[values.Count];
+        foreach (MergeSegment segment in _segments)
         {
-            run.Step();
-            ends[group]++;
+            foreach (int group in segment.Chunk.Groups.AsSpan(segment.Start, segment.End - segment.Start))
+            {
+                counts[group]++;
+            }
+
+            _run.Checkpoint(0);
         }
 
+        return (values.Keys.ToArray(), counts);
+    }
+
+    // Each worker has its own numbers; the segments in their order say in which order the values appear.
+    private (T[] Values, int[] Counts) Renumber(KeyTable<T>[] workers)
+    {
+        KeyTable<T> all = KeyTable<T>.Create();
+        int[][] common = [.. workers.Select(worker => new int[worker.Count])];
+        for (int worker = 0; worker < workers.Length; worker++)
+        {
+            all.Add(workers[worker].Keys, common[worker]);
+        }
+
+        var values = new T[all.Count];
+        var counts = new int[all.Count];
+        var final = new int[all.Count];
+        int found = 0;
+        foreach (MergeSegment segment in _segments)
+        {
+            int[] numbers = common[segment.Worker];
+            foreach (ref int group in segment.Chunk.Groups.AsSpan(segment.Start, segment.End - segment.Start))
+            {
+                int number = numbers[group];
+                if (final[number] == 0)
+                {
+                    values[found] = all.Keys[number];
+                    final[number] = ++found;
+                }
+
+                group = final[number] - 1;
+                counts[group]++;
+            }
+
+            _run.Checkpoint(0);
+        }
+
+        return (values, counts);
+    }
+
+    private void Finish(TermBlock block, LineageRef[] lineages, SortedDictionary<int, List<LineageRef>> rests, int first, int end)
+    {
+        foreach (MergeSegment segment in _segments)
+        {
+            _run.Cancellation.ThrowIfCancellationRequested();
+            ReadOnlySpan<int> groups = segment.Chunk.Groups.AsSpan(segment.Start, segment.End - segment.Start);
+            block.Add(groups, segment.Chunk.TermsOf(segment.Start, segment.End), first, end);
+        }
+
+        for (int group = first; group < end; group++)
+        {
+            _run.Cancellation.ThrowIfCancellationRequested();
+            lineages[group] = block.Finish(group, out List<LineageRef>? rest);
+            if (rest is not null)
+            {
+                lock (rests)
+                {
+                    rests.Add(group, rest);
+                }
+            }
+        }
+    }
+
+    /// <summary>Ends of parts of the groups with about as many records each, one for each thread.</summary>
+    private int[] Parts()
+    {
+        long total = _counts.Sum(count => (long)count);
+        int threads = total < FewRecords ? 1 : _run.Threads;
+        var ends = new int[threads];
+        long seen = 0;
+        int part = 0;
+        for (int group = 0; group < _counts.Length && part < threads - 1; group++)
+        {
+            seen += _counts[group];
+            while (part < threads - 1 && seen * threads >= total * (part + 1))
+            {
+                ends[part++] = group + 1;
+            }
+        }
+
+        ends.AsSpan(part).Fill(_counts.Length);
+        return ends;
+    }
+
+    private LineageRef Disjunction(Span<LineageRef> terms, int count)
+    {
+        if (_form.Width == 0)
+        {
+            return LineageRef.True;
+        }
+
+        // A term's place takes its reference: those before are no longer needed.
+        for (int i = 0; i < count; i++)
+        {
+            terms[i] = _run.Arena.And(terms.Slice(i * _form.Width, _form.Width));
+        }
+
+        return _run.Arena.Or(terms[..count]);
+    }
+
+    private int[] Starts()
+    {
+        var starts = new int[_counts.Length];
         int start = 0;
-        for (int group = 0; group < ends.Length; group++)
+        for (int group = 0; group < starts.Length; group++)
         {
-            start += ends[group];
-            ends[group] = start - ends[group];
+            starts[group] = start;
+            start += _counts[group];
         }
 
-        var grouped = new LineageRef[_lineages.Count];
-        for (int i = 0; i < grouped.Length; i++)
-        {
-            run.Step();
-            grouped[ends[_groups[i]]++] = _lineages[i];
-        }
+        return starts;
+    }
 
-        return grouped;
+    private void Release()
+    {
+        _run.Hold(-_segments.Select(segment => segment.Chunk).Distinct().Sum(chunk => chunk.Bytes));
+        _segments = [];
     }
 }

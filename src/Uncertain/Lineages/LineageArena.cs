@@ -1,7 +1,7 @@
 using System.Buffers;
+using System.Collections.Concurrent;
 using System.Globalization;
 using System.Runtime.InteropServices;
-using Uncertain.Worlds;
 
 namespace Uncertain.Lineages;
 
@@ -10,44 +10,102 @@ namespace Uncertain.Lineages;
 /// smaller indices than the node that uses them, so that a loop over indices visits operands first.
 /// </summary>
 /// <remarks>
-/// One writer at a time; the world space locks its own arena, an evaluation owns its arena alone. Readers may read
-/// nodes that existed when they got their reference while the arena grows.
+/// <para>An evaluation's arena lies on top of the world space's: the nodes that were there when it began keep their references in it and
+/// are not copied; its own have the indices after them. The answers' terms, of which no part is used twice, lie in it unhashed, see
+/// <see cref="TermBlock"/>.</para>
+/// <para>One writer at a time; the world space locks its own arena, an evaluation owns its arena alone. Readers may read
+/// nodes that existed when they got their reference while the arena grows.</para>
 /// </remarks>
 internal sealed class LineageArena
 {
-    // A child conjunction is taken up into its parent while the parent stays this narrow: joins of several sets
-    // then come out flat, and a chain of a million single additions still costs linear time and memory.
-    private const int FlattenLimit = 8;
+    /// <summary>
+    /// A child conjunction is taken up into its parent while the parent stays this narrow: joins of several sets then come out flat,
+    /// and a chain of a million single additions still costs linear time and memory.
+    /// </summary>
+    public const int FlattenLimit = 8;
 
-    private readonly VariableTable _variables;
+    private readonly LineageArena? _below;
+
+    // Own nodes have places from 1 on and the indices _offset + place.
+    private readonly int _offset;
     private LineageNode[] _nodes = new LineageNode[16];
     private int[] _pool = [];
     private int[] _table = new int[32];
     private int _count = 1;
+    private int _hashed;
     private int _poolCount;
+    private ConcurrentDictionary<int, LineageRef[]>? _expanded;
+    private long _expandedBytes;
 
     public LineageArena(WorldSpace worlds)
     {
         Worlds = worlds;
-        _variables = worlds.Variables;
+        Rules = new ConjunctionRules(worlds.Variables);
+    }
+
+    /// <summary>An arena on top of another one. To be made while nothing is written to that.</summary>
+    public LineageArena(LineageArena below)
+        : this(below.Worlds)
+    {
+        _below = below;
+        _offset = below.Count - 1;
     }
 
     public WorldSpace Worlds { get; }
 
-    /// <summary>Number of nodes, the constant included.</summary>
-    public int Count => _count;
+    public ConjunctionRules Rules { get; }
 
-    /// <summary>Bytes held by nodes, operands and the hash table.</summary>
-    public long Bytes => (long)_nodes.Length * 8 + (long)_pool.Length * 4 + (long)_table.Length * 4;
+    /// <summary>Number of nodes, the constant and those below included: all indices are smaller.</summary>
+    public int Count => _offset + _count;
+
+    /// <summary>Bytes held by own nodes, operands and the hash table.</summary>
+    public long Bytes =>
+        (long)_nodes.Length * 8 + (long)_pool.Length * 4 + (long)_table.Length * 4 + Interlocked.Read(ref _expandedBytes);
 
     /// <summary>The operands of a conjunction node.</summary>
     public ReadOnlySpan<LineageRef> Operands(int index)
     {
-        ref readonly LineageNode node = ref _nodes[index];
+        int place = index - _offset;
+        if (place <= 0 && _below is not null)
+        {
+            return _below.Operands(index);
+        }
+
+        ref readonly LineageNode node = ref _nodes[place];
         return node.IsBinary
             ? MemoryMarshal.Cast<LineageNode, LineageRef>(new ReadOnlySpan<LineageNode>(in node))
-            : MemoryMarshal.Cast<int, LineageRef>(_pool.AsSpan(node.First, node.Arity));
+            : node.IsRange ? Expanded(place, node) : MemoryMarshal.Cast<int, LineageRef>(_pool.AsSpan(node.First, node.Arity));
     }
+
+    /// <summary>
+    /// The first term and the number of terms, if a node is a conjunction of neighbouring nodes negated: the negation of a disjunction
+    /// of terms, each of literals. Else 0 terms. They can be read by <see cref="Operands"/> without <see cref="Operands"/> of the node,
+    /// which has to write them out.
+    /// </summary>
+    public (int First, int Count) TermsOf(int index)
+    {
+        int place = index - _offset;
+        if (place <= 0)
+        {
+            return _below is null ? default : _below.TermsOf(index);
+        }
+
+        LineageNode node = _nodes[place];
+        return node.IsRange ? (node.FirstOfRange + _offset, node.Arity) : default;
+    }
+
+    /// <summary>Whether a formula of the arena below, or of the one on which both lie, is the same here.</summary>
+    public bool Shares(LineageRef formula) => !formula.IsNode || formula.Index <= _offset;
+
+    /// <summary>Up to which index the nodes of another arena are the same in this one; 0 if none are.</summary>
+    public int SharedWith(LineageArena other) =>
+        _below == other ? _offset
+        : other._below == this ? other._offset
+        : _below is not null && other._below == _below ? Math.Min(_offset, other._offset)
+        : 0;
+
+    /// <summary>The lowest arena in which a formula of this one is the same.</summary>
+    public LineageArena OwnerOf(LineageRef formula) => _below is not null && Shares(formula) ? _below : this;
 
     public LineageRef And(LineageRef left, LineageRef right)
     {
@@ -140,44 +198,24 @@ internal sealed class LineageArena
         return new LineageImport(other, this).Copy(formula);
     }
 
+    /// <summary>Adds nodes and operands that a <see cref="TermBlock"/> fills: places from these on.</summary>
+    public (LineageNode[] Nodes, int FirstPlace, int[] Operands, int FirstOperand) AddBlock(long nodes, long operands)
+    {
+        Reserve(nodes, operands, isLast: true);
+        (int place, int operand) = (_count, _poolCount);
+        _count += (int)nodes;
+        _poolCount += (int)operands;
+        return (_nodes, place, _pool, operand);
+    }
+
+    /// <summary>The reference to an own node by its place.</summary>
+    public LineageRef At(int place) => LineageRef.Node(_offset + place);
+
     private static bool Absorbs(LineageRef operand) => operand.IsNode && !operand.IsNegated;
 
     private LineageRef Simplify(Span<LineageRef> operands)
     {
-        operands.Sort();
-        int kept = 0;
-        for (int i = 0; i < operands.Length; i++)
-        {
-            LineageRef operand = operands[i];
-            if (operand.IsConstant)
-            {
-                if (operand == LineageRef.False)
-                {
-                    return LineageRef.False;
-                }
-
-                continue;
-            }
-
-            if (kept > 0)
-            {
-                LineageRef previous = operands[kept - 1];
-                if (previous == operand)
-                {
-                    continue;
-                }
-
-                if (previous == !operand)
-                {
-                    return LineageRef.False;
-                }
-            }
-
-            operands[kept++] = operand;
-        }
-
-        operands = operands[..kept];
-        if (_variables.HasAlternatives && !ResolveAlternatives(ref operands))
+        if (!Rules.TrySimplify(ref operands))
         {
             return LineageRef.False;
         }
@@ -190,147 +228,111 @@ internal sealed class LineageArena
         };
     }
 
-    /// <summary>
-    /// Applies exclusivity inside one conjunction. The slots of one variable are neighbours, so its literals form a
-    /// run of the sorted operands. False if the conjunction holds in no world.
-    /// </summary>
-    private bool ResolveAlternatives(ref Span<LineageRef> operands)
-    {
-        // Literal words have bit 1 set and node words have not, so runs may be interleaved with nodes; collect per
-        // variable by walking literals only.
-        int previousVariable = -1;
-        LineageRef positive = default;
-        bool anyDropped = false;
-        int negatives = 0;
-        for (int i = 0; i < operands.Length; i++)
-        {
-            LineageRef operand = operands[i];
-            if (!operand.IsLiteral || !_variables.IsAlternative(operand.Index))
-            {
-                continue;
-            }
-
-            int variable = _variables.VariableOf(operand.Index);
-            if (variable != previousVariable)
-            {
-                previousVariable = variable;
-                positive = default;
-                negatives = 0;
-            }
-
-            if (operand.IsNegated)
-            {
-                negatives++;
-                anyDropped |= positive != default;
-                if (negatives == _variables.OutcomeCount(variable) && _variables.NoneChance(variable) == 0)
-                {
-                    return false;
-                }
-            }
-            else if (positive != default)
-            {
-                return false;
-            }
-            else
-            {
-                positive = operand;
-                anyDropped |= negatives > 0;
-            }
-        }
-
-        if (anyDropped)
-        {
-            operands = DropImplied(operands);
-        }
-
-        return true;
-    }
-
-    /// <summary>Removes 'not t' beside 's' where s and t are alternatives of one variable.</summary>
-    private Span<LineageRef> DropImplied(Span<LineageRef> operands)
-    {
-        var chosen = new HashSet<int>();
-        foreach (LineageRef operand in operands)
-        {
-            if (operand.IsLiteral && !operand.IsNegated && _variables.IsAlternative(operand.Index))
-            {
-                chosen.Add(_variables.VariableOf(operand.Index));
-            }
-        }
-
-        int kept = 0;
-        foreach (LineageRef operand in operands)
-        {
-            bool implied = operand.IsLiteral && operand.IsNegated && _variables.IsAlternative(operand.Index)
-                && chosen.Contains(_variables.VariableOf(operand.Index));
-            if (!implied)
-            {
-                operands[kept++] = operand;
-            }
-        }
-
-        return operands[..kept];
-    }
-
     private LineageRef Intern(ReadOnlySpan<LineageRef> operands)
     {
-        int bucket = FirstBucket(operands, _table.Length);
-        while (_table[bucket] != 0)
+        uint hash = Hash(operands);
+        if (_below is not null && _below.Find(operands, hash, _offset, out _) is > 0 and int known)
         {
-            int candidate = _table[bucket];
-            if (Operands(candidate).SequenceEqual(operands))
-            {
-                return LineageRef.Node(candidate);
-            }
-
-            bucket = bucket + 1 == _table.Length ? 0 : bucket + 1;
+            return LineageRef.Node(known);
         }
 
-        int index = Append(operands);
-        _table[bucket] = index;
-        if ((long)_count * 5 > (long)_table.Length * 4)
+        int found = Find(operands, hash, int.MaxValue, out int bucket);
+        if (found > 0)
+        {
+            return LineageRef.Node(found);
+        }
+
+        int place = Append(operands);
+        _table[bucket] = place;
+        if ((long)++_hashed * 5 > (long)_table.Length * 4)
         {
             GrowTable();
         }
 
-        return LineageRef.Node(index);
+        return At(place);
+    }
+
+    /// <summary>
+    /// The index of a hashed node, or 0. May be called while another thread writes, for nodes up to a last one that were there before.
+    /// </summary>
+    private int Find(ReadOnlySpan<LineageRef> operands, uint hash, int last, out int bucket)
+    {
+        int[] table = _table;
+        bucket = FirstBucket(hash, table.Length);
+        while (table[bucket] != 0)
+        {
+            int index = _offset + table[bucket];
+            if (index <= last && Operands(index).SequenceEqual(operands))
+            {
+                return index;
+            }
+
+            bucket = bucket + 1 == table.Length ? 0 : bucket + 1;
+        }
+
+        return 0;
     }
 
     private int Append(ReadOnlySpan<LineageRef> operands)
     {
-        if (_count == _nodes.Length)
-        {
-            if (_count >= LineageRef.IndexLimit)
-            {
-                throw TooLarge(LineageRef.IndexLimit, "formula nodes");
-            }
-
-            Array.Resize(ref _nodes, (int)Math.Min((long)_nodes.Length * 3 / 2 + 16, LineageRef.IndexLimit));
-        }
-
+        Reserve(1, operands.Length == 2 ? 0 : operands.Length, isLast: false);
         if (operands.Length == 2)
         {
             _nodes[_count] = new LineageNode(operands[0].Word, operands[1].Word);
         }
         else
         {
-            long needed = (long)_poolCount + operands.Length;
-            if (needed > _pool.Length)
-            {
-                if (needed > Array.MaxLength)
-                {
-                    throw TooLarge(Array.MaxLength, "operands");
-                }
-
-                Array.Resize(ref _pool, (int)Math.Clamp(needed * 3 / 2, 64, Array.MaxLength));
-            }
-
             operands.CopyTo(MemoryMarshal.Cast<int, LineageRef>(_pool.AsSpan(_poolCount)));
             _nodes[_count] = new LineageNode(_poolCount, -operands.Length);
             _poolCount += operands.Length;
         }
 
         return _count++;
+    }
+
+    /// <summary>Makes room; no more of it than that if it is known to be the last time.</summary>
+    private void Reserve(long nodes, long operands, bool isLast)
+    {
+        long needed = _count + nodes;
+        if (needed > _nodes.Length)
+        {
+            if (_offset + needed > LineageRef.IndexLimit)
+            {
+                throw TooLarge(LineageRef.IndexLimit, "formula nodes");
+            }
+
+            long spare = isLast ? 0 : (_nodes.Length / 2) + 16;
+            Array.Resize(ref _nodes, (int)Math.Min(needed + spare, LineageRef.IndexLimit));
+        }
+
+        needed = _poolCount + operands;
+        if (operands > 0 && needed > _pool.Length)
+        {
+            if (needed > Array.MaxLength)
+            {
+                throw TooLarge(Array.MaxLength, "operands");
+            }
+
+            Array.Resize(ref _pool, (int)Math.Clamp(isLast ? needed : needed * 3 / 2, 64, Array.MaxLength));
+        }
+    }
+
+    // Asked for by what knows lists of operands only; kept, since a list may be long and be asked for again.
+    private LineageRef[] Expanded(int place, LineageNode node)
+    {
+        ConcurrentDictionary<int, LineageRef[]> expanded =
+            _expanded ?? Interlocked.CompareExchange(ref _expanded, new(), null) ?? _expanded;
+        return expanded.GetOrAdd(place, _ =>
+        {
+            var operands = new LineageRef[node.Arity];
+            for (int i = 0; i < operands.Length; i++)
+            {
+                operands[i] = !At(node.FirstOfRange + i);
+            }
+
+            Interlocked.Add(ref _expandedBytes, 4L * operands.Length);
+            return operands;
+        });
     }
 
     private static EvaluationRefusedException TooLarge(int limit, string what) => new(string.Create(
@@ -342,24 +344,26 @@ internal sealed class LineageArena
     {
         // By 1.5, not 2: the load stays between 0.53 and 0.8, so a node's entry never takes more than 8 bytes.
         var table = new int[(int)Math.Min((long)_table.Length * 3 / 2, Array.MaxLength)];
-        for (int index = 1; index < _count; index++)
+        foreach (int place in _table)
         {
-            int bucket = FirstBucket(Operands(index), table.Length);
-            while (table[bucket] != 0)
+            if (place != 0)
             {
-                bucket = bucket + 1 == table.Length ? 0 : bucket + 1;
-            }
+                int bucket = FirstBucket(Hash(Operands(_offset + place)), table.Length);
+                while (table[bucket] != 0)
+                {
+                    bucket = bucket + 1 == table.Length ? 0 : bucket + 1;
+                }
 
-            table[bucket] = index;
+                table[bucket] = place;
+            }
         }
 
         _table = table;
     }
 
-    private static int FirstBucket(ReadOnlySpan<LineageRef> operands, int buckets) =>
-        (int)(((ulong)Hash(operands) * (ulong)buckets) >> 32);
+    private static int FirstBucket(uint hash, int buckets) => (int)(((ulong)hash * (ulong)buckets) >> 32);
 
-    private static uint Hash(ReadOnlySpan<LineageRef> operands)
+    public static uint Hash(ReadOnlySpan<LineageRef> operands)
     {
         unchecked
         {

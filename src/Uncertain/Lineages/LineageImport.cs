@@ -6,12 +6,14 @@ namespace Uncertain.Lineages;
 /// <param name="known">What is put in place of the literals of some slots; null for nothing.</param>
 internal sealed class LineageImport(LineageArena from, LineageArena to, IReadOnlyDictionary<int, LineageRef>? known = null)
 {
+    // Up to here both arenas have the same nodes, which need no copy if nothing changes in them.
+    private readonly int _shared = known is null ? to.SharedWith(from) : 0;
     private readonly Dictionary<int, LineageRef> _copied = [];
     private readonly Stack<int> _pending = new();
 
     public LineageRef Copy(LineageRef formula)
     {
-        if (!formula.IsNode)
+        if (!IsToCopy(formula))
         {
             return Literal(formula);
         }
@@ -32,12 +34,14 @@ internal sealed class LineageImport(LineageArena from, LineageArena to, IReadOnl
         return _copied[formula.Index].NegateIf(formula.IsNegated);
     }
 
+    private bool IsToCopy(LineageRef formula) => formula.IsNode && formula.Index > _shared;
+
     private bool PushMissing(int index)
     {
         bool missing = false;
         foreach (LineageRef operand in from.Operands(index))
         {
-            if (operand.IsNode && !_copied.ContainsKey(operand.Index))
+            if (IsToCopy(operand) && !_copied.ContainsKey(operand.Index))
             {
                 _pending.Push(operand.Index);
                 missing = true;
@@ -54,7 +58,7 @@ internal sealed class LineageImport(LineageArena from, LineageArena to, IReadOnl
         for (int i = 0; i < operands.Length; i++)
         {
             LineageRef operand = operands[i];
-            copies[i] = operand.IsNode ? _copied[operand.Index].NegateIf(operand.IsNegated) : Literal(operand);
+            copies[i] = IsToCopy(operand) ? _copied[operand.Index].NegateIf(operand.IsNegated) : Literal(operand);
         }
 
         return to.And(copies);

@@ -41,6 +41,15 @@ internal readonly record struct LineageRef(int Word) : IComparable<LineageRef>
 
     public static LineageRef operator !(LineageRef formula) => new(formula.Word ^ 1);
 
+    /// <summary>Turns each formula into its negation.</summary>
+    public static void NegateAll(Span<LineageRef> formulas)
+    {
+        foreach (ref LineageRef formula in formulas)
+        {
+            formula = !formula;
+        }
+    }
+
     public LineageRef NegateIf(bool negate) => negate ? !this : this;
 
     public int CompareTo(LineageRef other) => Word.CompareTo(other.Word);

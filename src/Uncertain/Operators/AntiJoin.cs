@@ -31,11 +31,7 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => $"anti-join {_sides.Describe()}";
 
-        public override IEnumerable<Batch<T>> Run(QueryRun run)
-        {
-            HashIndex<TKey, TInner> index = _sides.Index(run);
-            return MatchFilter.Run(_sides.Outer, run, outer => !index.AnyWith(_sides.KeyOf(outer), run.Arena));
-        }
+        public override Flow<T> Start(QueryRun run) => _sides.StartCondition(run, isNegated: true);
 
         public override Conjunction Translate() => _sides.TranslateWithout();
     }

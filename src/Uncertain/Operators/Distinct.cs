@@ -19,7 +19,7 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => "distinct";
 
-        public override IEnumerable<Batch<T>> Run(QueryRun run) => Merge<T>.All(_input, run).Batches(run);
+        public override Flow<T> Start(QueryRun run) => Merge<T>.All(_input, run).Flow();
 
         public override Conjunction Translate() => _input.Translate();
     }

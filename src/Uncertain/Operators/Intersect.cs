@@ -24,10 +24,11 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => "intersect";
 
-        public override IEnumerable<Batch<T>> Run(QueryRun run)
+        public override Flow<T> Start(QueryRun run)
         {
-            Dictionary<ValueTuple<T>, LineageRef> right = Merge<T>.All(_right, run).ByValue(run);
-            return MatchFilter.Run(_left, run, value => right.GetValueOrDefault(new(value), LineageRef.False));
+            LineageLookup<T> right = Merge<T>.All(_right, run).Lookup();
+            return ConditionSink<T>.Apply(
+                _left.Start(run), run, (batch, worlds) => right.Find(batch.Values.AsSpan(0, batch.Count), worlds));
         }
 
         public override Conjunction Translate()

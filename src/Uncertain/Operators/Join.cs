@@ -34,43 +34,40 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => $"join {_sides.Describe()}{PlanText.Into(_result.Tree)}";
 
-        public override IEnumerable<Batch<TResult>> Run(QueryRun run)
+        public override Flow<TResult> Start(QueryRun run)
         {
             HashIndex<TKey, TInner> index = _sides.Index(run);
-            var output = new Batch<TResult>();
-            foreach (Batch<T> batch in _sides.Outer.Run(run))
-            {
-                for (int i = 0; i < batch.Count; i++)
-                {
-                    run.Step();
-                    for (int match = index.First(_sides.KeyOf(batch.Values[i])); match >= 0; match = index.Next(match))
-                    {
-                        run.Step();
-                        LineageRef both = run.Arena.And(batch.Lineages[i], index.Lineage(match));
-                        if (both == LineageRef.False)
-                        {
-                            continue;
-                        }
-
-                        output.Add(_result.Invoke(batch.Values[i], index.Value(match)), both);
-                        if (output.IsFull)
-                        {
-                            run.Checkpoint(output.Count);
-                            yield return output;
-                            output.Count = 0;
-                        }
-                    }
-                }
-            }
-
-            run.Checkpoint(output.Count);
-            yield return output;
+            Flow<T> outer = _sides.Outer.Start(run);
+            LineageForm form = LineageForm.Both(outer.Lineages, index.Records.Form);
+            return outer.Then<TResult>(form, addsNodes: !form.IsTerm, next => new JoinSink(
+                _sides.Matcher(index, run),
+                index,
+                new PairOutput<T, TInner, TResult>(run, outer.Lineages, index.Records, form, _result, next)));
         }
 
         public override Conjunction Translate()
         {
             (Conjunction joined, Expression innerValue) = _sides.Translate();
             return joined with { Value = Substitution.Apply(_result.Tree, joined.Value, innerValue) };
+        }
+
+        private sealed class JoinSink(
+            Matcher<T, TInner, TKey> matcher, HashIndex<TKey, TInner> index, PairOutput<T, TInner, TResult> output) : Sink<T>
+        {
+            public override void Take(Batch<T> batch)
+            {
+                ReadOnlySpan<int> first = matcher.First(batch);
+                output.Begin(batch);
+                for (int i = 0; i < first.Length; i++)
+                {
+                    for (int match = first[i]; match >= 0; match = index.Next(match))
+                    {
+                        output.Add(i, match);
+                    }
+                }
+
+                output.Send();
+            }
         }
     }
 }

@@ -34,54 +34,39 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => $"left join {_sides.Describe()}{PlanText.Into(_result.Tree)}";
 
-        public override IEnumerable<Batch<TResult>> Run(QueryRun run)
+        public override Flow<TResult> Start(QueryRun run)
         {
             HashIndex<TKey, TInner> index = _sides.Index(run);
-            var output = new Batch<TResult>();
-            foreach (Batch<T> batch in _sides.Outer.Run(run))
-            {
-                for (int i = 0; i < batch.Count; i++)
-                {
-                    T outer = batch.Values[i];
-                    TKey key = _sides.KeyOf(outer);
-                    LineageRef alone = run.Arena.And(batch.Lineages[i], !index.AnyWith(key, run.Arena));
-                    int match = index.First(key);
-                    if (alone != LineageRef.False)
-                    {
-                        output.Add(_result.Invoke(outer, default), alone);
-                    }
-
-                    while (true)
-                    {
-                        run.Step();
-                        if (output.IsFull)
-                        {
-                            run.Checkpoint(output.Count);
-                            yield return output;
-                            output.Count = 0;
-                        }
-
-                        if (match < 0)
-                        {
-                            break;
-                        }
-
-                        LineageRef both = run.Arena.And(batch.Lineages[i], index.Lineage(match));
-                        if (both != LineageRef.False)
-                        {
-                            output.Add(_result.Invoke(outer, index.Value(match)), both);
-                        }
-
-                        match = index.Next(match);
-                    }
-                }
-            }
-
-            run.Checkpoint(output.Count);
-            yield return output;
+            Flow<T> outer = _sides.Outer.Start(run);
+            return outer.Then<TResult>(LineageForm.Any, addsNodes: true, next => new LeftJoinSink(
+                _sides.Matcher(index, run),
+                index,
+                run,
+                new PairOutput<T, TInner?, TResult>(run, outer.Lineages, index.Records!, LineageForm.Any, _result, next)));
         }
 
         public override Conjunction Translate() => throw new NoSafePlanException(
             "a left outer join uses its left set twice, with and without a match; join and anti-join apart if one of them is enough");
+
+        private sealed class LeftJoinSink(
+            Matcher<T, TInner, TKey> matcher, HashIndex<TKey, TInner> index, QueryRun run, PairOutput<T, TInner?, TResult> output) : Sink<T>
+        {
+            public override void Take(Batch<T> batch)
+            {
+                ReadOnlySpan<int> first = matcher.First(batch);
+                output.Begin(batch);
+                for (int i = 0; i < first.Length; i++)
+                {
+                    LineageRef alone = !index.Any(first[i], run.Arena);
+                    output.Add(i, PairOutput<T, TInner?, TResult>.Alone, run.Arena.And(run.Arena.And(batch.Term(i)), alone));
+                    for (int match = first[i]; match >= 0; match = index.Next(match))
+                    {
+                        output.Add(i, match);
+                    }
+                }
+
+                output.Send();
+            }
+        }
     }
 }

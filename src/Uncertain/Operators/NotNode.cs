@@ -1,7 +1,7 @@
 using Uncertain.Execution;
-using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
+using Uncertain.Worlds;
 
 namespace Uncertain.Operators;
 
@@ -12,13 +12,8 @@ internal sealed class NotNode(PlanNode<bool> input) : PlanNode<bool>(input.World
 
     public override string Describe() => "not";
 
-    public override IEnumerable<Batch<bool>> Run(QueryRun run)
-    {
-        LineageRef yes = Merge<bool>.All(Input, run).ByValue(run).GetValueOrDefault(new(true), LineageRef.False);
-        var output = new Batch<bool>();
-        output.Add(true, !yes);
-        yield return output;
-    }
+    public override Flow<bool> Start(QueryRun run) =>
+        new RecordList<bool>([true], LineageColumn.Given([!Merge<bool>.All(Input, run).Lookup().Find(true)])).Flow(run);
 
     // A negation stands at the root only, where the planner of safe plans takes it off first.
     public override Conjunction Translate() => throw new NoSafePlanException("a negation inside a query has no safe plan");

@@ -24,26 +24,34 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => $"select {PlanText.Lambda(_selector.Tree)}";
 
-        public override IEnumerable<Batch<TResult>> Run(QueryRun run)
+        public override Flow<TResult> Start(QueryRun run)
         {
-            var output = new Batch<TResult>();
-            foreach (Batch<T> batch in _input.Run(run))
-            {
-                output.Count = 0;
-                for (int i = 0; i < batch.Count; i++)
-                {
-                    run.Step();
-                    output.Add(_selector.Invoke(batch.Values[i]), batch.Lineages[i]);
-                }
-
-                yield return output;
-            }
+            Flow<T> input = _input.Start(run);
+            return input.Then<TResult>(next => new SelectSink<TResult>(_selector, run, input.Lineages.Width, next));
         }
 
         public override Conjunction Translate()
         {
             Conjunction body = _input.Translate();
             return body with { Value = body.Apply(_selector.Tree) };
+        }
+    }
+
+    private sealed class SelectSink<TResult>(Lambda<T, TResult> selector, QueryRun run, int width, Sink<TResult> next) : Sink<T>
+    {
+        private readonly Batch<TResult> _output = new(width);
+
+        public override void Take(Batch<T> batch)
+        {
+            if (_output.Values.Length < batch.Count)
+            {
+                _output.Values = new TResult[batch.Values.Length];
+            }
+
+            selector.InvokeAll(batch.Values, null, 0, _output.Values.AsSpan(0, batch.Count), run.Cancellation);
+            _output.Terms = batch.Terms;
+            _output.Count = batch.Count;
+            next.Take(_output);
         }
     }
 }

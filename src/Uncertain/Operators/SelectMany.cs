@@ -56,37 +56,18 @@ public sealed partial class UncertainSet<T>
             ? $"for each element: {PlanText.Lambda(_collection.Tree)}{PlanText.Into(_result.Tree)}"
             : $"product{PlanText.Into(_result.Tree)}";
 
-        public override IEnumerable<Batch<TResult>> Run(QueryRun run)
+        public override Flow<TResult> Start(QueryRun run)
         {
-            RecordList<TCollection>? shared = _fixed is null ? null : RecordList<TCollection>.Read(_fixed, run);
-            var output = new Batch<TResult>();
-            foreach (Batch<T> batch in _input.Run(run))
+            Flow<T> outer = _input.Start(run);
+            if (_fixed is null)
             {
-                for (int i = 0; i < batch.Count; i++)
-                {
-                    RecordList<TCollection> inner = shared ?? RecordList<TCollection>.Read(SetFor(batch.Values[i]), run);
-                    for (int j = 0; j < inner.Count; j++)
-                    {
-                        run.Step();
-                        LineageRef both = run.Arena.And(batch.Lineages[i], inner.Lineages[j]);
-                        if (both == LineageRef.False)
-                        {
-                            continue;
-                        }
-
-                        output.Add(_result.Invoke(batch.Values[i], inner.Values[j]), both);
-                        if (output.IsFull)
-                        {
-                            run.Checkpoint(output.Count);
-                            yield return output;
-                            output.Count = 0;
-                        }
-                    }
-                }
+                return outer.Then<TResult>(LineageForm.Any, addsNodes: true, next => new DependentSink(this, run, outer.Lineages, next));
             }
 
-            run.Checkpoint(output.Count);
-            yield return output;
+            RecordList<TCollection> inner = RecordList<TCollection>.Read(_fixed, run);
+            LineageForm form = LineageForm.Both(outer.Lineages, inner.Form);
+            return outer.Then<TResult>(form, addsNodes: !form.IsTerm, next => new ProductSink(
+                inner, new PairOutput<T, TCollection, TResult>(run, outer.Lineages, inner, form, _result, next)));
         }
 
         public override PlanNode<TResult>? TryJoin(Expression<Func<TResult, bool>> condition)
@@ -128,5 +109,49 @@ public sealed partial class UncertainSet<T>
                 $"The lambda '{PlanText.Lambda(_collection.Tree)}' of SelectMany gave null for '{value}'. Give an empty set instead, "
                 + "for example WorldSpace.Certain of no records."),
             nameof(SelectMany));
+
+        private sealed class ProductSink(RecordList<TCollection> inner, PairOutput<T, TCollection, TResult> output) : Sink<T>
+        {
+            public override void Take(Batch<T> batch)
+            {
+                output.Begin(batch);
+                for (int i = 0; i < batch.Count; i++)
+                {
+                    for (int position = 0; position < inner.Count; position++)
+                    {
+                        if (inner.IsPossible(position))
+                        {
+                            output.Add(i, position);
+                        }
+                    }
+                }
+
+                output.Send();
+            }
+        }
+
+        /// <summary>Runs a set for each element.</summary>
+        private sealed class DependentSink(
+            SelectManyNode<TCollection, TResult> node, QueryRun run, LineageForm outer, Sink<TResult> next) : Sink<T>
+        {
+            public override void Take(Batch<T> batch)
+            {
+                for (int i = 0; i < batch.Count; i++)
+                {
+                    RecordList<TCollection> inner = RecordList<TCollection>.Read(node.SetFor(batch.Values[i]), run);
+                    var output = new PairOutput<T, TCollection, TResult>(run, outer, inner, LineageForm.Any, node._result, next);
+                    output.Begin(batch);
+                    for (int position = 0; position < inner.Count; position++)
+                    {
+                        if (inner.IsPossible(position))
+                        {
+                            output.Add(i, position);
+                        }
+                    }
+
+                    output.Send();
+                }
+            }
+        }
     }
 }

@@ -32,29 +32,10 @@ public sealed partial class UncertainSet<T>
         public override string Describe() =>
             $"for each item: {PlanText.Lambda(_collection.Tree)}{PlanText.Into(_result.Tree)}";
 
-        public override IEnumerable<Batch<TResult>> Run(QueryRun run)
+        public override Flow<TResult> Start(QueryRun run)
         {
-            var output = new Batch<TResult>();
-            foreach (Batch<T> batch in _input.Run(run))
-            {
-                for (int i = 0; i < batch.Count; i++)
-                {
-                    foreach (TCollection item in ItemsOf(batch.Values[i]))
-                    {
-                        run.Step();
-                        output.Add(_result.Invoke(batch.Values[i], item), batch.Lineages[i]);
-                        if (output.IsFull)
-                        {
-                            run.Checkpoint(output.Count);
-                            yield return output;
-                            output.Count = 0;
-                        }
-                    }
-                }
-            }
-
-            run.Checkpoint(output.Count);
-            yield return output;
+            Flow<T> input = _input.Start(run);
+            return input.Then<TResult>(next => new ItemsSink(this, run, new Output<TResult>(run, input.Lineages.Width, next)));
         }
 
         public override Conjunction Translate() => throw new NoSafePlanException(
@@ -62,5 +43,22 @@ public sealed partial class UncertainSet<T>
 
         private IEnumerable<TCollection> ItemsOf(T value) => _collection.Invoke(value) ?? throw new InvalidInputException(
             $"The lambda '{PlanText.Lambda(_collection.Tree)}' of SelectMany gave null for '{value}'. Give an empty collection instead.");
+
+        private sealed class ItemsSink(SelectItemsNode<TCollection, TResult> node, QueryRun run, Output<TResult> output) : Sink<T>
+        {
+            public override void Take(Batch<T> batch)
+            {
+                for (int i = 0; i < batch.Count; i++)
+                {
+                    foreach (TCollection item in node.ItemsOf(batch.Values[i]))
+                    {
+                        run.Cancellation.ThrowIfCancellationRequested();
+                        batch.Term(i).CopyTo(output.Add(node._result.Invoke(batch.Values[i], item)));
+                    }
+                }
+
+                output.Send();
+            }
+        }
     }
 }

@@ -23,7 +23,31 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => "union";
 
-        public override IEnumerable<Batch<T>> Run(QueryRun run) => _left.Run(run).Concat(_right.Run(run));
+        public override Flow<T> Start(QueryRun run)
+        {
+            Flow<T> left = _left.Start(run);
+            Flow<T> right = _right.Start(run);
+            LineageForm form = LineageForm.Either(left.Lineages, right.Lineages);
+            left = WidthSink<T>.Apply(left, form, run);
+            right = WidthSink<T>.Apply(right, form, run);
+            return new Flow<T>(checked(left.Rows + right.Rows), form, left.IsParallel && right.IsParallel, sink =>
+            {
+                Feed first = left.Connect(sink);
+                Feed second = right.Connect(sink);
+                return (from, to) =>
+                {
+                    if (from < left.Rows)
+                    {
+                        first(from, Math.Min(to, left.Rows));
+                    }
+
+                    if (to > left.Rows)
+                    {
+                        second(Math.Max(from, left.Rows) - left.Rows, to - left.Rows);
+                    }
+                };
+            });
+        }
 
         public override Conjunction Translate()
         {

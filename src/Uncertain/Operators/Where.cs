@@ -26,29 +26,35 @@ public sealed partial class UncertainSet<T>
 
         public override string Describe() => $"where {PlanText.Lambda(_predicate.Tree)}";
 
-        public override IEnumerable<Batch<T>> Run(QueryRun run)
+        public override Flow<T> Start(QueryRun run)
         {
-            var output = new Batch<T>();
-            foreach (Batch<T> batch in _input.Run(run))
-            {
-                output.Count = 0;
-                for (int i = 0; i < batch.Count; i++)
-                {
-                    run.Step();
-                    if (_predicate.Invoke(batch.Values[i]))
-                    {
-                        output.Add(batch.Values[i], batch.Lineages[i]);
-                    }
-                }
-
-                yield return output;
-            }
+            Flow<T> input = _input.Start(run);
+            return input.Then<T>(next => new WhereSink(_predicate, run, new Output<T>(run, input.Lineages.Width, next)));
         }
 
         public override Conjunction Translate()
         {
             Conjunction body = _input.Translate();
             return body.Where(body.Apply(_predicate.Tree));
+        }
+
+        private sealed class WhereSink(Lambda<T, bool> predicate, QueryRun run, Output<T> output) : Sink<T>
+        {
+            private readonly bool[] _holds = new bool[Batch<T>.Capacity];
+
+            public override void Take(Batch<T> batch)
+            {
+                predicate.InvokeAll(batch.Values, null, 0, _holds.AsSpan(0, batch.Count), run.Cancellation);
+                for (int i = 0; i < batch.Count; i++)
+                {
+                    if (_holds[i])
+                    {
+                        batch.Term(i).CopyTo(output.Add(batch.Values[i]));
+                    }
+                }
+
+                output.Send();
+            }
         }
     }
 }

@@ -7,10 +7,10 @@ namespace Uncertain.Planning;
 internal abstract class PlanNode<T>(WorldSpace worlds, params PlanNode[] inputs) : PlanNode(worlds, inputs)
 {
     /// <summary>
-    /// The records with their lineages in the run's arena, in batches. The same value may come several times; its worlds are
-    /// then those of all its records together.
+    /// Does what has to come before the first record, and gives the rest ready to run; lineages are of the run's arena. The same value
+    /// may come several times; its worlds are then those of all its records together.
     /// </summary>
-    public abstract IEnumerable<Batch<T>> Run(QueryRun run);
+    public abstract Flow<T> Start(QueryRun run);
 
     /// <summary>
     /// This step with a condition on its records, or null if they can only be made and then tested. A product becomes a join here.

@@ -1,3 +1,4 @@
+using Uncertain.Execution;
 using Uncertain.Lineages;
 
 namespace Uncertain.Worlds;
@@ -28,7 +29,14 @@ internal readonly struct LineageColumn
     public LineageRef this[int record] =>
         _given is not null ? _given[record] : _firstSlot < 0 ? LineageRef.True : LineageRef.Literal(_firstSlot + record);
 
+    /// <summary>The form in which a query carries them. Linear where they are given one by one.</summary>
+    public LineageForm Form =>
+        _given is not null ? LineageForm.Of(_given) : _firstSlot < 0 ? LineageForm.Certain : new LineageForm(1, true, false);
+
     public static LineageColumn Given(LineageRef[] lineages) => new(lineages, -1);
 
     public static LineageColumn Consecutive(int firstSlot) => new(null, firstSlot);
+
+    /// <summary>The same lineages in a run's arena.</summary>
+    public LineageColumn In(QueryRun run) => _given is null ? this : Given(run.TakeAll(_given));
 }

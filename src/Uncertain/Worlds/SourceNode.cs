@@ -38,24 +38,7 @@ internal sealed class SourceNode<T>(
             CultureInfo.InvariantCulture, $"{Name}: {Records.Length:N0} {(Records.Length == 1 ? "record" : "records")} of {PlanText.TypeName(typeof(T))}, {what}{key}");
     }
 
-    public override IEnumerable<Batch<T>> Run(QueryRun run)
-    {
-        var batch = new Batch<T>();
-        for (int i = 0; i < Records.Length; i++)
-        {
-            if (Lineages[i] != LineageRef.False)
-            {
-                batch.Add(Records[i], run.Take(Worlds.Arena, Lineages[i]));
-            }
-
-            if (batch.IsFull || i == Records.Length - 1)
-            {
-                run.Checkpoint(batch.Count);
-                yield return batch;
-                batch.Count = 0;
-            }
-        }
-    }
+    public override Flow<T> Start(QueryRun run) => new RecordList<T>(Records, Lineages.In(run)).Flow(run);
 
     public override Conjunction Translate() => Conjunction.Of(new SourceAtom(this, typeof(T)));
 
