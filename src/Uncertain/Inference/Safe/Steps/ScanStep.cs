@@ -1,9 +1,6 @@
 using System.Linq.Expressions;
-using System.Numerics;
-using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
-using Uncertain.Numerics;
 using Uncertain.Planning;
 using Uncertain.Worlds;
 
@@ -78,37 +75,16 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             return Alternatives<TNumber>.Of(this, rows, run).ToTable();
         }
 
-        Tails<TNumber>[] tails = TailsOf(rows, run);
+        var chances = new RowTails<TNumber>(rows.Chances);
         RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, run.Workspace, out int[] keyOf);
         if (keys.Count == rows.Count)
         {
-            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, tails, 1);
+            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, chances, 1) { Keys = keys };
         }
 
-        (tails, int most) = Kernels.Merge<TNumber>(tails.AsSpan(0, rows.Count), keyOf.AsSpan(0, rows.Count), keys.Count, run.Workspace);
-        int[][] columns = Array.ConvertAll(
-            rows.Columns, column => Kernels.Gather<int>(column, keys.FirstRow.AsSpan(0, keys.Count), run.Workspace));
-        return new CodeTable<TNumber>(Variables, keys.Count, columns, tails, Part.IsChancy ? most : 1);
-    }
-
-    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    private static Tails<TNumber>[] TailsOf<TNumber>(ScanRows rows, SafeRun<TNumber> run)
-        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
-            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
-    {
-        double[] chances = rows.Chances;
-        Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(rows.Count);
-        for (int start = 0; start < rows.Count; start += Kernels.Slice)
-        {
-            run.Control.Checkpoint();
-            int end = Math.Min(rows.Count, start + Kernels.Slice);
-            for (int row = start; row < end; row++)
-            {
-                tails[row] = ChanceReader<TNumber>.OfChance(chances[row]);
-            }
-        }
-
-        return tails;
+        ReadOnlySpan<int> keyOfRow = keyOf.AsSpan(0, rows.Count);
+        (RowTails<TNumber> tails, int most) = Kernels.Merge(rows.Columns, chances, keyOfRow, keys.Count, run.Workspace);
+        return new CodeTable<TNumber>(Variables, keys.Count, rows.Columns, tails, Part.IsChancy ? most : 1);
     }
 
     private List<ScanField> FieldsToRead()
