@@ -42,6 +42,16 @@ internal static class Kernels
         return result;
     }
 
+    /// <summary>Takes some rows out, given in order, and moves the others together.</summary>
+    public static void Remove<T>(Span<T> values, ReadOnlySpan<int> rows)
+    {
+        for (int i = 0; i < rows.Length; i++)
+        {
+            int end = i + 1 < rows.Length ? rows[i + 1] : values.Length;
+            values[(rows[i] + 1)..end].CopyTo(values[(rows[i] - i)..]);
+        }
+    }
+
     /// <summary>The smallest and the largest of some codes; 0 and -1 of none.</summary>
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public static (int Low, int High) Range(ReadOnlySpan<int> codes)

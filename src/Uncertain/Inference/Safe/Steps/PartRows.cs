@@ -126,45 +126,60 @@ internal sealed class PartRows : IDisposable
         }
 
         /// <summary>Copies the rows of a part to a place in columns; gives the place after them.</summary>
-        [MethodImpl(MethodImplOptions.AggressiveOptimization)]
         public int CopyTo(int part, ScanRows rows, int at)
         {
             int left = CountOf(part);
             for (int block = _first[part]; left > 0; block = _blockAfter[block])
             {
                 int length = Math.Min(Block, left);
-                Span<int> values = _rows.AsSpan((block << LogBlock) * _width, length * _width);
-                for (int column = 0; column < _columns; column++)
-                {
-                    Span<int> codes = rows.Columns[column].AsSpan(at, length);
-                    for (int i = 0, place = column; i < codes.Length; i++, place += _width)
-                    {
-                        codes[i] = values[place];
-                    }
-                }
-
-                if (rows.Chances.Length > 0)
-                {
-                    Span<double> chances = rows.Chances.AsSpan(at, length);
-                    for (int i = 0, place = _columns; i < chances.Length; i++, place += _width)
-                    {
-                        chances[i] = Unsafe.ReadUnaligned<double>(ref Unsafe.As<int, byte>(ref values.Slice(place, 2)[0]));
-                    }
-                }
-                else
-                {
-                    for (int i = 0, place = _columns; i < length; i++, place += _width)
-                    {
-                        rows.Records[at + i] = values[place];
-                    }
-                }
-
+                Read(_rows.AsSpan((block << LogBlock) * _width, length * _width), rows, at, length);
                 at += length;
                 left -= length;
             }
 
             return at;
         }
+
+        [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+        private void Read(ReadOnlySpan<int> values, ScanRows rows, int at, int length)
+        {
+            int width = _width;
+            if (_columns == 2 && rows.Chances.Length > 0)
+            {
+                Span<int> first = rows.Columns[0].AsSpan(at, length);
+                Span<int> second = rows.Columns[1].AsSpan(at, length);
+                Span<double> chances = rows.Chances.AsSpan(at, length);
+                for (int i = 0; i < first.Length; i++)
+                {
+                    ReadOnlySpan<int> row = values.Slice(i * 4, 4);
+                    first[i] = row[0];
+                    second[i] = row[1];
+                    chances[i] = ChanceOf(row[2], row[3]);
+                }
+
+                return;
+            }
+
+            for (int i = 0; i < length; i++)
+            {
+                ReadOnlySpan<int> row = values.Slice(i * width, width);
+                for (int column = 0; column < rows.Columns.Length; column++)
+                {
+                    rows.Columns[column][at + i] = row[column];
+                }
+
+                if (rows.Chances.Length > 0)
+                {
+                    rows.Chances[at + i] = ChanceOf(row[^2], row[^1]);
+                }
+                else
+                {
+                    rows.Records[at + i] = row[^1];
+                }
+            }
+        }
+
+        private static double ChanceOf(int low, int high) => BitConverter.Int64BitsToDouble(((long)high << 32) | (uint)low);
 
         public void Return() => ArrayPool<int>.Shared.Return(_rows);
 
@@ -206,32 +221,41 @@ internal sealed class PartRows : IDisposable
         [MethodImpl(MethodImplOptions.AggressiveOptimization)]
         private void Write(ScanRows chunk, ReadOnlySpan<int> places)
         {
+            int[] rows = _rows;
             int[][] columns = chunk.Columns;
             double[] chances = chunk.Chances;
-            int[] first = columns[0];
-            int[] second = columns[Math.Min(1, _columns - 1)];
-            bool areTwo = _columns == 2;
-            bool hasChances = chances.Length > 0;
-            for (int i = 0; i < places.Length; i++)
+            if (_columns == 2 && chances.Length > 0)
             {
-                Span<int> row = _rows.AsSpan(places[i] * _width, _width);
-                row[0] = first[i];
-                if (areTwo)
+                // The most frequent form: a row is 16 bytes.
+                int[] first = columns[0];
+                int[] second = columns[1];
+                for (int i = 0; i < places.Length; i++)
                 {
+                    Span<int> row = rows.AsSpan(places[i] * 4, 4);
+                    long chance = BitConverter.DoubleToInt64Bits(chances[i]);
+                    row[0] = first[i];
                     row[1] = second[i];
-                }
-                else
-                {
-                    for (int column = 1; column < _columns; column++)
-                    {
-                        row[column] = columns[column][i];
-                    }
+                    row[2] = (int)chance;
+                    row[3] = (int)(chance >> 32);
                 }
 
-                if (hasChances)
+                return;
+            }
+
+            int width = _width;
+            for (int i = 0; i < places.Length; i++)
+            {
+                Span<int> row = rows.AsSpan(places[i] * width, width);
+                for (int column = 0; column < columns.Length; column++)
                 {
-                    // The last two integers.
-                    Unsafe.WriteUnaligned(ref Unsafe.As<int, byte>(ref row[^2]), chances[i]);
+                    row[column] = columns[column][i];
+                }
+
+                if (chances.Length > 0)
+                {
+                    long chance = BitConverter.DoubleToInt64Bits(chances[i]);
+                    row[^2] = (int)chance;
+                    row[^1] = (int)(chance >> 32);
                 }
                 else
                 {

@@ -1,6 +1,8 @@
 using System.Linq.Expressions;
+using System.Numerics;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
+using Uncertain.Numerics;
 using Uncertain.Planning;
 using Uncertain.Worlds;
 
@@ -12,6 +14,9 @@ namespace Uncertain.Inference.Safe.Steps;
 /// </summary>
 internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : SafeStep(variables)
 {
+    // Fewer rows are numbered as quickly as searched for repeats.
+    private const int LeastToMark = 256;
+
     private IReadOnlyList<ScanField>? _fields;
     private RecordFilter? _filter;
 
@@ -75,6 +80,41 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             return Alternatives<TNumber>.Of(this, rows, run).ToTable();
         }
 
+        return Merge(rows, run) ?? MergeMany(rows, run);
+    }
+
+    // Where rows are many and nearly all differ: the few that repeat one are merged into it and taken out.
+    private CodeTable<TNumber>? Merge<TNumber>(ScanRows rows, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        if (rows.Count < LeastToMark || rows.Columns.Length < 2 || Repeats.Find(rows.Columns, rows.Count, run.Workspace) is not { } repeats)
+        {
+            return null;
+        }
+
+        var chances = new RowTails<TNumber>(rows.Chances);
+        if (repeats.Count == 0)
+        {
+            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, chances, 1);
+        }
+
+        Tails<TNumber>[] tails = chances.ToChange(rows.Count, isShared: false, run.Workspace);
+        for (int i = 0; i < repeats.Count; i++)
+        {
+            tails[repeats.Right[i]] |= tails[repeats.Left[i]];
+        }
+
+        Array.ForEach(rows.Columns, column => Kernels.Remove(column.AsSpan(0, rows.Count), repeats.Left));
+        Kernels.Remove(tails.AsSpan(0, rows.Count), repeats.Left);
+        return new CodeTable<TNumber>(
+            Variables, rows.Count - repeats.Count, rows.Columns, new RowTails<TNumber>(tails), Part.IsChancy ? 1 + repeats.Count : 1);
+    }
+
+    private CodeTable<TNumber> MergeMany<TNumber>(ScanRows rows, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
         var chances = new RowTails<TNumber>(rows.Chances);
         RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, run.Workspace, out int[] keyOf);
         if (keys.Count == rows.Count)
