@@ -1,4 +1,5 @@
 using System.Numerics;
+using System.Runtime.CompilerServices;
 
 namespace Uncertain.Numerics;
 
@@ -16,13 +17,16 @@ internal readonly record struct Tails<TNumber>(TNumber True, TNumber False)
     public static Tails<TNumber> Never => new(TNumber.AdditiveIdentity, TNumber.MultiplicativeIdentity);
 
     /// <summary>The negation: the tails change places.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static Tails<TNumber> operator !(Tails<TNumber> tails) => new(tails.False, tails.True);
 
     /// <summary>Conjunction of independent events.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static Tails<TNumber> operator &(Tails<TNumber> left, Tails<TNumber> right) =>
         new(left.True * right.True, left.False + (left.True * right.False));
 
     /// <summary>Disjunction of independent events.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static Tails<TNumber> operator |(Tails<TNumber> left, Tails<TNumber> right) =>
         new(left.True + (left.False * right.True), left.False * right.False);
 

@@ -59,7 +59,7 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
         long factors = plain.Max(part => part.Factors);
         bool isZeroExact = factors * Math.Log(control.SmallestChance) > Math.Log(TailConversions.SafeRange);
         if (factors <= PlainFactorLimit
-            && plain.TrueForAll(part => Array.TrueForAll(part.Tails, tails => TailConversions.IsInRange(tails, isZeroExact))))
+            && plain.TrueForAll(part => AreInRange(part, isZeroExact)))
         {
             return Answers(plain, Probability.Exact);
         }
@@ -83,7 +83,7 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
         {
             if (plan.IsComplement && parts is [{ Count: 0 } none])
             {
-                parts = [none with { Count = 1, Tails = [Tails<TNumber>.Never] }];
+                parts = [none with { Count = 1, Tails = new RowTails<TNumber>([Tails<TNumber>.Never]) }];
             }
 
             int count = Math.Max(1, parts.Sum(part => part.Count));
@@ -133,6 +133,19 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
         });
         Array.ForEach(workspaces, own => own?.Return());
         return [.. parts];
+    }
+
+    private static bool AreInRange(CodeTable<double> part, bool isZeroExact)
+    {
+        for (int row = 0; row < part.Count; row++)
+        {
+            if (!TailConversions.IsInRange(part.Tails[row], isZeroExact))
+            {
+                return false;
+            }
+        }
+
+        return true;
     }
 
     private static string Indent(string text) => string.Join('\n', text.TrimEnd('\n').Split('\n').Select(line => $"  {line}"));

@@ -1,6 +1,5 @@
 using System.Numerics;
 using Uncertain.Inference.Safe.Analysis;
-using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Safe.Codes;
 
@@ -16,12 +15,15 @@ namespace Uncertain.Inference.Safe.Codes;
 /// <param name="Factors">
 /// At most so many chances were multiplied or added into any tail, so the relative error is at most that many roundings.
 /// </param>
-internal sealed record CodeTable<TNumber>(IReadOnlyList<Field> Variables, int Count, int[][] Columns, Tails<TNumber>[] Tails, long Factors)
+internal sealed record CodeTable<TNumber>(IReadOnlyList<Field> Variables, int Count, int[][] Columns, RowTails<TNumber> Tails, long Factors)
     where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
         IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
 {
     /// <summary>Whether several parts of a run read the table, so that none may change it.</summary>
     public bool IsShared { get; init; }
+
+    /// <summary>The numbering of the rows by all variables, where the step has made one and row i has number i; else null.</summary>
+    public RowKeys? Keys { get; init; }
 
     public int[] Column(Field variable) => Columns[IndexOf(variable)];
 
@@ -37,22 +39,20 @@ internal sealed record CodeTable<TNumber>(IReadOnlyList<Field> Variables, int Co
     }
 
     /// <summary>Fewer columns; the caller knows that the rows stay distinct.</summary>
-    public CodeTable<TNumber> Keep(IReadOnlyList<Field> variables) => this with { Variables = variables, Columns = ColumnsOf(variables) };
+    public CodeTable<TNumber> Keep(IReadOnlyList<Field> variables) => this with { Variables = variables, Columns = ColumnsOf(variables), Keys = null };
 
     /// <summary>Only some of the rows.</summary>
-    public CodeTable<TNumber> Rows(ReadOnlySpan<int> rows, Workspace workspace)
+    public CodeTable<TNumber> Rows(ReadOnlySpan<int> rows, Workspace workspace) => this with
     {
-        var columns = new int[Columns.Length][];
-        for (int i = 0; i < columns.Length; i++)
-        {
-            columns[i] = Kernels.Gather<int>(Columns[i], rows, workspace);
-        }
-
-        return this with { Count = rows.Length, Columns = columns, Tails = Kernels.Gather<Tails<TNumber>>(Tails, rows, workspace), IsShared = false };
-    }
+        Count = rows.Length,
+        Columns = Kernels.GatherAll(Columns, rows, workspace),
+        Tails = Tails.Gather(rows, workspace),
+        IsShared = false,
+        Keys = null,
+    };
 
     /// <summary>The same rows in arrays of their own, of just their length.</summary>
-    public CodeTable<TNumber> Copy() => this with { Columns = Array.ConvertAll(Columns, column => column[..Count]), Tails = Tails[..Count] };
+    public CodeTable<TNumber> Copy() => this with { Columns = Array.ConvertAll(Columns, column => column[..Count]), Tails = Tails.Copy(Count), Keys = null };
 
     private int IndexOf(Field variable)
     {

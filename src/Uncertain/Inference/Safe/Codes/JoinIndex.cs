@@ -26,6 +26,11 @@ internal sealed class JoinIndex
         where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
+        if (table.Keys is { } known && table.Variables.SequenceEqual(variables))
+        {
+            return new JoinIndex(known, null, null);
+        }
+
         RowKeys keys = RowKeys.Of(table.ColumnsOf(variables), table.Count, workspace, out int[] keyOf);
         if (keys.Count == table.Count)
         {

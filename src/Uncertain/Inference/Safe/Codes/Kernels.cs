@@ -30,7 +30,30 @@ internal static class Kernels
         return result;
     }
 
+    /// <summary>The values at chosen places of each of several columns.</summary>
+    public static int[][] GatherAll(int[][] columns, ReadOnlySpan<int> rows, Workspace workspace)
+    {
+        var result = new int[columns.Length][];
+        for (int i = 0; i < result.Length; i++)
+        {
+            result[i] = Gather<int>(columns[i], rows, workspace);
+        }
+
+        return result;
+    }
+
+    /// <summary>Takes some rows out, given in order, and moves the others together.</summary>
+    public static void Remove<T>(Span<T> values, ReadOnlySpan<int> rows)
+    {
+        for (int i = 0; i < rows.Length; i++)
+        {
+            int end = i + 1 < rows.Length ? rows[i + 1] : values.Length;
+            values[(rows[i] + 1)..end].CopyTo(values[(rows[i] - i)..]);
+        }
+    }
+
     /// <summary>The smallest and the largest of some codes; 0 and -1 of none.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public static (int Low, int High) Range(ReadOnlySpan<int> codes)
     {
         if (codes.IsEmpty)
@@ -67,16 +90,19 @@ internal static class Kernels
         return (low, high);
     }
 
-    /// <summary>The disjunction of the independent rows of each key, and the largest number of rows of one.</summary>
+    /// <summary>
+    /// The disjunction of the independent rows of each key, with the columns of the first one, in place; and the largest number of rows of
+    /// one key. Keys are numbered in order of first appearance.
+    /// </summary>
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    public static (Tails<TNumber>[] Tails, int MostRows) Merge<TNumber>(
-        ReadOnlySpan<Tails<TNumber>> tails, ReadOnlySpan<int> keys, int count, Workspace workspace)
+    public static (RowTails<TNumber> Tails, int MostRows) Merge<TNumber>(
+        int[][] columns, RowTails<TNumber> tails, ReadOnlySpan<int> keys, int count, Workspace workspace)
         where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
         Tails<TNumber>[] result = workspace.Rent<Tails<TNumber>>(count);
-        Array.Fill(result, Tails<TNumber>.Never, 0, count);
         int[] members = workspace.RentZeroed<int>(count);
+        int next = 0;
         for (int start = 0; start < keys.Length; start += Slice)
         {
             workspace.Control.Checkpoint();
@@ -84,12 +110,39 @@ internal static class Kernels
             for (int row = start; row < end; row++)
             {
                 int key = keys[row];
-                ref Tails<TNumber> merged = ref result[key];
-                merged |= tails[row];
-                members[key]++;
+                if (key == next)
+                {
+                    result[key] = tails[row];
+                    next++;
+                }
+                else
+                {
+                    ref Tails<TNumber> merged = ref result[key];
+                    merged |= tails[row];
+                    members[key]++;
+                }
             }
         }
 
-        return (result, Range(members.AsSpan(0, count)).High);
+        foreach (int[] column in columns)
+        {
+            Compact(column, keys);
+        }
+
+        return (new RowTails<TNumber>(result), count == 0 ? 0 : 1 + Range(members.AsSpan(0, count)).High);
+    }
+
+    // Moves the first row of each key to the key's place.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    private static void Compact(int[] column, ReadOnlySpan<int> keys)
+    {
+        int next = 0;
+        for (int row = 0; row < keys.Length; row++)
+        {
+            if (keys[row] == next)
+            {
+                column[next++] = column[row];
+            }
+        }
     }
 }

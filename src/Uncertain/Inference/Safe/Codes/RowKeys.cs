@@ -45,9 +45,6 @@ internal sealed class RowKeys
     /// <summary>Number of distinct combinations.</summary>
     public int Count { get; private set; }
 
-    /// <summary>The first row of each combination.</summary>
-    public int[] FirstRow { get; private set; } = [];
-
     /// <summary>Numbers the rows of the given columns; equal combinations have equal numbers.</summary>
     /// <param name="columns">Codes by column and row.</param>
     /// <param name="rows">Number of rows.</param>
@@ -85,6 +82,21 @@ internal sealed class RowKeys
         while (from < columns.Length);
 
         return leading;
+    }
+
+    /// <summary>The first row of each combination.</summary>
+    /// <param name="keys">The rows' numbers.</param>
+    /// <param name="workspace">Holds the result.</param>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    public Span<int> FirstRows(ReadOnlySpan<int> keys, Workspace workspace)
+    {
+        Span<int> rows = workspace.Rent<int>(Count).AsSpan(0, Count);
+        for (int row = keys.Length - 1; row >= 0; row--)
+        {
+            rows[keys[row]] = row;
+        }
+
+        return rows;
     }
 
     /// <summary>The number of a combination, or -1 if no row has it.</summary>
@@ -163,7 +175,6 @@ internal sealed class RowKeys
     private int[] Number(int[][] columns, int rows, long places, int[] leading, Workspace workspace)
     {
         int[] keys = workspace.Rent<int>(rows);
-        FirstRow = workspace.Rent<int>(rows);
         if (places <= ((long)rows * PlacesPerRow) + SparePlaces)
         {
             NumberDirectly(columns, rows, (int)places, leading, keys, workspace);
@@ -201,7 +212,6 @@ internal sealed class RowKeys
         }
 
         int[] numbers = workspace.RentZeroed<int>(places);
-        int[] firstRow = FirstRow;
         int count = 0;
         for (int start = 0; start < rows; start += Kernels.Slice)
         {
@@ -213,7 +223,6 @@ internal sealed class RowKeys
                 int number = numbers[place];
                 if (number == 0)
                 {
-                    firstRow[count] = row;
                     numbers[place] = number = ++count;
                 }
 
@@ -261,9 +270,8 @@ internal sealed class RowKeys
 
         // The places of the numbers given so far are kept where those of the rows were: a number is never above its row.
         _placeOfNumber = places;
-        int size = (int)BitOperations.RoundUpToPowerOf2((uint)Math.Clamp(2L * rows, 32, LargestStart));
+        int size = (int)BitOperations.RoundUpToPowerOf2((uint)Math.Clamp(rows * 3L / 2, 32, LargestStart));
         MakeBuckets(size, workspace);
-        int[] firstRow = FirstRow;
         int count = 0;
         int[] buckets = _numberOfBucket!;
         int shift = _shift;
@@ -284,9 +292,8 @@ internal sealed class RowKeys
                 if (number == 0)
                 {
                     places[count] = place;
-                    firstRow[count] = row;
                     buckets[bucket] = number = ++count;
-                    if (count * 2L > size)
+                    if (count * 4L > size * 3L)
                     {
                         size *= 2;
                         MakeBuckets(size, workspace);

@@ -75,8 +75,8 @@ internal sealed class Alternatives<TNumber>
             }
         }
 
-        int[][] columns = Array.ConvertAll(
-            rows.Columns, column => Kernels.Gather<int>(column, keys.FirstRow.AsSpan(0, count), run.Workspace));
+        int[][] columns = Kernels.GatherAll(
+            rows.Columns, keys.FirstRows(keyOf.AsSpan(0, rows.Count), run.Workspace), run.Workspace);
         return new Alternatives<TNumber>(scan, columns, chances, groupOfRow, [.. rest]);
     }
 
@@ -119,7 +119,7 @@ internal sealed class Alternatives<TNumber>
             }
         }
 
-        return new CodeTable<TNumber>(_scan.Variables, tails.Length, Columns, tails, widest + 1);
+        return new CodeTable<TNumber>(_scan.Variables, tails.Length, Columns, new RowTails<TNumber>(tails), widest + 1);
     }
 
     private static TNumber OfSlot(VariableTable table, int slot) => ChanceReader<TNumber>.OfChance(table.Chance(slot)).True;

@@ -61,8 +61,8 @@ internal sealed class ChoiceStep(ScanStep alternatives, SafeStep beside, IEnumer
             tails[output] = tails[output] with { False = tails[output].False + unused };
         }
 
-        int[][] columns = Array.ConvertAll(
-            kept, column => Kernels.Gather<int>(column, outputs.FirstRow.AsSpan(0, outputs.Count), run.Workspace));
-        return new CodeTable<TNumber>(Variables, tails.Length, columns, tails, beside.Factors + widest + 1);
+        int[][] columns = Kernels.GatherAll(
+            kept, outputs.FirstRows(outputOf.AsSpan(0, beside.Count), run.Workspace), run.Workspace);
+        return new CodeTable<TNumber>(Variables, tails.Length, columns, new RowTails<TNumber>(tails), beside.Factors + widest + 1);
     }
 }

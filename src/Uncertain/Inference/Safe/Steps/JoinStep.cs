@@ -38,8 +38,9 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
     {
         int[][] keys = probing.ColumnsOf(_common);
         int[][] columns = probing.Columns;
-        Tails<TNumber>[] tails = probing.Tails;
-        Tails<TNumber>[] others = indexed.Tails;
+        Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(probing.Count);
+        RowTails<TNumber> own = probing.Tails;
+        RowTails<TNumber> others = indexed.Tails;
         int[] matches = run.Workspace.Rent<int>(Math.Min(probing.Count, Kernels.Slice));
         int count = 0;
         for (int start = 0; start < probing.Count; start += Kernels.Slice)
@@ -53,7 +54,7 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
                 int match = matches[i];
                 if (match >= 0)
                 {
-                    tails[count + kept] = tails[start + i] & others[match];
+                    tails[count + kept] = own[start + i] & others[match];
                     matches[kept++] = start + i;
                 }
             }
@@ -72,7 +73,8 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
             count += kept;
         }
 
-        return new CodeTable<TNumber>(probing.Variables, count, columns, tails, probing.Factors + indexed.Factors).Keep(Variables);
+        return new CodeTable<TNumber>(
+            probing.Variables, count, columns, new RowTails<TNumber>(tails), probing.Factors + indexed.Factors).Keep(Variables);
     }
 
     private CodeTable<TNumber> Pair<TNumber>(
@@ -106,12 +108,13 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
                 : Kernels.Gather<int>(indexed.Column(Variables[i]), pairs.Right, run.Workspace);
         }
 
-        return new CodeTable<TNumber>(Variables, pairs.Count, columns, tails, probing.Factors + indexed.Factors);
+        return new CodeTable<TNumber>(
+            Variables, pairs.Count, columns, new RowTails<TNumber>(tails), probing.Factors + indexed.Factors);
     }
 
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static Tails<TNumber>[] Multiply<TNumber>(
-        Tails<TNumber>[] left, Tails<TNumber>[] right, RowPairs pairs, SafeRun<TNumber> run)
+        RowTails<TNumber> left, RowTails<TNumber> right, RowPairs pairs, SafeRun<TNumber> run)
         where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {

@@ -8,13 +8,17 @@ namespace Uncertain.Inference.Safe.Steps;
 
 /// <summary>
 /// The rows of one scan by part. The rows are read in ranges by several threads; each range writes the rows of a part to a chain of
-/// blocks, and a part is the chains of all ranges in order, so it has the rows in the scan's order whatever the number of threads.
+/// blocks, and a part is the chains of all ranges in order, so it has the rows in the scan's order whatever the number of threads. In a
+/// block, rows lie one behind the other: a row is written to one place, not to one a column.
 /// </summary>
 internal sealed class PartRows : IDisposable
 {
     private const int LogBlock = 9;
     private const int Block = 1 << LogBlock;
     private const int Chunk = 4096;
+
+    // Of a range: its array is doubled by the pool.
+    private const long MostIntegers = 1 << 28;
 
     private readonly ScanStep _scan;
     private readonly Range[] _ranges;
@@ -27,19 +31,23 @@ internal sealed class PartRows : IDisposable
         _control = control;
 
         // Each range leaves a block half empty for each part: it should have many rows.
-        int ranges = Workers.Ranges(control.Threads, reader.Count, parts * Block);
+        int ranges = Math.Max(
+            Workers.Ranges(control.Threads, reader.Count, parts * Block), (int)((long)reader.Count * WidthOf(scan) / MostIntegers) + 1);
         _ranges = new Range[ranges];
         int column = scan.ColumnOf(variable);
-        _bytes = (reader.Count + ((long)ranges * parts * Block)) * ((sizeof(int) * scan.Variables.Count) + sizeof(double));
+        _bytes = (reader.Count + ((long)ranges * parts * Block)) * (sizeof(int) * WidthOf(scan));
         control.Reserve(_bytes);
         Workers.Run(control.Threads, ranges, (_, range) =>
         {
             int from = Workers.Start(reader.Count, ranges, range);
             int to = Workers.Start(reader.Count, ranges, range + 1);
             _ranges[range] = new Range(scan, to - from, parts);
-            _ranges[range].Fill(reader, from, to, column, partOf, control);
+            _ranges[range].Fill(scan, reader, from, to, column, partOf, control);
         });
     }
+
+    // Integers of a row: its codes, then its chance or record number.
+    private static int WidthOf(ScanStep scan) => scan.Variables.Count + (scan.Part.IsExclusive ? 1 : sizeof(double) / sizeof(int));
 
     public ScanRows Rows(int part, Workspace workspace)
     {
@@ -70,15 +78,16 @@ internal sealed class PartRows : IDisposable
 
     private sealed class Range
     {
-        private readonly int[][] _columns;
-        private readonly double[] _chances;
-        private readonly int[] _records;
+        private readonly int _columns;
+        private readonly int _width;
+        private readonly int[] _rows;
 
-        // The place of the next row of each part, the first place of its chain, and the block after each block. A place without a block
-        // is -1; a part whose last block is full has the place after it, which is in no block of its own.
+        // The place of the next row of each part: at the beginning of a block where it has none yet or its last one is full. Then its
+        // first block, that of its last row and the rows in the blocks before, and the block after each block.
         private readonly int[] _next;
         private readonly int[] _first;
-        private readonly int[] _count;
+        private readonly int[] _last;
+        private readonly int[] _before;
         private readonly int[] _blockAfter;
         private int _blocks;
 
@@ -86,27 +95,23 @@ internal sealed class PartRows : IDisposable
         {
             // Every row, and a block for each part that is not full.
             int most = rows + (parts * Block);
-            _columns = new int[scan.Variables.Count][];
-            for (int i = 0; i < _columns.Length; i++)
-            {
-                _columns[i] = ArrayPool<int>.Shared.Rent(most);
-            }
-
-            _chances = scan.Part.IsExclusive ? [] : ArrayPool<double>.Shared.Rent(most);
-            _records = scan.Part.IsExclusive ? ArrayPool<int>.Shared.Rent(most) : [];
+            _columns = scan.Variables.Count;
+            _width = WidthOf(scan);
+            _rows = ArrayPool<int>.Shared.Rent(checked(most * _width));
             _next = new int[parts];
             _first = new int[parts];
-            _count = new int[parts];
+            _last = new int[parts];
+            _before = new int[parts];
             _blockAfter = new int[(most >> LogBlock) + 1];
             _first.AsSpan().Fill(-1);
         }
 
-        public int CountOf(int part) => _count[part];
+        public int CountOf(int part) => _first[part] < 0 ? 0 : _before[part] + _next[part] - (_last[part] << LogBlock);
 
-        public void Fill(ScanReader reader, int from, int to, int splitColumn, PartOf partOf, RunControl control)
+        public void Fill(ScanStep scan, ScanReader reader, int from, int to, int splitColumn, PartOf partOf, RunControl control)
         {
             Workspace workspace = Workspace.Take(control);
-            ScanRows chunk = new(Chunk, Array.ConvertAll(_columns, _ => workspace.Rent<int>(Chunk)), workspace.Rent<double>(Chunk), workspace.Rent<int>(Chunk));
+            ScanRows chunk = scan.Room(Chunk, workspace);
             int[] places = workspace.Rent<int>(Chunk);
             for (int start = from; start < to; start += Chunk)
             {
@@ -114,48 +119,20 @@ internal sealed class PartRows : IDisposable
                 int count = Math.Min(Chunk, to - start);
                 reader.Read(start, count, chunk, 0);
                 Place(chunk.Columns[splitColumn].AsSpan(0, count), partOf, places);
-
-                // Column by column, so that each pass writes to one stream a part.
-                for (int i = 0; i < _columns.Length; i++)
-                {
-                    Scatter(chunk.Columns[i].AsSpan(0, count), places, _columns[i]);
-                }
-
-                if (_chances.Length > 0)
-                {
-                    Scatter(chunk.Chances.AsSpan(0, count), places, _chances);
-                }
-                else
-                {
-                    Scatter(chunk.Records.AsSpan(0, count), places, _records);
-                }
+                Write(chunk, places.AsSpan(0, count));
             }
 
             workspace.Return();
         }
 
-        /// <summary>Copies the rows of a part to a place in other arrays; gives the place after them.</summary>
+        /// <summary>Copies the rows of a part to a place in columns; gives the place after them.</summary>
         public int CopyTo(int part, ScanRows rows, int at)
         {
-            int left = _count[part];
+            int left = CountOf(part);
             for (int block = _first[part]; left > 0; block = _blockAfter[block])
             {
                 int length = Math.Min(Block, left);
-                int from = block << LogBlock;
-                for (int i = 0; i < _columns.Length; i++)
-                {
-                    _columns[i].AsSpan(from, length).CopyTo(rows.Columns[i].AsSpan(at));
-                }
-
-                if (_chances.Length > 0)
-                {
-                    _chances.AsSpan(from, length).CopyTo(rows.Chances.AsSpan(at));
-                }
-                else
-                {
-                    _records.AsSpan(from, length).CopyTo(rows.Records.AsSpan(at));
-                }
-
+                Read(_rows.AsSpan((block << LogBlock) * _width, length * _width), rows, at, length);
                 at += length;
                 left -= length;
             }
@@ -163,25 +140,60 @@ internal sealed class PartRows : IDisposable
             return at;
         }
 
-        public void Return()
+        [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+        private void Read(ReadOnlySpan<int> values, ScanRows rows, int at, int length)
         {
-            Array.ForEach(_columns, column => ArrayPool<int>.Shared.Return(column));
-            ArrayPool<double>.Shared.Return(_chances);
-            ArrayPool<int>.Shared.Return(_records);
+            int width = _width;
+            if (_columns == 2 && rows.Chances.Length > 0)
+            {
+                Span<int> first = rows.Columns[0].AsSpan(at, length);
+                Span<int> second = rows.Columns[1].AsSpan(at, length);
+                Span<double> chances = rows.Chances.AsSpan(at, length);
+                for (int i = 0; i < first.Length; i++)
+                {
+                    ReadOnlySpan<int> row = values.Slice(i * 4, 4);
+                    first[i] = row[0];
+                    second[i] = row[1];
+                    chances[i] = ChanceOf(row[2], row[3]);
+                }
+
+                return;
+            }
+
+            for (int i = 0; i < length; i++)
+            {
+                ReadOnlySpan<int> row = values.Slice(i * width, width);
+                for (int column = 0; column < rows.Columns.Length; column++)
+                {
+                    rows.Columns[column][at + i] = row[column];
+                }
+
+                if (rows.Chances.Length > 0)
+                {
+                    rows.Chances[at + i] = ChanceOf(row[^2], row[^1]);
+                }
+                else
+                {
+                    rows.Records[at + i] = row[^1];
+                }
+            }
         }
+
+        private static double ChanceOf(int low, int high) => BitConverter.Int64BitsToDouble(((long)high << 32) | (uint)low);
+
+        public void Return() => ArrayPool<int>.Shared.Return(_rows);
 
         [MethodImpl(MethodImplOptions.AggressiveOptimization)]
         private void Place(ReadOnlySpan<int> codes, PartOf partOf, int[] places)
         {
             int[] next = _next;
-            int[] count = _count;
             for (int i = 0; i < codes.Length; i++)
             {
                 int part = partOf[codes[i]];
                 int place = next[part];
-                if ((count[part]++ & (Block - 1)) == 0)
+                if ((place & (Block - 1)) == 0)
                 {
-                    place = AddBlock(part, place);
+                    place = AddBlock(part);
                 }
 
                 places[i] = place;
@@ -189,8 +201,7 @@ internal sealed class PartRows : IDisposable
             }
         }
 
-        // The place after the last one is in the block that was full.
-        private int AddBlock(int part, int place)
+        private int AddBlock(int part)
         {
             int block = _blocks++;
             if (_first[part] < 0)
@@ -199,19 +210,57 @@ internal sealed class PartRows : IDisposable
             }
             else
             {
-                _blockAfter[(place - 1) >> LogBlock] = block;
+                _blockAfter[_last[part]] = block;
+                _before[part] += Block;
             }
 
+            _last[part] = block;
             return block << LogBlock;
         }
 
         [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-        private static void Scatter<T>(ReadOnlySpan<T> values, int[] places, T[] result)
-            where T : unmanaged
+        private void Write(ScanRows chunk, ReadOnlySpan<int> places)
         {
-            for (int i = 0; i < values.Length; i++)
+            int[] rows = _rows;
+            int[][] columns = chunk.Columns;
+            double[] chances = chunk.Chances;
+            if (_columns == 2 && chances.Length > 0)
             {
-                result[places[i]] = values[i];
+                // The most frequent form: a row is 16 bytes.
+                int[] first = columns[0];
+                int[] second = columns[1];
+                for (int i = 0; i < places.Length; i++)
+                {
+                    Span<int> row = rows.AsSpan(places[i] * 4, 4);
+                    long chance = BitConverter.DoubleToInt64Bits(chances[i]);
+                    row[0] = first[i];
+                    row[1] = second[i];
+                    row[2] = (int)chance;
+                    row[3] = (int)(chance >> 32);
+                }
+
+                return;
+            }
+
+            int width = _width;
+            for (int i = 0; i < places.Length; i++)
+            {
+                Span<int> row = rows.AsSpan(places[i] * width, width);
+                for (int column = 0; column < columns.Length; column++)
+                {
+                    row[column] = columns[column][i];
+                }
+
+                if (chances.Length > 0)
+                {
+                    long chance = BitConverter.DoubleToInt64Bits(chances[i]);
+                    row[^2] = (int)chance;
+                    row[^1] = (int)(chance >> 32);
+                }
+                else
+                {
+                    row[^1] = chunk.Records[i];
+                }
             }
         }
     }

@@ -1,7 +1,6 @@
 using System.Numerics;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
-using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Safe.Steps;
 
@@ -25,13 +24,9 @@ internal sealed class ProjectStep(SafeStep input, IEnumerable<Field> variables) 
     {
         int[][] columns = input.ColumnsOf(variables);
         RowKeys keys = RowKeys.Of(columns, input.Count, run.Workspace, out int[] keyOf);
-        (Tails<TNumber>[] tails, int most) = Kernels.Merge<TNumber>(
-            input.Tails.AsSpan(0, input.Count), keyOf.AsSpan(0, input.Count), keys.Count, run.Workspace);
-        for (int i = 0; i < columns.Length; i++)
-        {
-            columns[i] = Kernels.Gather<int>(columns[i], keys.FirstRow.AsSpan(0, keys.Count), run.Workspace);
-        }
-
+        ReadOnlySpan<int> keyOfRow = keyOf.AsSpan(0, input.Count);
+        columns = input.IsShared ? Array.ConvertAll(columns, column => column[..input.Count]) : columns;
+        (RowTails<TNumber> tails, int most) = Kernels.Merge(columns, input.Tails, keyOfRow, keys.Count, run.Workspace);
         return new CodeTable<TNumber>(variables, keys.Count, columns, tails, input.Factors * Math.Max(1, most));
     }
 }

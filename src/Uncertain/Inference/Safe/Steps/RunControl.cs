@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.Numerics;
+using System.Runtime.CompilerServices;
 using Uncertain.Execution;
 
 namespace Uncertain.Inference.Safe.Steps;
@@ -72,6 +73,7 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
         _progress.Report(EvaluationStage.Evaluating, Interlocked.Add(ref _rows, rows), null);
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static double Smallest(ReadOnlySpan<double> chances)
     {
         var smallest = Vector<double>.One;

@@ -1,6 +1,5 @@
 using System.Linq.Expressions;
 using System.Numerics;
-using System.Runtime.CompilerServices;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
 using Uncertain.Numerics;
@@ -15,6 +14,9 @@ namespace Uncertain.Inference.Safe.Steps;
 /// </summary>
 internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : SafeStep(variables)
 {
+    // Fewer rows are numbered as quickly as searched for repeats.
+    private const int LeastToMark = 256;
+
     private IReadOnlyList<ScanField>? _fields;
     private RecordFilter? _filter;
 
@@ -78,37 +80,51 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             return Alternatives<TNumber>.Of(this, rows, run).ToTable();
         }
 
-        Tails<TNumber>[] tails = TailsOf(rows, run);
-        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, run.Workspace, out int[] keyOf);
-        if (keys.Count == rows.Count)
-        {
-            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, tails, 1);
-        }
-
-        (tails, int most) = Kernels.Merge<TNumber>(tails.AsSpan(0, rows.Count), keyOf.AsSpan(0, rows.Count), keys.Count, run.Workspace);
-        int[][] columns = Array.ConvertAll(
-            rows.Columns, column => Kernels.Gather<int>(column, keys.FirstRow.AsSpan(0, keys.Count), run.Workspace));
-        return new CodeTable<TNumber>(Variables, keys.Count, columns, tails, Part.IsChancy ? most : 1);
+        return Merge(rows, run) ?? MergeMany(rows, run);
     }
 
-    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
-    private static Tails<TNumber>[] TailsOf<TNumber>(ScanRows rows, SafeRun<TNumber> run)
+    // Where rows are many and nearly all differ: the few that repeat one are merged into it and taken out.
+    private CodeTable<TNumber>? Merge<TNumber>(ScanRows rows, SafeRun<TNumber> run)
         where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
-        double[] chances = rows.Chances;
-        Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(rows.Count);
-        for (int start = 0; start < rows.Count; start += Kernels.Slice)
+        if (rows.Count < LeastToMark || rows.Columns.Length < 2 || Repeats.Find(rows.Columns, rows.Count, run.Workspace) is not { } repeats)
         {
-            run.Control.Checkpoint();
-            int end = Math.Min(rows.Count, start + Kernels.Slice);
-            for (int row = start; row < end; row++)
-            {
-                tails[row] = ChanceReader<TNumber>.OfChance(chances[row]);
-            }
+            return null;
         }
 
-        return tails;
+        var chances = new RowTails<TNumber>(rows.Chances);
+        if (repeats.Count == 0)
+        {
+            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, chances, 1);
+        }
+
+        Tails<TNumber>[] tails = chances.ToChange(rows.Count, isShared: false, run.Workspace);
+        for (int i = 0; i < repeats.Count; i++)
+        {
+            tails[repeats.Right[i]] |= tails[repeats.Left[i]];
+        }
+
+        Array.ForEach(rows.Columns, column => Kernels.Remove(column.AsSpan(0, rows.Count), repeats.Left));
+        Kernels.Remove(tails.AsSpan(0, rows.Count), repeats.Left);
+        return new CodeTable<TNumber>(
+            Variables, rows.Count - repeats.Count, rows.Columns, new RowTails<TNumber>(tails), Part.IsChancy ? 1 + repeats.Count : 1);
+    }
+
+    private CodeTable<TNumber> MergeMany<TNumber>(ScanRows rows, SafeRun<TNumber> run)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        var chances = new RowTails<TNumber>(rows.Chances);
+        RowKeys keys = RowKeys.Of(rows.Columns, rows.Count, run.Workspace, out int[] keyOf);
+        if (keys.Count == rows.Count)
+        {
+            return new CodeTable<TNumber>(Variables, rows.Count, rows.Columns, chances, 1) { Keys = keys };
+        }
+
+        ReadOnlySpan<int> keyOfRow = keyOf.AsSpan(0, rows.Count);
+        (RowTails<TNumber> tails, int most) = Kernels.Merge(rows.Columns, chances, keyOfRow, keys.Count, run.Workspace);
+        return new CodeTable<TNumber>(Variables, keys.Count, rows.Columns, tails, Part.IsChancy ? most : 1);
     }
 
     private List<ScanField> FieldsToRead()

@@ -18,17 +18,18 @@ internal sealed class UnionStep(SafeStep left, SafeStep right, IEnumerable<Field
         CodeTable<TNumber> right = _right.Run(run);
         int count = checked(left.Count + right.Count);
         int[][] columns = [.. left.ColumnsOf(Variables).Zip(
-            right.ColumnsOf(Variables), (l, r) => Concatenate<int>(l.AsSpan(0, left.Count), r.AsSpan(0, right.Count), run.Workspace))];
-        Tails<TNumber>[] tails = Concatenate<Tails<TNumber>>(
-            left.Tails.AsSpan(0, left.Count), right.Tails.AsSpan(0, right.Count), run.Workspace);
-        var both = new CodeTable<TNumber>(Variables, count, columns, tails, Math.Max(left.Factors, right.Factors));
+            right.ColumnsOf(Variables), (l, r) => Concatenate(l.AsSpan(0, left.Count), r.AsSpan(0, right.Count), run.Workspace))];
+        Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(count);
+        left.Tails.CopyTo(tails.AsSpan(0, left.Count), run.Workspace);
+        right.Tails.CopyTo(tails.AsSpan(left.Count, right.Count), run.Workspace);
+        var both = new CodeTable<TNumber>(
+            Variables, count, columns, new RowTails<TNumber>(tails), Math.Max(left.Factors, right.Factors));
         return ProjectStep.MergeRows(both, Variables, run);
     }
 
-    private static T[] Concatenate<T>(ReadOnlySpan<T> left, ReadOnlySpan<T> right, Workspace workspace)
-        where T : unmanaged
+    private static int[] Concatenate(ReadOnlySpan<int> left, ReadOnlySpan<int> right, Workspace workspace)
     {
-        T[] result = workspace.Rent<T>(left.Length + right.Length);
+        int[] result = workspace.Rent<int>(left.Length + right.Length);
         left.CopyTo(result);
         right.CopyTo(result.AsSpan(left.Length));
         return result;

@@ -23,7 +23,8 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
         CodeTable<TNumber> absent = _absent.Run(run);
         JoinIndex index = run.IndexOf(_absent, absent, absent.Variables);
         int[][] columns = input.ColumnsOf(absent.Variables);
-        Tails<TNumber>[] tails = input.IsShared ? input.Tails[..input.Count] : input.Tails;
+        Tails<TNumber>[] tails = input.Tails.ToChange(input.Count, input.IsShared, run.Workspace);
+        RowTails<TNumber> absentTails = absent.Tails;
         int[] matches = run.Workspace.Rent<int>(Math.Min(input.Count, Kernels.Slice));
         for (int start = 0; start < input.Count; start += Kernels.Slice)
         {
@@ -34,11 +35,11 @@ internal sealed class WithoutStep(SafeStep input, SafeStep absent) : SafeStep(in
             {
                 if (found[i] >= 0)
                 {
-                    tails[start + i] &= !absent.Tails[found[i]];
+                    tails[start + i] &= !absentTails[found[i]];
                 }
             }
         }
 
-        return input with { Tails = tails, Factors = input.Factors + absent.Factors, IsShared = false };
+        return input with { Tails = new RowTails<TNumber>(tails), Factors = input.Factors + absent.Factors, IsShared = false };
     }
 }
