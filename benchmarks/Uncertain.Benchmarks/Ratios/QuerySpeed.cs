@@ -23,7 +23,7 @@ public static class QuerySpeed
             () => Timing.Compare(() => Compiled(s_data.Value.Sightings, s_data.Value.Units), () => Linq(s_data.Value.Sightings, s_data.Value.Units))),
         new("lineage-memory", "goal in bytes of peak memory a derivation, beyond the sources", 1, DerivationMemory),
         .. new[] { 10, 20, 40 }.Select(variables => new Goal(
-            $"answers-{variables}-variables", "goal in exact answers a second, 100,000 held lineages of this many variables", 1,
+            $"answers-{variables}-variables", "goal in exact answers a second, 100,000 held lineages of this many variables", variables == 10 ? 1 : null,
             () => AnswersASecond(variables), IsLeast: true)),
         new("safe-plan-strings", "System.Linq on the same classes with keys of text; sources included in ours", 0.5,
             () => Timing.Compare(() => SafePlan(s_cards.Value.Cards, s_cards.Value.Units), () => Linq(s_cards.Value.Cards, s_cards.Value.Units))),

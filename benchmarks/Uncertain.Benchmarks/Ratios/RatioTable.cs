@@ -18,14 +18,17 @@ public static class RatioTable
     {
         long start = Stopwatch.GetTimestamp();
         int measured = 0;
+        int goalsMeasured = 0;
         int met = 0;
         Console.WriteLine($"{"name",-26} {"ours",12} {"baseline",12} {"ratio",8} {"goal",8}  met   against");
         foreach ((string title, IReadOnlyList<Goal> goals) in s_sections)
         {
             foreach (Goal goal in goals.Where(goal => names.Length == 0 || names.Any(goal.Name.StartsWith)))
             {
-                met += Print(goal) ? 1 : 0;
+                bool isMet = Print(goal);
                 measured++;
+                goalsMeasured += goal.Limit is null ? 0 : 1;
+                met += goal.Limit is not null && isMet ? 1 : 0;
             }
         }
 
@@ -38,7 +41,7 @@ public static class RatioTable
 
         Console.WriteLine(string.Create(
             CultureInfo.InvariantCulture,
-            $"{met} of {measured} goals met; {Environment.ProcessorCount} cores, {Stopwatch.GetElapsedTime(start).TotalSeconds:F0} s in all"));
+            $"{met} of {goalsMeasured} goals met; {Environment.ProcessorCount} cores, {Stopwatch.GetElapsedTime(start).TotalSeconds:F0} s in all"));
         return true;
     }
 
@@ -56,11 +59,12 @@ public static class RatioTable
         }
 
         GC.Collect();
-        bool met = goal.IsLeast ? measurement.Ratio >= goal.Limit : measurement.Ratio <= goal.Limit;
+        bool met = goal.Limit is { } bound && (goal.IsLeast ? measurement.Ratio >= bound : measurement.Ratio <= bound);
+        string limit = goal.Limit is null ? "-" : (goal.IsLeast ? ">= " : "<= ") + goal.Limit.Value.ToString("0.###", CultureInfo.InvariantCulture);
         Console.WriteLine(string.Create(
             CultureInfo.InvariantCulture,
             $"{goal.Name,-26} {measurement.Text(measurement.Ours),12} {measurement.Text(measurement.Baseline),12} {measurement.Ratio,8:0.###} "
-            + $"{(goal.IsLeast ? ">= " : "<= ") + goal.Limit.ToString("0.###", CultureInfo.InvariantCulture),8}  {(met ? "yes" : "NO"),-3}   {goal.Comparison}"));
+            + $"{limit,8}  {(goal.Limit is null ? "-" : met ? "yes" : "NO"),-3}   {goal.Comparison}"));
         return met;
     }
 }

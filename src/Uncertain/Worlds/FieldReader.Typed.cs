@@ -1,6 +1,7 @@
 using System.Collections.Concurrent;
 using System.Linq.Expressions;
 using System.Reflection;
+using System.Runtime.CompilerServices;
 using Uncertain.Execution;
 using Uncertain.Planning.Calculus;
 
@@ -45,6 +46,12 @@ internal sealed class FieldReader<TRow, TValue>(TRow[] records, Expression<Func<
             int count = Math.Min(Chunk, codes.Length - done);
             Read(chosen, start + done, count, values, cancellationToken);
             typed.Encode(values.AsSpan(0, count), dropNulls, codes.Slice(done, count));
+        }
+
+        if (RuntimeHelpers.IsReferenceOrContainsReferences<TValue>())
+        {
+            // The array outlives the run; what the caller gave must not.
+            Array.Clear(values, 0, Math.Min(Chunk, codes.Length));
         }
 
         t_values = values;

@@ -1,3 +1,4 @@
+using System.Buffers;
 using System.Linq.Expressions;
 using Uncertain.Execution;
 using Uncertain.Lineages;
@@ -18,54 +19,67 @@ internal sealed class RecordFilter<T> : RecordFilter
         _conditions = [.. conditions.Select(condition => new FieldReader<T, bool>(records, (Expression<Func<T, bool>>)condition, "Where"))];
     }
 
-    public override int[]? Choose(int threads, int leastRecords, CancellationToken cancellationToken)
-    {
-        if (_conditions.Length == 0 && _lineages.AllPossible)
-        {
-            return null;
-        }
+    public override bool PassesAll => _conditions.Length == 0 && _lineages.AllPossible;
 
+    public override int Choose(int[] chosen, int threads, int leastRecords, CancellationToken cancellationToken)
+    {
         int ranges = Array.TrueForAll(_conditions, condition => condition.IsPlain) ? Workers.Ranges(threads, _records, leastRecords) : 1;
-        var chosen = new List<int>[ranges];
-        Workers.Run(threads, ranges, (_, range) => chosen[range] = ChooseRange(
-            Workers.Start(_records, ranges, range), Workers.Start(_records, ranges, range + 1), cancellationToken));
-        return [.. chosen.SelectMany(part => part)];
+        return ranges == 1
+            ? ChooseRange(chosen, 0, _records, cancellationToken)
+            : ChooseRanges(chosen, threads, ranges, cancellationToken);
     }
 
-    private List<int> ChooseRange(int from, int to, CancellationToken cancellationToken)
+    private int ChooseRanges(int[] chosen, int threads, int ranges, CancellationToken cancellationToken)
     {
-        var result = new List<int>();
-        int[] left = new int[Math.Min(to - from, FieldReader<T, bool>.Chunk)];
-        bool[] holds = new bool[left.Length];
-        for (int start = from; start < to; start += left.Length)
+        // Each range writes where its own numbers would be if all passed; then the gaps are closed.
+        var counts = new int[ranges];
+        Workers.Run(threads, ranges, (_, range) => counts[range] = ChooseRange(
+            chosen, Workers.Start(_records, ranges, range), Workers.Start(_records, ranges, range + 1), cancellationToken));
+        int count = counts[0];
+        for (int range = 1; range < ranges; range++)
+        {
+            Array.Copy(chosen, Workers.Start(_records, ranges, range), chosen, count, counts[range]);
+            count += counts[range];
+        }
+
+        return count;
+    }
+
+    // The numbers come to the range's own place.
+    private int ChooseRange(int[] chosen, int from, int to, CancellationToken cancellationToken)
+    {
+        int end = from;
+        bool[] holds = ArrayPool<bool>.Shared.Rent(FieldReader<T, bool>.Chunk);
+        for (int start = from; start < to; start += FieldReader<T, bool>.Chunk)
         {
             cancellationToken.ThrowIfCancellationRequested();
             int count = 0;
-            for (int record = start; record < Math.Min(to, start + left.Length); record++)
+            for (int record = start; record < Math.Min(to, start + FieldReader<T, bool>.Chunk); record++)
             {
                 if (_lineages[record] != LineageRef.False)
                 {
-                    left[count++] = record;
+                    chosen[end + count++] = record;
                 }
             }
 
             // Each condition only sees what the ones before it let pass.
             foreach (FieldReader<T, bool> condition in _conditions)
             {
-                condition.Read(left, 0, count, holds, cancellationToken);
+                condition.Read(chosen, end, count, holds, cancellationToken);
                 int kept = 0;
                 for (int i = 0; i < count; i++)
                 {
-                    left[kept] = left[i];
+                    chosen[end + kept] = chosen[end + i];
                     kept += holds[i] ? 1 : 0;
                 }
 
                 count = kept;
             }
 
-            result.AddRange(left.AsSpan(0, count));
+            end += count;
         }
 
-        return result;
+        ArrayPool<bool>.Shared.Return(holds);
+        return end - from;
     }
 }

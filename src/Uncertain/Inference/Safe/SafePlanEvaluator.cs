@@ -48,25 +48,22 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
                 planning.Refusal);
     }
 
-    private IEnumerable<Answer<T>> Run<T>(
+    private Answer<T>[] Run<T>(
         SafePlan plan, UncertainSet<T> query, EvaluationOptions options, CancellationToken cancellationToken)
     {
         long start = options.Clock.GetTimestamp();
         var control = new RunControl(options, cancellationToken);
         VariableTable table = SafeEvidence.Chances(query.Node, options, cancellationToken);
-        using var input = new RunInput(plan.Root, table, control);
-        List<CodeTable<double>> plain = RunParts<double>(plan.Root, input);
-        long factors = plain.Max(part => part.Factors);
-        bool isZeroExact = factors * Math.Log(control.SmallestChance) > Math.Log(TailConversions.SafeRange);
-        if (factors <= PlainFactorLimit
-            && plain.TrueForAll(part => AreInRange(part, isZeroExact)))
+        using var input = new RunInput(plan, table, control);
+        CodeTable<double>[] plain = RunParts<double>(plan.Root, input);
+        if (IsAccurate(plain, control.SmallestChance))
         {
-            return Answers(plain, Probability.Exact);
+            return Answers(plain, plan, query, input, start, options.Clock, Probability.Exact);
         }
 
         try
         {
-            return Answers(RunParts<ExtendedDouble>(plan.Root, input), Probability.Exact);
+            return Answers(RunParts<ExtendedDouble>(plan.Root, input), plan, query, input, start, options.Clock, Probability.Exact);
         }
         catch (OverflowException exception)
         {
@@ -75,77 +72,102 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
                 + "into independent parts, and add up the logarithms of their probabilities.",
                 exception);
         }
+    }
 
-        IEnumerable<Answer<T>> Answers<TNumber>(
-            List<CodeTable<TNumber>> parts, Func<Tails<TNumber>, string, Cost, Probability> exact)
-            where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
-                IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    // Whether doubles had the digits and the range for all tails.
+    private static bool IsAccurate(CodeTable<double>[] parts, double smallestChance)
+    {
+        long factors = 0;
+        foreach (CodeTable<double> part in parts)
         {
-            if (plan.IsComplement && parts is [{ Count: 0 } none])
-            {
-                parts = [none with { Count = 1, Tails = new RowTails<TNumber>([Tails<TNumber>.Never]) }];
-            }
+            factors = Math.Max(factors, part.Factors);
+        }
 
-            int count = Math.Max(1, parts.Sum(part => part.Count));
-            var cost = new Cost(options.Clock.GetElapsedTime(start) / count, Math.Max(1, control.Rows / count), 0);
-            var lineages = new LineageSource<T>(query);
-            IReadOnlyList<Field> variables = plan.Root.Variables;
-            Func<Encoder[], int[], T> valueOf = plan.Value.Compile<T>(variables);
-            Encoder[] encoders = input.EncodersOf(variables);
-            var codes = new int[variables.Count];
-            foreach (CodeTable<TNumber> part in parts)
+        if (factors > PlainFactorLimit)
+        {
+            return false;
+        }
+
+        bool isZeroExact = factors * Math.Log(smallestChance) > Math.Log(TailConversions.SafeRange);
+        foreach (CodeTable<double> part in parts)
+        {
+            for (int row = 0; row < part.Count; row++)
             {
-                for (int row = 0; row < part.Count; row++)
+                if (!TailConversions.IsInRange(part.Tails[row], isZeroExact))
                 {
-                    cancellationToken.ThrowIfCancellationRequested();
-                    for (int column = 0; column < codes.Length; column++)
-                    {
-                        codes[column] = part.Columns[column][row];
-                    }
-
-                    yield return new Answer<T>(
-                        valueOf(encoders, codes), lineages, exact(part.Tails[row].NegateIf(plan.IsComplement), Name, cost));
+                    return false;
                 }
-            }
-        }
-    }
-
-    private static List<CodeTable<TNumber>> RunParts<TNumber>(SafeStep root, RunInput input)
-        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
-            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
-    {
-        Workspace workspace = Workspace.Take(input.Control);
-        var run = new SafeRun<TNumber>(root, input, workspace);
-        if (input.Split is not { } split)
-        {
-            CodeTable<TNumber> result = root.Run(run).Copy();
-            workspace.Return();
-            return [result];
-        }
-
-        var parts = new CodeTable<TNumber>[split.Parts];
-        var workspaces = new Workspace?[input.Control.Threads];
-        Workers.Run(input.Control.Threads, split.Parts, (worker, part) =>
-        {
-            Workspace own = workspaces[worker] ??= Workspace.Take(input.Control);
-            parts[part] = root.Run(run.Part(part, own)).Copy();
-            own.TakeBackAll();
-        });
-        Array.ForEach(workspaces, own => own?.Return());
-        return [.. parts];
-    }
-
-    private static bool AreInRange(CodeTable<double> part, bool isZeroExact)
-    {
-        for (int row = 0; row < part.Count; row++)
-        {
-            if (!TailConversions.IsInRange(part.Tails[row], isZeroExact))
-            {
-                return false;
             }
         }
 
         return true;
+    }
+
+    private Answer<T>[] Answers<T, TNumber>(
+        CodeTable<TNumber>[] parts, SafePlan plan, UncertainSet<T> query, RunInput input, long start, TimeProvider clock,
+        Func<Tails<TNumber>, string, Cost, Probability> exact)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        if (plan.IsComplement && parts is [{ Count: 0 } none])
+        {
+            parts = [none with { Count = 1, Tails = new RowTails<TNumber>([Tails<TNumber>.Never]) }];
+        }
+
+        int count = 0;
+        foreach (CodeTable<TNumber> part in parts)
+        {
+            count = checked(count + part.Count);
+        }
+
+        var answers = new Answer<T>[count];
+        var cost = new Cost(
+            clock.GetElapsedTime(start) / Math.Max(1, count), Math.Max(1, input.Control.Rows / Math.Max(1, count)), 0);
+        var lineages = new LineageSource<T>(query);
+        Func<Encoder[], int[], T> valueOf = plan.ValueOf<T>();
+        Encoder[] encoders = input.EncodersOf(plan.Root.Variables);
+        var codes = new int[encoders.Length];
+        int answer = 0;
+        foreach (CodeTable<TNumber> part in parts)
+        {
+            for (int row = 0; row < part.Count; row++)
+            {
+                input.Control.Cancellation.ThrowIfCancellationRequested();
+                for (int column = 0; column < codes.Length; column++)
+                {
+                    codes[column] = part.Columns[column][row];
+                }
+
+                answers[answer++] = new Answer<T>(
+                    valueOf(encoders, codes), lineages, exact(part.Tails[row].NegateIf(plan.IsComplement), Name, cost));
+            }
+        }
+
+        return answers;
+    }
+
+    private static CodeTable<TNumber>[] RunParts<TNumber>(SafeStep root, RunInput input)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        var run = new SafeRun<TNumber>(root, input);
+        return input.Split is { } split ? RunParts(root, run, split.Parts, input.Control) : [root.Run(run)];
+    }
+
+    private static CodeTable<TNumber>[] RunParts<TNumber>(SafeStep root, SafeRun<TNumber> run, int count, RunControl control)
+        where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
+            IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
+    {
+        var parts = new CodeTable<TNumber>[count];
+        var workspaces = new Workspace?[control.Threads];
+        Workers.Run(control.Threads, count, (worker, part) =>
+        {
+            Workspace own = workspaces[worker] ??= Workspace.Take(control);
+            parts[part] = root.Run(run.Part(part, own)).Copy();
+            own.TakeBackAll();
+        });
+        Array.ForEach(workspaces, own => own?.Return());
+        return parts;
     }
 
     private static string Indent(string text) => string.Join('\n', text.TrimEnd('\n').Split('\n').Select(line => $"  {line}"));

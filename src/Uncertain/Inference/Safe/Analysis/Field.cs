@@ -8,13 +8,16 @@ namespace Uncertain.Inference.Safe.Analysis;
 /// An expression over one row that matters to the query: it is compared, projected or tested. Fields that are compared for equality
 /// are one variable.
 /// </summary>
-internal sealed class Field(Expression expression, ParameterExpression row)
+internal sealed class Field(Expression expression, ParameterExpression row, int number)
 {
     private Field? _same;
 
     public Expression Expression { get; } = expression;
 
     public ParameterExpression Row { get; } = row;
+
+    /// <summary>Its number among the query's fields, from 0.</summary>
+    public int Number { get; } = number;
 
     /// <summary>Null here means that the row joins with nothing.</summary>
     public bool DropsNulls { get; set; }

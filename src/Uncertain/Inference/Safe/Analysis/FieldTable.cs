@@ -10,6 +10,8 @@ internal sealed class FieldTable
     private readonly Dictionary<Expression, Field> _fields = new(ExpressionComparer.Instance);
     private readonly Dictionary<ParameterExpression, List<Field>> _ofRow = [];
 
+    public int Count => _fields.Count;
+
     /// <summary>The fields of a row, in the order in which they were found.</summary>
     public IReadOnlyList<Field> OfRow(ParameterExpression row) => _ofRow.TryGetValue(row, out List<Field>? fields) ? fields : [];
 
@@ -34,7 +36,7 @@ internal sealed class FieldTable
                 $"'{PlanText.Of(expression)}' makes a new object that equals nothing but itself; use a record, tuple or anonymous type");
         }
 
-        field = new Field(expression, row);
+        field = new Field(expression, row, _fields.Count);
         _fields.Add(expression, field);
         if (!_ofRow.TryGetValue(row, out List<Field>? ofRow))
         {

@@ -31,6 +31,9 @@ internal sealed class QueryAnalysis
     /// <summary>The answers' value.</summary>
     public Template Value { get; }
 
+    /// <summary>All fields have smaller numbers.</summary>
+    public int FieldCount => _fields.Count;
+
     /// <exception cref="NoSafePlanException">The query has no form that a safe plan could be made from.</exception>
     public static QueryAnalysis Of(Conjunction query)
     {

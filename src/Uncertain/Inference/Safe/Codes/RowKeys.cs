@@ -33,13 +33,13 @@ internal sealed class RowKeys
     private long[] _placeOfNumber = [];
     private int _shift;
 
-    private RowKeys(RowKeys? leading, int from, int to, int columns)
+    private RowKeys(RowKeys? leading, int from, int to, int[] low, long[] width)
     {
         _leading = leading;
         _from = from;
         _to = to;
-        _low = new int[columns];
-        _width = new long[columns];
+        _low = low;
+        _width = width;
     }
 
     /// <summary>Number of distinct combinations.</summary>
@@ -60,7 +60,8 @@ internal sealed class RowKeys
             // As many columns as keep the product of their ranges in 63 bits: at least one, as numbers have 31 and codes 32.
             int to = from;
             long places = Math.Max(1, leading?.Count ?? 1);
-            var result = new RowKeys(leading, from, columns.Length, columns.Length);
+            var result = new RowKeys(
+                leading, from, columns.Length, workspace.Rent<int>(columns.Length), workspace.Rent<long>(columns.Length));
             for (; to < columns.Length; to++)
             {
                 (int low, int high) = Kernels.Range(columns[to].AsSpan(0, rows));
@@ -164,13 +165,7 @@ internal sealed class RowKeys
         }
     }
 
-    private RowKeys UpTo(int to)
-    {
-        var result = new RowKeys(_leading, _from, to, _low.Length);
-        _low.CopyTo(result._low, 0);
-        _width.CopyTo(result._width, 0);
-        return result;
-    }
+    private RowKeys UpTo(int to) => new(_leading, _from, to, _low, _width);
 
     private int[] Number(int[][] columns, int rows, long places, int[] leading, Workspace workspace)
     {

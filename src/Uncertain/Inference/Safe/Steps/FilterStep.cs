@@ -8,13 +8,14 @@ namespace Uncertain.Inference.Safe.Steps;
 internal sealed class FilterStep(SafeStep input, Template condition) : SafeStep(input.Variables, input)
 {
     private readonly SafeStep _input = input;
+    private Func<Encoder[], int[], bool>? _holds;
 
     public override string Describe() => $"where {condition}";
 
     protected override CodeTable<TNumber> Compute<TNumber>(SafeRun<TNumber> run)
     {
         CodeTable<TNumber> input = _input.Run(run);
-        Func<Encoder[], int[], bool> holds = condition.Compile<bool>(input.Variables);
+        Func<Encoder[], int[], bool> holds = _holds ??= condition.Compile<bool>(_input.Variables);
         Encoder[] encoders = run.EncodersOf(input.Variables);
         var codes = new int[input.Variables.Count];
         int[] rows = run.Workspace.Rent<int>(input.Count);

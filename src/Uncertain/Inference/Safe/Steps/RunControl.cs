@@ -8,9 +8,9 @@ namespace Uncertain.Inference.Safe.Steps;
 /// <summary>What all parts of a run share: threads, the caller's token, the budgets, progress and the count of rows.</summary>
 internal sealed class RunControl(EvaluationOptions options, CancellationToken cancellationToken)
 {
-    private readonly ProgressReporter _progress = new(options);
+    private readonly ProgressReporter? _progress = options.Progress is null ? null : new ProgressReporter(options);
     private readonly long _start = options.Clock.GetTimestamp();
-    private readonly Lock _lock = new();
+    private double _smallestChance = 1;
     private long _rows;
     private long _bytes;
 
@@ -20,7 +20,7 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
     public int RowsInPart => options.RowsInPart;
 
     /// <summary>The smallest positive chance or complement of one that was read; products of it may leave the range of double.</summary>
-    public double SmallestChance { get; private set; } = 1;
+    public double SmallestChance => Volatile.Read(ref _smallestChance);
 
     /// <summary>Rows that steps have produced so far.</summary>
     public long Rows => Volatile.Read(ref _rows);
@@ -61,16 +61,19 @@ internal sealed class RunControl(EvaluationOptions options, CancellationToken ca
     public void Observe(ReadOnlySpan<double> chances)
     {
         double smallest = Smallest(chances);
-        lock (_lock)
+        double known = SmallestChance;
+        while (smallest < known)
         {
-            SmallestChance = Math.Min(SmallestChance, smallest);
+            double found = Interlocked.CompareExchange(ref _smallestChance, smallest, known);
+            known = found == known ? smallest : found;
         }
     }
 
     public void Done(int rows)
     {
         Checkpoint();
-        _progress.Report(EvaluationStage.Evaluating, Interlocked.Add(ref _rows, rows), null);
+        long all = Interlocked.Add(ref _rows, rows);
+        _progress?.Report(EvaluationStage.Evaluating, all, null);
     }
 
     [MethodImpl(MethodImplOptions.AggressiveOptimization)]

@@ -1,4 +1,5 @@
 using Uncertain.Inference.Safe.Analysis;
+using Uncertain.Inference.Safe.Codes;
 using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Safe.Steps;
@@ -6,24 +7,23 @@ namespace Uncertain.Inference.Safe.Steps;
 /// <summary>What a run reads, whatever its number type: encoders, sources made ready, and their rows split into parts.</summary>
 internal sealed class RunInput : IDisposable
 {
-    private readonly Dictionary<Field, Encoder> _encoders = [];
-    private readonly Dictionary<ScanStep, ScanReader> _readers = [];
+    private readonly Encoder?[] _encoders;
+    private readonly ScanReader[] _readers;
 
     /// <summary>Makes all sources of a plan ready.</summary>
-    public RunInput(SafeStep root, VariableTable table, RunControl control)
+    public RunInput(SafePlan plan, VariableTable table, RunControl control)
     {
         Table = table;
         Control = control;
-
-        // Small ones first: a large one then finds most of its values known.
-        List<ScanStep> scans = [.. root.All().OfType<ScanStep>()];
-        scans.Sort((left, right) => left.Part.Source.RecordCount.CompareTo(right.Part.Source.RecordCount));
-        foreach (ScanStep scan in scans)
+        Workspace = Workspace.Take(control);
+        _encoders = new Encoder?[plan.FieldCount];
+        _readers = new ScanReader[plan.Scans.Length];
+        for (int i = 0; i < _readers.Length; i++)
         {
-            _readers.Add(scan, ScanReader.Open(scan, this));
+            _readers[i] = ScanReader.Open(plan.Scans[i], this);
         }
 
-        Split = SplitRows.TryCreate(root, this);
+        Split = SplitRows.TryCreate(plan, this);
     }
 
     /// <summary>The chances: the world space's own, or what evidence makes of them.</summary>
@@ -31,19 +31,14 @@ internal sealed class RunInput : IDisposable
 
     public RunControl Control { get; }
 
+    /// <summary>Memory for what all parts of the run read.</summary>
+    public Workspace Workspace { get; }
+
     /// <summary>The rows in parts; null if the run is not split.</summary>
     public SplitRows? Split { get; }
 
     /// <summary>The encoder of a variable, made on first use.</summary>
-    public Encoder EncoderOf(Field variable, FieldReader reader)
-    {
-        if (!_encoders.TryGetValue(variable, out Encoder? encoder))
-        {
-            _encoders.Add(variable, encoder = reader.NewEncoder());
-        }
-
-        return encoder;
-    }
+    public Encoder EncoderOf(Field variable, FieldReader reader) => _encoders[variable.Number] ??= reader.NewEncoder();
 
     /// <summary>The encoders of variables that have been read.</summary>
     public Encoder[] EncodersOf(IReadOnlyList<Field> variables)
@@ -51,13 +46,17 @@ internal sealed class RunInput : IDisposable
         var result = new Encoder[variables.Count];
         for (int i = 0; i < result.Length; i++)
         {
-            result[i] = _encoders[variables[i]];
+            result[i] = _encoders[variables[i].Number]!;
         }
 
         return result;
     }
 
-    public ScanReader ReaderOf(ScanStep scan) => _readers[scan];
+    public ScanReader ReaderOf(ScanStep scan) => _readers[scan.Number];
 
-    public void Dispose() => Split?.Dispose();
+    public void Dispose()
+    {
+        Split?.Dispose();
+        Workspace.Return();
+    }
 }

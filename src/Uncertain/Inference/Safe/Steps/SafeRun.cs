@@ -24,11 +24,11 @@ internal sealed class SafeRun<TNumber>
     private readonly Dictionary<SafeStep, JoinIndex>? _indexes;
 
     /// <summary>A whole run. If it will be split, computes what all parts share.</summary>
-    public SafeRun(SafeStep root, RunInput input, Workspace workspace)
+    public SafeRun(SafeStep root, RunInput input)
     {
         _whole = this;
         _input = input;
-        Workspace = workspace;
+        Workspace = input.Workspace;
         if (input.Split is not null)
         {
             _shared = [];

@@ -33,24 +33,30 @@ internal sealed class ScanReader
     public static ScanReader Open(ScanStep scan, RunInput input)
     {
         RunControl control = input.Control;
-        int[]? chosen = scan.Filter.Choose(control.Threads, control.RowsInPart, control.Cancellation);
-        control.Reserve(sizeof(int) * (chosen?.LongLength ?? 0));
-        int count = chosen?.Length ?? scan.Part.Source.RecordCount;
-        var columns = new List<Column>(scan.Fields.Count);
-        foreach (ScanField field in scan.Fields)
+        ScanFields fields = scan.Fields;
+        int count = scan.Part.Source.RecordCount;
+        int[]? chosen = null;
+        if (!scan.Filter.PassesAll)
         {
+            chosen = input.Workspace.Rent<int>(count);
+            count = scan.Filter.Choose(chosen, control.Threads, control.RowsInPart, control.Cancellation);
+        }
+
+        var columns = new Column[fields.All.Length];
+        for (int i = 0; i < columns.Length; i++)
+        {
+            ScanField field = fields.All[i];
             Encoder encoder = input.EncoderOf(field.Variable, field.Reader);
-            bool isRead = encoder.IsDirect && field.Reader.IsPlain && !scan.ComparesFields;
-            columns.Add(new Column(field, encoder, isRead ? null : Encode(field, encoder, chosen, count, input)));
+            bool isRead = encoder.IsDirect && field.Reader.IsPlain && !fields.AreCompared;
+            columns[i] = new Column(field, encoder, isRead ? null : Encode(field, encoder, chosen, count, input));
         }
 
-        if (scan.ComparesFields)
+        if (fields.AreCompared)
         {
-            chosen = Keep(columns, chosen, ref count, control);
+            chosen = Keep(columns, chosen, ref count, input.Workspace);
         }
 
-        return new ScanReader(
-            scan, [.. scan.Variables.Select(variable => columns.Find(column => column.Field.Variable == variable))], chosen, count, input);
+        return new ScanReader(scan, columns, chosen, count, input);
     }
 
     /// <summary>Reads neighbouring rows.</summary>
@@ -60,7 +66,7 @@ internal sealed class ScanReader
     /// <param name="at">The first place.</param>
     public void Read(int start, int count, ScanRows rows, int at)
     {
-        for (int i = 0; i < _columns.Length; i++)
+        for (int i = 0; i < rows.Columns.Length; i++)
         {
             ReadColumn(i, start, rows.Columns[i].AsSpan(at, count));
         }
@@ -90,14 +96,14 @@ internal sealed class ScanReader
     /// <summary>Reads one column of neighbouring rows.</summary>
     public void ReadColumn(int column, int start, Span<int> codes)
     {
-        if (_columns[column].Codes is { } encoded)
+        ref readonly Column read = ref _columns[_scan.Fields.PlaceOf[column]];
+        if (read.Codes is { } encoded)
         {
             encoded.AsSpan(start, codes.Length).CopyTo(codes);
         }
         else
         {
-            _columns[column].Field.Reader.ReadCodes(
-                _columns[column].Encoder, dropNulls: false, _chosen, start, codes, Control.Cancellation);
+            read.Field.Reader.ReadCodes(read.Encoder, dropNulls: false, _chosen, start, codes, Control.Cancellation);
         }
     }
 
@@ -106,57 +112,77 @@ internal sealed class ScanReader
     {
         ScanRows rows = _scan.Room(Count, workspace);
         int ranges = Workers.Ranges(Control.Threads, Count, Control.RowsInPart);
-        Workers.Run(Control.Threads, ranges, (_, range) =>
+        if (ranges == 1)
         {
-            int end = Workers.Start(Count, ranges, range + 1);
-            for (int start = Workers.Start(Count, ranges, range); start < end; start += Kernels.Slice)
-            {
-                Control.Checkpoint();
-                Read(start, Math.Min(Kernels.Slice, end - start), rows, start);
-            }
-        });
+            ReadRange(rows, 0, Count);
+        }
+        else
+        {
+            ReadRanges(rows, ranges);
+        }
+
         return rows;
+    }
+
+    private void ReadRanges(ScanRows rows, int ranges) => Workers.Run(
+        Control.Threads, ranges,
+        (_, range) => ReadRange(rows, Workers.Start(Count, ranges, range), Workers.Start(Count, ranges, range + 1)));
+
+    private void ReadRange(ScanRows rows, int from, int to)
+    {
+        for (int start = from; start < to; start += Kernels.Slice)
+        {
+            Control.Checkpoint();
+            Read(start, Math.Min(Kernels.Slice, to - start), rows, start);
+        }
     }
 
     private static int[] Encode(ScanField field, Encoder encoder, int[]? chosen, int count, RunInput input)
     {
         RunControl control = input.Control;
-        control.Reserve(sizeof(int) * (long)count);
-        int[] codes = GC.AllocateUninitializedArray<int>(count);
+        int[] codes = input.Workspace.Rent<int>(count);
         int ranges = field.Reader.IsPlain ? Math.Min(control.Threads, Workers.Ranges(control.Threads, count, control.RowsInPart)) : 1;
         if (ranges == 1)
         {
-            Range(encoder, 0, count);
-            return codes;
+            EncodeRange(field, encoder, chosen, codes, 0, count, control);
+        }
+        else
+        {
+            EncodeRanges(field, encoder, chosen, codes, count, ranges, control);
         }
 
+        return codes;
+    }
+
+    private static void EncodeRanges(
+        ScanField field, Encoder encoder, int[]? chosen, int[] codes, int count, int ranges, RunControl control)
+    {
         var forks = new Encoder[ranges];
-        Workers.Run(ranges, ranges, (_, range) => Range(
-            forks[range] = encoder.Fork(), Workers.Start(count, ranges, range), Workers.Start(count, ranges, range + 1)));
+        Workers.Run(ranges, ranges, (_, range) => EncodeRange(
+            field, forks[range] = encoder.Fork(), chosen, codes, Workers.Start(count, ranges, range),
+            Workers.Start(count, ranges, range + 1), control));
         for (int range = 0; range < ranges; range++)
         {
             int start = Workers.Start(count, ranges, range);
             encoder.Absorb(forks[range], codes.AsSpan(start..Workers.Start(count, ranges, range + 1)));
         }
+    }
 
-        return codes;
-
-        void Range(Encoder encoder, int from, int to)
+    private static void EncodeRange(
+        ScanField field, Encoder encoder, int[]? chosen, int[] codes, int from, int to, RunControl control)
+    {
+        for (int start = from; start < to; start += Kernels.Slice)
         {
-            for (int start = from; start < to; start += Kernels.Slice)
-            {
-                control.Checkpoint();
-                field.Reader.ReadCodes(
-                    encoder, field.DropsNulls, chosen, start, codes.AsSpan(start, Math.Min(Kernels.Slice, to - start)), control.Cancellation);
-            }
+            control.Checkpoint();
+            field.Reader.ReadCodes(
+                encoder, field.DropsNulls, chosen, start, codes.AsSpan(start, Math.Min(Kernels.Slice, to - start)), control.Cancellation);
         }
     }
 
     // Only rows without a dropped null whose fields agree where they are one variable.
-    private static int[] Keep(List<Column> columns, int[]? chosen, ref int count, RunControl control)
+    private static int[] Keep(Column[] columns, int[]? chosen, ref int count, Workspace workspace)
     {
-        control.Reserve(sizeof(int) * (long)count);
-        var kept = new int[count];
+        int[] kept = workspace.Rent<int>(count);
         int rows = 0;
         for (int row = 0; row < count; row++)
         {
@@ -175,9 +201,9 @@ internal sealed class ScanReader
         return kept;
     }
 
-    private static bool IsKept(List<Column> columns, int row)
+    private static bool IsKept(Column[] columns, int row)
     {
-        for (int i = 0; i < columns.Count; i++)
+        for (int i = 0; i < columns.Length; i++)
         {
             int code = columns[i].Codes![row];
             if (code == Encoder.Dropped && columns[i].Field.DropsNulls)

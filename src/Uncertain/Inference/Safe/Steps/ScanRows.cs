@@ -5,4 +5,4 @@ namespace Uncertain.Inference.Safe.Steps;
 /// <param name="Columns">Codes by variable and row.</param>
 /// <param name="Chances">Chances by row; empty for exclusive alternatives.</param>
 /// <param name="Records">Record numbers by row for exclusive alternatives; else empty.</param>
-internal sealed record ScanRows(int Count, int[][] Columns, double[] Chances, int[] Records);
+internal readonly record struct ScanRows(int Count, int[][] Columns, double[] Chances, int[] Records);

@@ -17,21 +17,17 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
     // Fewer rows are numbered as quickly as searched for repeats.
     private const int LeastToMark = 256;
 
-    private IReadOnlyList<ScanField>? _fields;
+    private ScanFields? _fields;
     private RecordFilter? _filter;
 
     public SourcePart Part { get; } = part;
 
-    /// <summary>
-    /// The fields to read: one for each variable, then others that have to agree with it or must not be null. What does neither and is
-    /// no variable of the step is not read.
-    /// </summary>
-    public IReadOnlyList<ScanField> Fields => _fields ??= FieldsToRead();
+    /// <summary>Its place among the plan's scans, which the plan gives.</summary>
+    public int Number { get; set; }
+
+    public ScanFields Fields => _fields ??= FieldsToRead();
 
     public RecordFilter Filter => _filter ??= Part.Source.FilterOf([.. Part.Filters.Select(Lambda)]);
-
-    /// <summary>Whether rows are left out by comparing fields with each other or with null.</summary>
-    public bool ComparesFields => Fields.Count > Variables.Count || Fields.Any(read => read.DropsNulls);
 
     public override string Describe()
     {
@@ -127,7 +123,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         return new CodeTable<TNumber>(Variables, keys.Count, rows.Columns, tails, Part.IsChancy ? most : 1);
     }
 
-    private List<ScanField> FieldsToRead()
+    private ScanFields FieldsToRead()
     {
         IReadOnlyList<Field> all = Part.Fields;
         var result = new List<ScanField>();
@@ -141,7 +137,10 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
             }
         }
 
-        return result;
+        return new ScanFields(
+            [.. result],
+            [.. Variables.Select(variable => result.FindIndex(read => read.Variable == variable))],
+            result.Count > Variables.Count || result.Exists(read => read.DropsNulls));
     }
 
     private LambdaExpression Lambda(Expression body) => Expression.Lambda(body, Part.Atom.Row);

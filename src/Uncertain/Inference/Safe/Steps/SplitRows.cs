@@ -28,14 +28,19 @@ internal sealed class SplitRows : IDisposable
     public int Parts { get; }
 
     /// <summary>Splits the rows of a run, or gives null where that would not help.</summary>
-    public static SplitRows? TryCreate(SafeStep root, RunInput input)
+    public static SplitRows? TryCreate(SafePlan plan, RunInput input)
     {
-        List<SafeStep> steps = root.All();
-        ScanStep largest = steps.OfType<ScanStep>().MaxBy(scan => input.ReaderOf(scan).Count)!;
+        ScanStep largest = plan.Scans[0];
+        foreach (ScanStep scan in plan.Scans)
+        {
+            largest = input.ReaderOf(scan).Count > input.ReaderOf(largest).Count ? scan : largest;
+        }
+
         ScanReader reader = input.ReaderOf(largest);
         int parts = Math.Min(MostParts, reader.Count / input.Control.RowsInPart);
-        Field? variable = root.Variables.FirstOrDefault(largest.Variables.Contains);
-        if (parts < LeastParts || variable is null || steps.OfType<ChoiceStep>().Any())
+        if (parts < LeastParts
+            || plan.Root.Variables.FirstOrDefault(largest.Variables.Contains) is not { } variable
+            || plan.Root.All().OfType<ChoiceStep>().Any())
         {
             return null;
         }
@@ -50,7 +55,7 @@ internal sealed class SplitRows : IDisposable
 
         var split = new SplitRows(variable, parts);
         PartOf partOf = PartOf.Sample(sample, parts);
-        foreach (ScanStep scan in steps.OfType<ScanStep>().Where(scan => scan.Variables.Contains(variable)))
+        foreach (ScanStep scan in plan.Scans.Where(scan => scan.Variables.Contains(variable)))
         {
             split._rows.Add(scan, new PartRows(scan, input.ReaderOf(scan), variable, partOf, parts, input.Control));
         }
