@@ -44,6 +44,7 @@ internal readonly struct BiasedBits
         where TVector : struct, IWordVector<TVector>
     {
         words = words[..WorldBlock.Words];
+        ulong countWord = RareBits.CountWord(_stream, block);
         if (_numerator is 0 or 1 << Digits)
         {
             words.Fill(_numerator == 0 ? 0 : ulong.MaxValue);
@@ -56,7 +57,7 @@ internal readonly struct BiasedBits
             }
         }
 
-        _rare.Write(_adds, _stream, block, words);
+        _rare.Write(_adds, countWord, _stream, block, words);
     }
 
     // Not inlined: the inliner gives up half way through so many operators if it starts from a small method.

@@ -92,28 +92,36 @@ internal sealed class DirectWorker<TVector>(WorldProgram program, int width, Wor
 
     private void Count(long worlds, int tile)
     {
+        if (worlds < 64L * tile)
+        {
+            ClearBeyond(worlds, tile);
+        }
+
+        worlds = Math.Min(worlds, 64L * tile);
+
         for (int root = 0; root < _successes.Length; root++)
         {
             int edge = program.Roots[root];
-            ulong sign = (edge & 1) == 0 ? 0 : ulong.MaxValue;
-            ReadOnlySpan<ulong> row = _words.Span.Slice((edge >> 1) * tile, tile);
-            long count = 0;
-            long left = worlds;
-            foreach (ulong word in row)
+            long ones = 0;
+            foreach (ulong word in _words.Span.Slice((edge >> 1) * tile, tile))
             {
-                if (left >= 64)
-                {
-                    count += BitOperations.PopCount(word ^ sign);
-                }
-                else if (left > 0)
-                {
-                    count += BitOperations.PopCount((word ^ sign) & ((1UL << (int)left) - 1));
-                }
-
-                left -= 64;
+                ones += BitOperations.PopCount(word);
             }
 
-            _successes[root] += count;
+            _successes[root] += (edge & 1) == 0 ? ones : worlds - ones;
+        }
+    }
+
+    /// <summary>Clears what is not asked for from the rows of the roots.</summary>
+    private void ClearBeyond(long worlds, int tile)
+    {
+        foreach (int edge in program.Roots)
+        {
+            Span<ulong> row = _words.Span.Slice((edge >> 1) * tile, tile);
+            for (int i = (int)(worlds / 64); i < tile; i++)
+            {
+                row[i] &= i == worlds / 64 ? (1UL << (int)(worlds % 64)) - 1 : 0;
+            }
         }
     }
 

@@ -34,7 +34,9 @@ internal readonly struct EightWords(Vector512<ulong> value) : IWordVector<EightW
     public static EightWords operator <<(EightWords value, int shift) => new(value._value << shift);
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public static EightWords AndNot(EightWords left, EightWords right) => new(Vector512.AndNot(left._value, right._value));
+    public static EightWords And(EightWords all, EightWords row, EightWords sign) => new(Avx512F.IsSupported
+        ? Avx512F.TernaryLogic(all._value, sign._value, row._value, 0x60)
+        : all._value & (row._value ^ sign._value));
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static EightWords RotateLeft(EightWords value, [ConstantExpected] byte shift) => new(Avx512F.IsSupported

@@ -33,7 +33,7 @@ internal readonly struct FourWords(Vector256<ulong> value) : IWordVector<FourWor
     public static FourWords operator <<(FourWords value, int shift) => new(value._value << shift);
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    public static FourWords AndNot(FourWords left, FourWords right) => new(Vector256.AndNot(left._value, right._value));
+    public static FourWords And(FourWords all, FourWords row, FourWords sign) => new(all._value & (row._value ^ sign._value));
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static FourWords RotateLeft(FourWords value, [ConstantExpected] byte shift) =>

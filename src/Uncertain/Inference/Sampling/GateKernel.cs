@@ -1,17 +1,77 @@
 using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
 
 namespace Uncertain.Inference.Sampling;
 
 /// <summary>The inner loop of sampling: conjunctions of rows of bits, each row optionally negated.</summary>
 /// <remarks>
 /// Code of one conjunction: the number of operands, then for each one 2 * row + (1 if negated). Row r takes the words
-/// from r * width on.
+/// from r * width on. The loops are compiled with all optimizations at once: an estimate runs them a few times for long.
 /// </remarks>
 internal static class GateKernel
 {
+    private const MethodImplOptions Kernel = MethodImplOptions.NoInlining | MethodImplOptions.AggressiveOptimization;
+
     /// <summary>Evaluates the conjunctions of <paramref name="code"/> one after the other into rows from <paramref name="row"/> on.</summary>
     /// <returns>The row after the last one written.</returns>
     public static int Run<TVector>(ReadOnlySpan<int> code, int row, ref ulong words, int width)
+        where TVector : struct, IWordVector<TVector> =>
+        width == WorldBlock.Words ? RunWide<TVector>(code, row, ref words) : RunNarrow<TVector>(code, row, ref words, width);
+
+    /// <summary>
+    /// Adds to <paramref name="union"/>, of a block's words, the worlds in which some conjunction of <paramref name="code"/> holds.
+    /// </summary>
+    [MethodImpl(Kernel)]
+    public static void Unite<TVector>(ReadOnlySpan<int> code, ref ulong union, ref ulong words)
+        where TVector : struct, IWordVector<TVector>
+    {
+        for (int column = 0; column < WorldBlock.Words; column += 4 * TVector.Count)
+        {
+            ref ulong target = ref Unsafe.Add(ref union, column);
+            TVector first = TVector.Load(ref target);
+            TVector second = TVector.Load(ref Unsafe.Add(ref target, TVector.Count));
+            TVector third = TVector.Load(ref Unsafe.Add(ref target, 2 * TVector.Count));
+            TVector fourth = TVector.Load(ref Unsafe.Add(ref target, 3 * TVector.Count));
+            ref int operand = ref MemoryMarshal.GetReference(code);
+            ref int end = ref Unsafe.Add(ref operand, code.Length);
+            while (Unsafe.IsAddressLessThan(ref operand, ref end))
+            {
+                And(ref operand, ref Unsafe.Add(ref words, column), out TVector a, out TVector b, out TVector c, out TVector d);
+                first |= a;
+                second |= b;
+                third |= c;
+                fourth |= d;
+                operand = ref Unsafe.Add(ref operand, 1 + operand);
+            }
+
+            Store(ref target, first, second, third, fourth);
+        }
+    }
+
+    [MethodImpl(Kernel)]
+    private static int RunWide<TVector>(ReadOnlySpan<int> code, int row, ref ulong words)
+        where TVector : struct, IWordVector<TVector>
+    {
+        ref int operand = ref MemoryMarshal.GetReference(code);
+        ref int end = ref Unsafe.Add(ref operand, code.Length);
+        while (Unsafe.IsAddressLessThan(ref operand, ref end))
+        {
+            ref ulong target = ref Unsafe.Add(ref words, (nint)row * WorldBlock.Words);
+            for (int column = 0; column < WorldBlock.Words; column += 4 * TVector.Count)
+            {
+                And(ref operand, ref Unsafe.Add(ref words, column), out TVector a, out TVector b, out TVector c, out TVector d);
+                Store(ref Unsafe.Add(ref target, column), a, b, c, d);
+            }
+
+            operand = ref Unsafe.Add(ref operand, 1 + operand);
+            row++;
+        }
+
+        return row;
+    }
+
+    [MethodImpl(Kernel)]
+    private static int RunNarrow<TVector>(ReadOnlySpan<int> code, int row, ref ulong words, int width)
         where TVector : struct, IWordVector<TVector>
     {
         int position = 0;
@@ -19,16 +79,16 @@ internal static class GateKernel
         {
             ReadOnlySpan<int> operands = code.Slice(position + 1, code[position]);
             ref ulong target = ref Unsafe.Add(ref words, (nint)row * width);
-            int column = 0;
-            for (; column + (4 * TVector.Count) <= width; column += 4 * TVector.Count)
+            for (int column = 0; column < width; column += TVector.Count)
             {
-                And(operands, ref Unsafe.Add(ref words, column), width, out TVector a, out TVector b, out TVector c, out TVector d);
-                Store(ref Unsafe.Add(ref target, column), a, b, c, d);
-            }
+                TVector all = TVector.Create(ulong.MaxValue);
+                foreach (int operand in operands)
+                {
+                    ref ulong source = ref Unsafe.Add(ref words, ((nint)(operand >> 1) * width) + column);
+                    all = TVector.And(all, TVector.Load(ref source), Sign<TVector>(operand));
+                }
 
-            for (; column < width; column += TVector.Count)
-            {
-                OneColumn<TVector>(operands, ref Unsafe.Add(ref words, column), width).Store(ref Unsafe.Add(ref target, column));
+                all.Store(ref Unsafe.Add(ref target, column));
             }
 
             position += 1 + operands.Length;
@@ -38,67 +98,26 @@ internal static class GateKernel
         return row;
     }
 
-    /// <summary>
-    /// Adds to <paramref name="union"/>, of a block's words, the worlds in which some conjunction of <paramref name="code"/> holds.
-    /// </summary>
-    public static void Unite<TVector>(ReadOnlySpan<int> code, ref ulong union, ref ulong words)
-        where TVector : struct, IWordVector<TVector>
-    {
-        for (int column = 0; column < WorldBlock.Words; column += 4 * TVector.Count)
-        {
-            ref ulong source = ref Unsafe.Add(ref words, column);
-            ref ulong target = ref Unsafe.Add(ref union, column);
-            TVector first = TVector.Load(ref target);
-            TVector second = TVector.Load(ref Unsafe.Add(ref target, TVector.Count));
-            TVector third = TVector.Load(ref Unsafe.Add(ref target, 2 * TVector.Count));
-            TVector fourth = TVector.Load(ref Unsafe.Add(ref target, 3 * TVector.Count));
-            int position = 0;
-            while (position < code.Length)
-            {
-                ReadOnlySpan<int> operands = code.Slice(position + 1, code[position]);
-                And(operands, ref source, WorldBlock.Words, out TVector a, out TVector b, out TVector c, out TVector d);
-                first |= a;
-                second |= b;
-                third |= c;
-                fourth |= d;
-                position += 1 + operands.Length;
-            }
-
-            Store(ref target, first, second, third, fourth);
-        }
-    }
-
-    [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private static TVector OneColumn<TVector>(ReadOnlySpan<int> operands, ref ulong words, int width)
-        where TVector : struct, IWordVector<TVector>
-    {
-        TVector all = TVector.Create(ulong.MaxValue);
-        foreach (int operand in operands)
-        {
-            all &= TVector.Load(ref Unsafe.Add(ref words, (nint)(operand >> 1) * width)) ^ Sign<TVector>(operand);
-        }
-
-        return all;
-    }
-
     /// <summary>One conjunction in four columns: four accumulators hide the latency of the loads and share the decoding of the operand.</summary>
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     private static void And<TVector>(
-        ReadOnlySpan<int> operands, ref ulong words, int width, out TVector a, out TVector b, out TVector c, out TVector d)
+        ref int code, ref ulong words, out TVector a, out TVector b, out TVector c, out TVector d)
         where TVector : struct, IWordVector<TVector>
     {
         TVector first = TVector.Create(ulong.MaxValue);
         TVector second = first;
         TVector third = first;
         TVector fourth = first;
-        foreach (int operand in operands)
+        nint count = code;
+        for (nint i = 1; i <= count; i++)
         {
-            ref ulong source = ref Unsafe.Add(ref words, (nint)(operand >> 1) * width);
+            int operand = Unsafe.Add(ref code, i);
+            ref ulong source = ref Unsafe.Add(ref words, (nint)(operand >> 1) * WorldBlock.Words);
             TVector sign = Sign<TVector>(operand);
-            first &= TVector.Load(ref source) ^ sign;
-            second &= TVector.Load(ref Unsafe.Add(ref source, TVector.Count)) ^ sign;
-            third &= TVector.Load(ref Unsafe.Add(ref source, 2 * TVector.Count)) ^ sign;
-            fourth &= TVector.Load(ref Unsafe.Add(ref source, 3 * TVector.Count)) ^ sign;
+            first = TVector.And(first, TVector.Load(ref source), sign);
+            second = TVector.And(second, TVector.Load(ref Unsafe.Add(ref source, TVector.Count)), sign);
+            third = TVector.And(third, TVector.Load(ref Unsafe.Add(ref source, 2 * TVector.Count)), sign);
+            fourth = TVector.And(fourth, TVector.Load(ref Unsafe.Add(ref source, 3 * TVector.Count)), sign);
         }
 
         a = first;

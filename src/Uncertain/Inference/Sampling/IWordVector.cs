@@ -26,8 +26,8 @@ internal interface IWordVector<TSelf>
 
     static abstract TSelf operator >>>(TSelf value, int shift);
 
-    /// <summary>The bits of <paramref name="left"/> that are not in <paramref name="right"/>.</summary>
-    static abstract TSelf AndNot(TSelf left, TSelf right);
+    /// <summary>all &amp; (row ^ sign): one operand of a conjunction, in one instruction where there is one.</summary>
+    static abstract TSelf And(TSelf all, TSelf row, TSelf sign);
 
     static abstract TSelf RotateLeft(TSelf value, [ConstantExpected] byte shift);
 

@@ -24,7 +24,7 @@ internal readonly struct OneWord(ulong value) : IWordVector<OneWord>
 
     public static OneWord operator <<(OneWord value, int shift) => new(value._value << shift);
 
-    public static OneWord AndNot(OneWord left, OneWord right) => new(left._value & ~right._value);
+    public static OneWord And(OneWord all, OneWord row, OneWord sign) => new(all._value & (row._value ^ sign._value));
 
     public static OneWord RotateLeft(OneWord value, [ConstantExpected] byte shift) =>
         new(BitOperations.RotateLeft(value._value, shift));

@@ -56,8 +56,19 @@ internal readonly struct RareBits
     /// <summary>The mean number of events of a block.</summary>
     public double Mean => Math.ScaleB(_kept, _exponent - 53 - _halvings);
 
+    /// <summary>
+    /// The word that says how many events a block has. To be had long before they are written: the processor then knows
+    /// the end of that loop in time.
+    /// </summary>
+    public static ulong CountWord(SplitMixStream stream, ulong block) => stream.Word(FirstEvent + (block << BlockShift));
+
     /// <summary>Draws the ones of a block; they become <paramref name="value"/> in <paramref name="words"/>, the rest stays.</summary>
-    public void Write(bool value, SplitMixStream stream, ulong block, Span<ulong> words)
+    /// <param name="value">What is written.</param>
+    /// <param name="countWord">The <see cref="CountWord"/>.</param>
+    /// <param name="stream">The variable's stream.</param>
+    /// <param name="block">Number of the block.</param>
+    /// <param name="words">The words of the block.</param>
+    public void Write(bool value, ulong countWord, SplitMixStream stream, ulong block, Span<ulong> words)
     {
         if (IsNever)
         {
@@ -68,9 +79,8 @@ internal readonly struct RareBits
         ref ulong start = ref MemoryMarshal.GetReference(words[..WorldBlock.Words]);
         ulong ones = value ? ulong.MaxValue : 0;
         ulong first = FirstEvent + (block << BlockShift);
-        ulong count = stream.Word(first);
         ref ulong tail = ref MemoryMarshal.GetReference(PoissonCounts.Of(_exponent));
-        while (count < tail)
+        while (countWord < tail)
         {
             first++;
             ulong word = stream.Word(first);

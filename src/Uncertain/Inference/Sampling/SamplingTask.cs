@@ -28,7 +28,7 @@ internal sealed record SamplingTask(
         {
             string remedy = bytes > largest ? "Split the query, or filter its sources first." : "Raise EvaluationOptions.MemoryBudget.";
             throw new EvaluationRefusedException(
-                $"Sampling this lineage takes {bytes:N0} bytes for the bits of 512 worlds, more than the {Math.Min(largest, budget):N0} "
+                $"Sampling this lineage takes {bytes:N0} bytes for the bits of a block of worlds, more than the {Math.Min(largest, budget):N0} "
                 + $"that it may use. {remedy}");
         }
 

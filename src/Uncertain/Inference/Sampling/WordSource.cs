@@ -27,17 +27,12 @@ internal struct WordSource<TVector>(TVector s0, TVector s1, TVector s2, TVector 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static WordSource<TVector> At(SplitMixStream stream, ulong block, int lane)
     {
-        // Four neighbouring words of the stream for each lane.
-        TVector gamma = TVector.Create(stream.Gamma);
-        ulong number = 4 * ((block * WorldBlock.Lanes) + (ulong)lane);
-        TVector place = TVector.Ramp(stream.Start + (number * stream.Gamma), 4 * stream.Gamma);
-        TVector s0 = Mix(place);
-        place += gamma;
-        TVector s1 = Mix(place);
-        place += gamma;
-        TVector s2 = Mix(place);
-        place += gamma;
-        return new WordSource<TVector>(s0, s1, s2, Mix(place));
+        // Two neighbouring words of the stream for each lane, and what they were before their last multiplication.
+        ulong number = 2 * ((block * WorldBlock.Lanes) + (ulong)lane);
+        TVector place = TVector.Ramp(stream.Start + (number * stream.Gamma), 2 * stream.Gamma);
+        TVector first = HalfMix(place);
+        TVector second = HalfMix(place + TVector.Create(stream.Gamma));
+        return new WordSource<TVector>(Mix(first), Mix(second), first, second);
     }
 
     /// <summary>The next two words of each lane; the first is the one of xoshiro256+.</summary>
@@ -57,10 +52,16 @@ internal struct WordSource<TVector>(TVector s0, TVector s1, TVector s2, TVector 
     }
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
-    private static TVector Mix(TVector z)
+    private static TVector HalfMix(TVector z)
     {
         z = (z ^ (z >>> 30)) * TVector.Create(SplitMixStream.FirstFactor);
-        z = (z ^ (z >>> 27)) * TVector.Create(SplitMixStream.SecondFactor);
-        return z ^ (z >>> 31);
+        return z ^ (z >>> 27);
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static TVector Mix(TVector half)
+    {
+        half *= TVector.Create(SplitMixStream.SecondFactor);
+        return half ^ (half >>> 31);
     }
 }
