@@ -76,6 +76,53 @@ internal sealed class CompiledForm
         }
     }
 
+    /// <summary>The same under many settings, eight or four of them side by side.</summary>
+    /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>
+    public Probability[] Evaluate(IReadOnlyList<ChanceSetting> settings, string evaluator, Func<Cost> cost)
+    {
+        var results = new Probability[settings.Count];
+        for (int first = 0; first < results.Length; first += EightDoubles.Count)
+        {
+            Span<Probability> group = results.AsSpan(first, Math.Min(EightDoubles.Count, results.Length - first));
+            var eight = new EightChances(new SettingGroup(settings, first, EightDoubles.Count));
+            if (_roundings > SafeRoundings
+                || !ForwardPass<EightDoubles, EightChances>.TryEvaluate(this, eight, out Tails<EightDoubles> tails))
+            {
+                EvaluateExtended(settings, first, group, evaluator, cost);
+                continue;
+            }
+
+            for (int lane = 0; lane < group.Length; lane++)
+            {
+                group[lane] = Probability.Exact(new Tails<double>(tails.True[lane], tails.False[lane]), evaluator, cost());
+            }
+        }
+
+        return results;
+    }
+
+    private void EvaluateExtended(
+        IReadOnlyList<ChanceSetting> settings, int first, Span<Probability> results, string evaluator, Func<Cost> cost)
+    {
+        try
+        {
+            for (int done = 0; done < results.Length; done += FourExtended.Count)
+            {
+                var four = new FourExtendedChances(new SettingGroup(settings, first + done, FourExtended.Count));
+                ForwardPass<FourExtended, FourExtendedChances>.TryEvaluate(this, four, out Tails<FourExtended> tails);
+                for (int lane = 0; lane < FourExtended.Count && done + lane < results.Length; lane++)
+                {
+                    results[done + lane] = Probability.Exact(
+                        new Tails<ExtendedDouble>(tails.True.Lane(lane), tails.False.Lane(lane)), evaluator, cost());
+                }
+            }
+        }
+        catch (OverflowException exception)
+        {
+            throw BelowRange(exception);
+        }
+    }
+
     /// <summary>
     /// The derivatives in doubles, if those keep 1e-13 of the larger of the two numbers whose difference each is; else null.
     /// </summary>
