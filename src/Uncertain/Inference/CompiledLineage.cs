@@ -122,7 +122,8 @@ public sealed class CompiledLineage
     private Dictionary<Lineage, double> Derivatives(ChanceSetting setting)
     {
         // Doubles suffice unless a difference takes digits away.
-        if (_form.TryDerive(setting) is { } plain && Array.TrueForAll(plain.OfSlot, KeepsDigits))
+        if (_form.TryDerive(setting, out double error) is { } plain
+            && Array.TrueForAll(plain.OfSlot, difference => KeepsDigits(difference, error)))
         {
             return ByLiteral(plain.Slots, i => plain.OfSlot[i].Rise - plain.OfSlot[i].Fall);
         }
@@ -143,9 +144,9 @@ public sealed class CompiledLineage
         return result;
     }
 
-    // The difference takes one digit at most, of the thirteen that there are.
-    private static bool KeepsDigits(Difference<double> difference) =>
-        Math.Abs(difference.Rise - difference.Fall) >= 0.1 * (difference.Rise + difference.Fall);
+    // The error of both parts must stay below the promised one of what is left of them.
+    private static bool KeepsDigits(Difference<double> difference, double error) =>
+        1e-12 * Math.Abs(difference.Rise - difference.Fall) >= error * (difference.Rise + difference.Fall);
 
     private Func<Cost> Timer()
     {

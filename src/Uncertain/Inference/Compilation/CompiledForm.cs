@@ -11,8 +11,8 @@ internal sealed class CompiledForm
     /// <summary>Roundings along which a double keeps the promised 1e-12 with a margin: 4096 * 2^-53 = 4.5e-13.</summary>
     private const double SafeRoundings = 4096;
 
-    /// <summary>The same for what may lose a digit in a difference, and for each of the two passes of a derivative.</summary>
-    private const double DerivativeRoundings = 256;
+    /// <summary>What one rounding may change, relatively.</summary>
+    private const double Rounding = 1.0 / (1L << 53);
 
     private readonly double _roundings;
 
@@ -124,12 +124,16 @@ internal sealed class CompiledForm
     }
 
     /// <summary>
-    /// The derivatives in doubles, if those keep 1e-13 of the larger of the two numbers whose difference each is; else null.
+    /// The derivatives in doubles, both parts of each difference within a relative <paramref name="error"/>; null if doubles do
+    /// not do for any.
     /// </summary>
-    public FormDerivatives<double>? TryDerive(ChanceSetting setting) =>
-        _roundings > DerivativeRoundings || BackwardRoundings() > DerivativeRoundings
+    public FormDerivatives<double>? TryDerive(ChanceSetting setting, out double error)
+    {
+        error = _roundings > SafeRoundings ? 1 : (_roundings + BackwardRoundings()) * Rounding;
+        return error > 2 * SafeRoundings * Rounding
             ? null
             : BackwardPass<double, DoubleChances>.TryRun(this, new DoubleChances(setting));
+    }
 
     /// <summary>The derivatives in extended numbers: 31 digits, of which the difference may cost the first.</summary>
     /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>
