@@ -56,6 +56,30 @@ public sealed class CompiledLineage
     }
 
     /// <summary>
+    /// The probabilities under many settings of the chances; exact, and the same figures as one by one. Eight settings are computed
+    /// side by side, which takes a fraction of the time.
+    /// </summary>
+    /// <param name="settings">For each setting the changed chances, as in <see cref="Evaluate(IReadOnlyDictionary{Lineage, double})"/>.</param>
+    /// <returns>The probabilities in the order of the settings; each one's cost is the time since the call.</returns>
+    /// <exception cref="InvalidInputException">
+    /// A key is no literal, a chance is not in [0, 1], or the outcomes of a variable add up to more than 1.
+    /// </exception>
+    /// <exception cref="WorldSpaceMismatchException">A key belongs to another world space.</exception>
+    /// <exception cref="EvaluationRefusedException">A probability is below the range of the evaluator's numbers.</exception>
+    public IReadOnlyList<Probability> Evaluate(IReadOnlyList<IReadOnlyDictionary<Lineage, double>> settings)
+    {
+        ArgumentNullException.ThrowIfNull(settings);
+        Func<Cost> cost = Timer();
+        var own = new ChanceSetting[settings.Count];
+        for (int i = 0; i < own.Length; i++)
+        {
+            own[i] = Setting(settings[i] ?? throw new ArgumentNullException(nameof(settings), $"Setting {i} is null."));
+        }
+
+        return _form.Evaluate(own, CompilationEvaluator.EvaluatorName, cost);
+    }
+
+    /// <summary>
     /// How much the probability changes with the chance of each literal of the lineage: for an event
     /// P(lineage given the event) - P(lineage given its absence), in [-1, 1]; for an alternative of a many-outcome variable
     /// P(lineage given the alternative) - P(lineage given none of the alternatives).
@@ -98,7 +122,8 @@ public sealed class CompiledLineage
     private Dictionary<Lineage, double> Derivatives(ChanceSetting setting)
     {
         // Doubles suffice unless a difference takes digits away.
-        if (_form.TryDerive(setting) is { } plain && Array.TrueForAll(plain.OfSlot, KeepsDigits))
+        if (_form.TryDerive(setting, out double error) is { } plain
+            && Array.TrueForAll(plain.OfSlot, difference => KeepsDigits(difference, error)))
         {
             return ByLiteral(plain.Slots, i => plain.OfSlot[i].Rise - plain.OfSlot[i].Fall);
         }
@@ -119,9 +144,9 @@ public sealed class CompiledLineage
         return result;
     }
 
-    // The difference takes one digit at most, of the thirteen that there are.
-    private static bool KeepsDigits(Difference<double> difference) =>
-        Math.Abs(difference.Rise - difference.Fall) >= 0.1 * (difference.Rise + difference.Fall);
+    // The error of both parts must stay below the promised one of what is left of them.
+    private static bool KeepsDigits(Difference<double> difference, double error) =>
+        1e-12 * Math.Abs(difference.Rise - difference.Fall) >= error * (difference.Rise + difference.Fall);
 
     private Func<Cost> Timer()
     {

@@ -1,3 +1,4 @@
+using System.Numerics;
 using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
@@ -8,7 +9,11 @@ namespace Uncertain.Numerics;
 /// A number is (High + Low) * 2^Exponent, High in [1, 2) or 0. A zero has an exponent below all others, so that it never decides how a
 /// sum is aligned. The same arithmetic as in <see cref="ExtendedDouble"/>, without branches.
 /// </remarks>
-internal readonly struct FourExtended(Vector256<double> high, Vector256<double> low, Vector256<long> exponent)
+internal readonly struct FourExtended(Vector256<double> high, Vector256<double> low, Vector256<long> exponent) :
+    IAdditionOperators<FourExtended, FourExtended, FourExtended>,
+    IMultiplyOperators<FourExtended, FourExtended, FourExtended>,
+    IAdditiveIdentity<FourExtended, FourExtended>,
+    IMultiplicativeIdentity<FourExtended, FourExtended>
 {
     public const int Count = 4;
 
@@ -28,6 +33,10 @@ internal readonly struct FourExtended(Vector256<double> high, Vector256<double> 
 
     public static FourExtended Zero =>
         new(Vector256<double>.Zero, Vector256<double>.Zero, Vector256.Create(ZeroExponent));
+
+    static FourExtended IAdditiveIdentity<FourExtended, FourExtended>.AdditiveIdentity => Zero;
+
+    static FourExtended IMultiplicativeIdentity<FourExtended, FourExtended>.MultiplicativeIdentity => One;
 
     [MethodImpl(MethodImplOptions.AggressiveInlining)]
     public static FourExtended operator *(FourExtended left, FourExtended right)
@@ -68,6 +77,26 @@ internal readonly struct FourExtended(Vector256<double> high, Vector256<double> 
         return new FourExtended(
             Vector256.Create(high), Vector256.Create(low), Vector256.Create(high == 0 ? ZeroExponent : exponent));
     }
+
+    /// <summary>Four numbers.</summary>
+    public static FourExtended Create(ReadOnlySpan<ExtendedDouble> values)
+    {
+        Span<double> high = stackalloc double[Count];
+        Span<double> low = stackalloc double[Count];
+        Span<long> exponent = stackalloc long[Count];
+        for (int lane = 0; lane < Count; lane++)
+        {
+            (high[lane], low[lane], int own) = values[lane].Parts;
+            exponent[lane] = high[lane] == 0 ? ZeroExponent : own;
+        }
+
+        return new FourExtended(
+            Vector256.Create<double>(high), Vector256.Create<double>(low), Vector256.Create<long>(exponent));
+    }
+
+    /// <summary>One of the four.</summary>
+    /// <exception cref="OverflowException">Its exponent has more than 32 bits.</exception>
+    public ExtendedDouble Lane(int lane) => ExtendedDouble.FromParts(High[lane], Low[lane], Exponent[lane]);
 
     // A factor 2^e for e within the range of double; others give anything, and are masked by the caller.
     [MethodImpl(MethodImplOptions.AggressiveInlining)]

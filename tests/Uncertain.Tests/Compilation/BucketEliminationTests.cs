@@ -31,6 +31,58 @@ public sealed class BucketEliminationTests
         Assert.InRange(taken, 500, 2500); // The others factor into independent parts.
     }
 
+    [Theory]
+    [InlineData(false)]
+    [InlineData(true)]
+    public void Evaluate_RandomCombinationsOfTerms_EqualsEnumeration(bool manyOutcomes)
+    {
+        int taken = 0;
+        for (int seed = 0; seed < 3000; seed++)
+        {
+            var formulas = new RandomFormulas(seed + 900_000, manyOutcomes);
+            Lineage[] lists = [.. Enumerable.Range(0, 2 + (seed % 3)).Select(i => formulas.Terms(dual: (seed + i) % 4 == 0, monotone: false))];
+            Lineage lineage = (seed % 5) switch
+            {
+                0 => lists[0] & !lists[1],
+                1 => lists[0] ^ lists[1],
+                2 => Lineage.AtLeast(2, lists),
+                3 => Lineage.Exactly(1, lists),
+                _ => (lists[0] & !lists[1]) | (lists[^1] & formulas.Literal()),
+            };
+
+            if (Evaluate(lineage, new EvaluationOptions()) is { } own)
+            {
+                taken++;
+                (double value, double complement) = Enumeration.Of(lineage);
+                AssertClose(value, own.True.ToDouble(), $"seed {seed}: {lineage}");
+                AssertClose(complement, own.False.ToDouble(), $"seed {seed}: {lineage}");
+            }
+        }
+
+        Assert.InRange(taken, 500, 2900);
+    }
+
+    [Fact]
+    public void Evaluate_DifferenceOfTwoJoins_IsWithinTheDefaultBudgets()
+    {
+        // Over the same R and T: no list of terms, and as a circuit of width 20 or more.
+        var worlds = new WorldSpace();
+        var random = new Random(9);
+        Lineage[] r = [.. Enumerable.Range(0, 60).Select(i => worlds.Event($"r{i}", random.NextDouble()))];
+        Lineage[] t = [.. Enumerable.Range(0, 60).Select(i => worlds.Event($"t{i}", random.NextDouble()))];
+        Lineage Join(string name) => Lineage.Any([.. Enumerable.Range(0, 90).Select(
+            i => r[random.Next(60)] & worlds.Event($"{name}{i}", 0.2 * random.NextDouble()) & t[random.Next(60)])]);
+        (Lineage one, Lineage other) = (Join("a"), Join("b"));
+        var options = new EvaluationOptions { Evaluator = Evaluators.Compilation };
+
+        Probability difference = (one & !other).Evaluate(options);
+
+        // P(one or other) - P(other); neither is near 0 or 1.
+        double expected = (one | other).Evaluate(options).Value - other.Evaluate(options).Value;
+        Assert.Equal(expected, difference.Value, 1e-12);
+        Assert.InRange(expected, 1e-6, 0.5);
+    }
+
     [Fact]
     public void Evaluate_JoinsOfRandomPairs_EqualCompiledForm()
     {

@@ -1,4 +1,3 @@
-using System.Runtime.Intrinsics;
 using Uncertain.Numerics;
 
 namespace Uncertain.Tests.Numerics;
@@ -63,15 +62,7 @@ public sealed class FourExtendedTests
         : (ExtendedDouble.From(random.NextDouble()) + ExtendedDouble.From(random.NextDouble() * 1e-17))
             * ExtendedDouble.From(Math.ScaleB(1, random.Next(8) == 0 ? random.Next(-1000, 1000) : random.Next(-3, 3)));
 
-    private static FourExtended Join(ExtendedDouble[] numbers)
-    {
-        FourExtended[] lanes = [.. numbers.Select(FourExtended.Create)];
-        return new FourExtended(
-            Vector256.Create(lanes[0].High[0], lanes[1].High[0], lanes[2].High[0], lanes[3].High[0]),
-            Vector256.Create(lanes[0].Low[0], lanes[1].Low[0], lanes[2].Low[0], lanes[3].Low[0]),
-            Vector256.Create(lanes[0].Exponent[0], lanes[1].Exponent[0], lanes[2].Exponent[0], lanes[3].Exponent[0]));
-    }
+    private static FourExtended Join(ExtendedDouble[] numbers) => FourExtended.Create(numbers);
 
-    private static ExtendedDouble Lane(FourExtended four, int lane) =>
-        ExtendedDouble.FromParts(four.High[lane], four.Low[lane], four.High[lane] == 0 ? 0 : four.Exponent[lane]);
+    private static ExtendedDouble Lane(FourExtended four, int lane) => four.Lane(lane);
 }

@@ -12,6 +12,11 @@ internal sealed class ChanceSetting(VariableTable table, Dictionary<int, double>
 {
     private Dictionary<int, ExtendedDouble[]>? _othersOf;
 
+    /// <summary>The slots whose chances are replaced.</summary>
+    public IReadOnlyCollection<int> ChangedSlots => changes is null ? [] : changes.Keys;
+
+    public int VariableOf(int slot) => table.VariableOf(slot);
+
     public bool IsTwoOutcome(int slot) => !table.IsAlternative(slot);
 
     public double Chance(int slot) =>

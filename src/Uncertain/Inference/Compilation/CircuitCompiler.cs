@@ -1,14 +1,19 @@
 using System.Runtime.InteropServices;
+using Uncertain.Inference.Compilation.Buckets;
 using Uncertain.Inference.Compilation.Decisions;
 using Uncertain.Lineages;
+using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Compilation;
 
 /// <summary>
-/// Compiles a module that is no list of terms. One that consists of decisions already is taken over; else two variable orders compete, each with a growing share of the budget: by first
-/// occurrence from the last made part back to the first, and along an elimination tree of the circuit, gates included.
+/// Compiles a module that is no list of terms. One that consists of decisions already is taken over. Where only a figure is asked, a
+/// combination of a few lists may be evaluated by buckets. Else two variable orders compete, each with a growing share of the
+/// budget: by first occurrence from the last made part back to the first, and along an elimination tree of the circuit, gates
+/// included.
 /// </summary>
-internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget)
+internal sealed class CircuitCompiler(
+    AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget, TermSimplifier simplifier, FormValues? values)
 {
     private const long FirstTrial = 20_000;
     private const int TrialGrowth = 4;
@@ -28,11 +33,27 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             return edge;
         }
 
+        TermCombination? combination = values is null ? null : TermCombination.TryRead(module, simplifier, budget);
+        BucketEvaluator? buckets = combination is null
+            ? null
+            : BucketEvaluator.TryPrepare(combination.Terms, combination.ListEnds, atoms, workspace, budget);
+        if (buckets?.IsQuick == true)
+        {
+            return Combine(combination!, buckets);
+        }
+
+        variables = workspace.NumberVariables(module, budget);
         int[]? byTree = null;
         int[] parents = [];
         long residuals = Math.Max(FirstTrial, 4L * module.OperandCount);
         for (int trial = 0; ; trial++)
         {
+            if (trial == 2 && buckets is not null)
+            {
+                buckets.Interrupt();
+                return Combine(combination!, buckets);
+            }
+
             bool alongTree = trial % 2 == 1;
             if (alongTree)
             {
@@ -52,6 +73,7 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
             catch (BudgetSpentException exception) when (exception.IsTrial)
             {
                 form.ReturnTo(mark);
+                values?.ReturnTo(mark);
                 budget.Refund(spent);
             }
             finally
@@ -61,6 +83,20 @@ internal sealed class CircuitCompiler(AtomTable atoms, Workspace workspace, Form
 
             residuals *= alongTree ? TrialGrowth : 1;
         }
+    }
+
+    private int Combine(TermCombination combination, BucketEvaluator buckets)
+    {
+        ExtendedDouble[] chances = buckets.Run(values!);
+        Tails<ExtendedDouble> tails = default;
+        for (int set = 0; set < chances.Length; set++)
+        {
+            tails = combination.Holds(set)
+                ? tails with { True = tails.True + chances[set] }
+                : tails with { False = tails.False + chances[set] };
+        }
+
+        return values!.Add(tails);
     }
 
     private int[] ByTree(ModuleFormula module, List<int> variables, out int[] parents)

@@ -11,8 +11,8 @@ internal sealed class CompiledForm
     /// <summary>Roundings along which a double keeps the promised 1e-12 with a margin: 4096 * 2^-53 = 4.5e-13.</summary>
     private const double SafeRoundings = 4096;
 
-    /// <summary>The same for what may lose a digit in a difference, and for each of the two passes of a derivative.</summary>
-    private const double DerivativeRoundings = 256;
+    /// <summary>What one rounding may change, relatively.</summary>
+    private const double Rounding = 1.0 / (1L << 53);
 
     private readonly double _roundings;
 
@@ -76,13 +76,64 @@ internal sealed class CompiledForm
         }
     }
 
+    /// <summary>The same under many settings, eight or four of them side by side.</summary>
+    /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>
+    public Probability[] Evaluate(IReadOnlyList<ChanceSetting> settings, string evaluator, Func<Cost> cost)
+    {
+        var results = new Probability[settings.Count];
+        for (int first = 0; first < results.Length; first += EightDoubles.Count)
+        {
+            Span<Probability> group = results.AsSpan(first, Math.Min(EightDoubles.Count, results.Length - first));
+            var eight = new EightChances(new SettingGroup(settings, first, EightDoubles.Count));
+            if (_roundings > SafeRoundings
+                || !ForwardPass<EightDoubles, EightChances>.TryEvaluate(this, eight, out Tails<EightDoubles> tails))
+            {
+                EvaluateExtended(settings, first, group, evaluator, cost);
+                continue;
+            }
+
+            for (int lane = 0; lane < group.Length; lane++)
+            {
+                group[lane] = Probability.Exact(new Tails<double>(tails.True[lane], tails.False[lane]), evaluator, cost());
+            }
+        }
+
+        return results;
+    }
+
+    private void EvaluateExtended(
+        IReadOnlyList<ChanceSetting> settings, int first, Span<Probability> results, string evaluator, Func<Cost> cost)
+    {
+        try
+        {
+            for (int done = 0; done < results.Length; done += FourExtended.Count)
+            {
+                var four = new FourExtendedChances(new SettingGroup(settings, first + done, FourExtended.Count));
+                ForwardPass<FourExtended, FourExtendedChances>.TryEvaluate(this, four, out Tails<FourExtended> tails);
+                for (int lane = 0; lane < FourExtended.Count && done + lane < results.Length; lane++)
+                {
+                    results[done + lane] = Probability.Exact(
+                        new Tails<ExtendedDouble>(tails.True.Lane(lane), tails.False.Lane(lane)), evaluator, cost());
+                }
+            }
+        }
+        catch (OverflowException exception)
+        {
+            throw BelowRange(exception);
+        }
+    }
+
     /// <summary>
-    /// The derivatives in doubles, if those keep 1e-13 of the larger of the two numbers whose difference each is; else null.
+    /// The derivatives in doubles, both parts of each difference within a relative <paramref name="error"/>; null if doubles do
+    /// not do for any.
     /// </summary>
-    public FormDerivatives<double>? TryDerive(ChanceSetting setting) =>
-        _roundings > DerivativeRoundings || BackwardRoundings() > DerivativeRoundings
+    public FormDerivatives<double>? TryDerive(ChanceSetting setting, out double error)
+    {
+        error = _roundings > SafeRoundings ? 1 : (_roundings + BackwardRoundings()) * Rounding;
+        return error > 2 * SafeRoundings * Rounding
             ? null
             : BackwardPass<double, DoubleChances>.TryRun(this, new DoubleChances(setting));
+    }
 
     /// <summary>The derivatives in extended numbers: 31 digits, of which the difference may cost the first.</summary>
     /// <exception cref="EvaluationRefusedException">A number is below the range of extended numbers.</exception>

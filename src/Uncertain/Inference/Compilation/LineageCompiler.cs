@@ -33,7 +33,7 @@ internal sealed class LineageCompiler
         var workspace = new Workspace(_atoms);
         _simplifier = new TermSimplifier(_atoms, workspace, budget);
         _factoring = new TermFactoring(_atoms, workspace, _form, budget, _values);
-        _circuits = new CircuitCompiler(_atoms, workspace, _form, budget);
+        _circuits = new CircuitCompiler(_atoms, workspace, _form, budget, _simplifier, _values);
     }
 
     /// <summary>The compiled form.</summary>

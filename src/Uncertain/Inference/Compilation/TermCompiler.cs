@@ -1,5 +1,6 @@
 using System.Runtime.InteropServices;
 using Uncertain.Inference.Compilation.Buckets;
+using Uncertain.Numerics;
 
 namespace Uncertain.Inference.Compilation;
 
@@ -10,12 +11,6 @@ namespace Uncertain.Inference.Compilation;
 internal sealed class TermCompiler(
     AtomTable atoms, Workspace workspace, FormBuilder form, CompilationBudget budget, FormValues? values)
 {
-    // A state of a bucket takes a tenth of a microsecond at most, a residual formula or a node of the form near one.
-    private const double StatesPerNode = 64;
-
-    // Up to here, a tenth of a second, buckets need no comparison with decisions.
-    private const double QuickStates = 1 << 24;
-
     // Up to here all pairs of a term's variables are joined; beyond, the terms become vertices between them.
     private const long JoinedPairs = 4_000_000;
 
@@ -30,34 +25,23 @@ internal sealed class TermCompiler(
     /// <summary>By buckets where these are cheap; else by decisions, for as long as buckets would take where they can be.</summary>
     private int Evaluate(TermList terms, FormValues known)
     {
-        var network = new TermNetwork(terms, atoms, workspace, budget);
-        if (BucketPlan.TryMake(network, budget) is not { } plan)
+        if (BucketEvaluator.TryPrepare(terms, [terms.Count], atoms, workspace, budget) is not { } buckets)
         {
             return Decide(terms);
         }
 
-        long bytes = BucketElimination.Bytes(network, plan);
-        double nodes = plan.Cost / StatesPerNode;
-        if (nodes >= budget.NodesLeft || !budget.CanTake(bytes))
+        if (!buckets.IsQuick)
         {
-            return Decide(terms);
-        }
-
-        if (plan.Cost > QuickStates)
-        {
-            if (TryDecide(terms, (long)nodes) is { } edge)
+            if (TryDecide(terms, buckets.CostInNodes) is { } edge)
             {
                 return edge;
             }
 
-            network = new TermNetwork(terms, atoms, workspace, budget);
+            buckets.Interrupt();
         }
 
-        budget.Bytes(bytes);
-        int result = known.Add(BucketElimination.Run(network, plan, atoms, known, budget));
-        budget.Bytes(-bytes);
-        budget.Nodes((int)nodes);
-        return result;
+        ExtendedDouble[] chances = buckets.Run(known);
+        return known.Add(new Tails<ExtendedDouble>(chances[1], chances[0]));
     }
 
     private int? TryDecide(TermList terms, long residuals)

@@ -4,13 +4,13 @@ using Uncertain.Numerics;
 namespace Uncertain.Inference.Compilation.Buckets;
 
 /// <summary>
-/// The probability of a disjunction of terms under one setting of the chances, without a compiled form: variables are eliminated one
-/// after the other, over tables of all states of the variables that still hang together with them.
+/// The chances of a few disjunctions of terms, together, under one setting of the chances of variables and without a compiled form:
+/// variables are eliminated one after the other, over tables of all states of the variables that still hang together with them.
 /// </summary>
 /// <remarks>
-/// <para>R. Dechter, "Bucket elimination: a unifying framework for reasoning", Artificial Intelligence 113 (1999). A table has, for
-/// each state of its variables, the chance that none of the terms met so far holds and the chance that some does; both are sums of
-/// products of non-negative numbers. Buckets are worked off branch by branch, so that few tables exist at a time, in one array
+/// <para>R. Dechter, "Bucket elimination: a unifying framework for reasoning", Artificial Intelligence 113 (1999). A table has,
+/// for each state of its variables and each set of lists, the chance that just these lists have a term that holds, of the terms met
+/// so far; all are sums of products of non-negative numbers. Buckets are worked off branch by branch, so that few tables exist at a time, in one array
 /// used as a stack.</para>
 /// <para>Cost: see <see cref="BucketPlan"/>; linear in the number of variables at a fixed width.</para>
 /// </remarks>
@@ -23,14 +23,15 @@ internal sealed class BucketElimination
     private readonly FormValues _values;
     private readonly AtomTable _atoms;
     private readonly CompilationBudget _budget;
-    private readonly ExtendedColumn _none;
-    private readonly ExtendedColumn _some;
+    private readonly ExtendedColumn[] _columns;
     private readonly int[] _bucketOf;
     private readonly int[] _offsets;
     private readonly int[] _firstTerm;
     private readonly int[] _termsOf;
+    private readonly BucketPlaces _places;
+    private readonly FourExtended[] _left;
+    private readonly FourExtended[] _right;
     private readonly List<(int Mask, int Pattern)> _excluded = [];
-    private int[] _places = [];
     private int _top;
 
     private BucketElimination(
@@ -41,8 +42,15 @@ internal sealed class BucketElimination
         _atoms = atoms;
         _values = values;
         _budget = budget;
-        _none = new ExtendedColumn((int)plan.Peak + (2 * FourExtended.Count));
-        _some = new ExtendedColumn((int)plan.Peak + (2 * FourExtended.Count));
+        _columns = new ExtendedColumn[1 << network.ListCount];
+        for (int set = 0; set < _columns.Length; set++)
+        {
+            _columns[set] = new ExtendedColumn((int)plan.Peak + (2 * FourExtended.Count));
+        }
+
+        _places = new BucketPlaces(plan);
+        _left = new FourExtended[_columns.Length];
+        _right = new FourExtended[_columns.Length];
         _bucketOf = new int[network.VertexCount];
         Array.Fill(_bucketOf, -1);
         _offsets = new int[network.VertexCount];
@@ -53,21 +61,30 @@ internal sealed class BucketElimination
 
     /// <summary>Bytes that a run takes.</summary>
     public static long Bytes(TermNetwork network, BucketPlan plan) =>
-        (2 * ExtendedColumn.BytesPerPlace * plan.Peak) + (12L * network.VertexCount) + (8L * network.TermCount);
+        ((long)ExtendedColumn.BytesPerPlace * plan.Peak << network.ListCount) + (12L * network.VertexCount) + (8L * network.TermCount);
 
-    /// <summary>Both tails of the disjunction.</summary>
-    public static Tails<ExtendedDouble> Run(
+    /// <summary>
+    /// What a run costs, in states of one list: two tables meet in one product for each pair of sets and one more sum.
+    /// </summary>
+    public static double Cost(TermNetwork network, BucketPlan plan) => plan.Cost * Math.Pow(3, network.ListCount - 1);
+
+    /// <summary>
+    /// For each set of lists, as bits, the chance that these have a term that holds and the others have none.
+    /// </summary>
+    public static ExtendedDouble[] Run(
         TermNetwork network, BucketPlan plan, AtomTable atoms, FormValues values, CompilationBudget budget) =>
         new BucketElimination(network, plan, atoms, values, budget).Run();
 
-    private Tails<ExtendedDouble> Run()
+    private ExtendedDouble[] Run()
     {
-        Tails<ExtendedDouble> none = Tails<ExtendedDouble>.Always;
+        var total = new FourExtended[_columns.Length];
+        Array.Fill(total, FourExtended.Zero);
+        total[0] = FourExtended.One;
         for (int term = 0; term < _network.TermCount; term++)
         {
             if (_network.Shared(term).IsEmpty)
             {
-                none &= !OwnChance(term);
+                ListSets.Apply(total, OwnChance(term), 1 << _network.List(term));
             }
         }
 
@@ -92,7 +109,7 @@ internal sealed class BucketElimination
             int parent = _plan.Parents[vertex];
             if (parent < 0)
             {
-                none &= new Tails<ExtendedDouble>(_none.Read(bucket), _some.Read(bucket));
+                ListSets.Multiply(total, Array.ConvertAll(_columns, column => column[bucket]));
                 _top = bucket;
             }
             else
@@ -101,7 +118,7 @@ internal sealed class BucketElimination
             }
         }
 
-        return !none;
+        return Array.ConvertAll(total, four => four.Lane(0));
     }
 
     // A term belongs to the first of its vertices to go.
@@ -159,8 +176,11 @@ internal sealed class BucketElimination
     {
         for (int state = 0; state < states; state += FourExtended.Count)
         {
-            _none[bucket + state] = FourExtended.One;
-            _some[bucket + state] = FourExtended.Zero;
+            for (int set = 0; set < _columns.Length; set++)
+            {
+                _columns[set][bucket + state] = set == 0 ? FourExtended.One : FourExtended.Zero;
+            }
+
             Pause(state);
         }
 
@@ -181,6 +201,7 @@ internal sealed class BucketElimination
     /// <summary>In the states that a term matches, it holds if what it has of its own does.</summary>
     private void Apply(int term, int bucket, int states)
     {
+        int list = 1 << _network.List(term);
         (int mask, int pattern) = Match(term);
         Tails<ExtendedDouble> own = OwnChance(term);
         FourExtended happens = FourExtended.Create(own.True);
@@ -193,11 +214,18 @@ internal sealed class BucketElimination
         do
         {
             int at = state | (pattern & ~Lanes);
-            FourExtended none = _none[bucket + at];
-            FourExtended some = _some[bucket + at];
             Vector256<long> matches = _excluded.Count == 0 ? lanes : WithoutExcluded(lanes, at);
-            _none[bucket + at] = FourExtended.Select(matches, none * fails, none);
-            _some[bucket + at] = FourExtended.Select(matches, some + (none * happens), some);
+            for (int set = 0; set < _columns.Length; set++)
+            {
+                if ((set & list) == 0)
+                {
+                    FourExtended without = _columns[set][bucket + at];
+                    FourExtended with = _columns[set | list][bucket + at];
+                    _columns[set][bucket + at] = FourExtended.Select(matches, without * fails, without);
+                    _columns[set | list][bucket + at] = FourExtended.Select(matches, with + (without * happens), with);
+                }
+            }
+
             Pause(state);
 
             // The next number with nothing in the mask and the lanes.
@@ -246,17 +274,17 @@ internal sealed class BucketElimination
         FourExtended[] weights = Weights(vertex);
         for (int state = 0; state < block; state += FourExtended.Count)
         {
-            FourExtended none = weights[0] * _none[bucket + state];
-            FourExtended some = weights[0] * _some[bucket + state];
-            for (int outcome = 1; outcome < weights.Length; outcome++)
+            foreach (ExtendedColumn column in _columns)
             {
-                int at = bucket + (outcome * block) + state;
-                none += weights[outcome] * _none[at];
-                some += weights[outcome] * _some[at];
+                FourExtended sum = weights[0] * column[bucket + state];
+                for (int outcome = 1; outcome < weights.Length; outcome++)
+                {
+                    sum += weights[outcome] * column[bucket + (outcome * block) + state];
+                }
+
+                column[bucket + state] = sum;
             }
 
-            _none[bucket + state] = none;
-            _some[bucket + state] = some;
             Pause(state);
         }
     }
@@ -291,15 +319,18 @@ internal sealed class BucketElimination
     /// <summary>What is left of a bucket goes to the one of its parent, which it opens if it is the first.</summary>
     private void HandOver(int vertex, int bucket, int parent)
     {
-        int states = Places(vertex, parent);
+        int states = _places.Fill(vertex, parent);
         int target = _bucketOf[parent];
         if (target < 0)
         {
             // From the last to the first it can be spread over its own place: no state moves down.
             for (int state = states - 1; state > 0; state--)
             {
-                _none.Copy(bucket + _places[state], bucket + state);
-                _some.Copy(bucket + _places[state], bucket + state);
+                foreach (ExtendedColumn column in _columns)
+                {
+                    column.Copy(bucket + _places[state], bucket + state);
+                }
+
                 Pause(state);
             }
 
@@ -310,64 +341,29 @@ internal sealed class BucketElimination
 
         for (int state = 0; state < states; state += FourExtended.Count)
         {
-            (FourExtended none, FourExtended some) = Spread(bucket, state);
-            FourExtended before = _none[target + state];
-            _some[target + state] += before * some;
-            _none[target + state] = before * none;
+            for (int set = 0; set < _columns.Length; set++)
+            {
+                _left[set] = _columns[set][target + state];
+                _right[set] = Spread(_columns[set], bucket, state);
+            }
+
+            ListSets.Multiply(_left, _right);
+            for (int set = 0; set < _columns.Length; set++)
+            {
+                _columns[set][target + state] = _left[set];
+            }
+
             Pause(state);
         }
 
         _top = bucket;
     }
 
-    private (FourExtended None, FourExtended Some) Spread(int bucket, int state)
+    private FourExtended Spread(ExtendedColumn column, int bucket, int state)
     {
         (int a, int b, int c, int d) =
             (bucket + _places[state], bucket + _places[state + 1], bucket + _places[state + 2], bucket + _places[state + 3]);
-        return d == a + 3 ? (_none[a], _some[a]) : (_none.Gather(a, b, c, d), _some.Gather(a, b, c, d));
-    }
-
-    /// <summary>For each state of the parent's bucket the place of the same state of what is left. Returns their number.</summary>
-    private int Places(int vertex, int parent)
-    {
-        ReadOnlySpan<int> left = _plan.Separator(vertex);
-        ReadOnlySpan<int> separator = _plan.Separator(parent);
-        int bits = _plan.Bits[parent];
-        foreach (int u in separator)
-        {
-            bits += _plan.Bits[u];
-        }
-
-        int states = 1 << bits;
-        if (_places.Length < states + FourExtended.Count)
-        {
-            _places = new int[(2 * states) + FourExtended.Count];
-        }
-
-        // Doubled for each bit; those that are not left do not move the place.
-        _places.AsSpan(0, FourExtended.Count).Clear();
-        int done = 1;
-        int step = 1;
-        int next = left.Length - 1;
-        for (int i = separator.Length - 1; i >= -1; i--)
-        {
-            int u = i < 0 ? parent : separator[i];
-            bool isLeft = next >= 0 && left[next] == u;
-            next -= isLeft ? 1 : 0;
-            for (int bit = 0; bit < _plan.Bits[u]; bit++)
-            {
-                int added = isLeft ? step : 0;
-                for (int state = 0; state < done; state++)
-                {
-                    _places[done + state] = _places[state] + added;
-                }
-
-                step <<= isLeft ? 1 : 0;
-                done *= 2;
-            }
-        }
-
-        return states;
+        return d == a + 3 ? column[a] : column.Gather(a, b, c, d);
     }
 
     private void Pause(int state)

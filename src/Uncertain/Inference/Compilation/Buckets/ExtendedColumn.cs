@@ -44,6 +44,4 @@ internal sealed class ExtendedColumn(int length)
         _low[to] = _low[from];
         _exponent[to] = _exponent[from];
     }
-
-    public ExtendedDouble Read(int place) => ExtendedDouble.FromParts(_high[place], _low[place], _exponent[place]);
 }

@@ -3,7 +3,7 @@ using System.Numerics;
 namespace Uncertain.Inference.Compilation.Buckets;
 
 /// <summary>
-/// A list of terms as it is eliminated: the variables that several terms share are vertices; what only one term has is put aside
+/// Lists of terms as they are eliminated: the variables that several terms share are vertices; what only one term has is put aside
 /// in that term, since it is independent of everything else.
 /// </summary>
 /// <remarks>
@@ -12,6 +12,7 @@ namespace Uncertain.Inference.Compilation.Buckets;
 internal sealed class TermNetwork
 {
     private readonly AtomTable _atoms;
+    private readonly int[] _listEnds;
     private readonly int[] _vertexOfVariable;
     private readonly List<int> _variables = [];
     private readonly List<int> _shared = [];
@@ -21,9 +22,15 @@ internal sealed class TermNetwork
     private int[] _outcomeEnds = [];
     private int[] _outcomes = [];
 
-    public TermNetwork(TermList terms, AtomTable atoms, Workspace workspace, CompilationBudget budget)
+    /// <param name="terms">The terms of all lists, one list behind the other.</param>
+    /// <param name="listEnds">Where each list ends among the terms.</param>
+    /// <param name="atoms">The atoms.</param>
+    /// <param name="workspace">Numbers the variables.</param>
+    /// <param name="budget">Pays.</param>
+    public TermNetwork(TermList terms, int[] listEnds, AtomTable atoms, Workspace workspace, CompilationBudget budget)
     {
         _atoms = atoms;
+        _listEnds = listEnds;
         _vertexOfVariable = workspace.VertexOfVariable;
         _sharedEnds = new int[terms.Count];
         _ownEnds = new int[terms.Count];
@@ -62,7 +69,21 @@ internal sealed class TermNetwork
     /// <summary>Number of shared variables.</summary>
     public int VertexCount => _variables.Count;
 
+    public int ListCount => _listEnds.Length;
+
     public int TermCount => _sharedEnds.Length;
+
+    /// <summary>The list of a term.</summary>
+    public int List(int term)
+    {
+        int list = 0;
+        while (term >= _listEnds[list])
+        {
+            list++;
+        }
+
+        return list;
+    }
 
     /// <summary>The literals of a term whose variables it shares with others.</summary>
     public ReadOnlySpan<int> Shared(int term) => Part(_shared, _sharedEnds, term);
