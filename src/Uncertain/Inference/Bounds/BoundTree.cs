@@ -21,17 +21,22 @@ internal sealed class BoundTree
     private const int BytesPerNode = 400;
 
     private readonly Lineage _lineage;
+    private readonly LeafCompilation? _compilation;
     private BoundNode[] _nodes = new BoundNode[1];
     private int _count = 1;
     private LineageArena? _arena;
     private FormulaBounds? _leafBounds;
     private Expansion? _expansion;
-    private LeafCompilation? _compilation;
 
     /// <summary>Bounds in linear time; nothing is taken apart yet.</summary>
-    public BoundTree(Lineage lineage, FormulaBounds bounds, WorkLimit limit)
+    /// <param name="lineage">The lineage.</param>
+    /// <param name="bounds">Bounds on formulas of its arena.</param>
+    /// <param name="limit">When to end.</param>
+    /// <param name="compiles">Whether leaves may be compiled; else they are only taken apart.</param>
+    public BoundTree(Lineage lineage, FormulaBounds bounds, WorkLimit limit, bool compiles = true)
     {
         _lineage = lineage;
+        _compilation = compiles ? new LeafCompilation() : null;
         _nodes[0] = Leaf(lineage.Ref, TailBounds.Always, bounds, limit);
         _nodes[0].Parent = -1;
     }
@@ -61,7 +66,7 @@ internal sealed class BoundTree
         long refined = _count + _expansion!.Made;
         LineageRef formula = _nodes[leaf].Formula;
         Lineage whole = leaf == 0 ? _lineage : new Lineage(_arena!, formula);
-        if (_compilation!.TryCompile(whole, refined, ref _nodes[leaf].Tried, Bytes, options, limit) is { } exact)
+        if (_compilation?.TryCompile(whole, refined, ref _nodes[leaf].Tried, Bytes, options, limit) is { } exact)
         {
             Exact = leaf == 0 ? exact : null;
             _nodes[leaf].Bounds = _nodes[leaf].Bounds.Intersect(TailBounds.Around(exact));
@@ -85,7 +90,6 @@ internal sealed class BoundTree
             _arena = new LineageArena(_lineage.Worlds);
             _leafBounds = new FormulaBounds(_arena);
             _expansion = new Expansion(_arena, _leafBounds.Chances);
-            _compilation = new LeafCompilation();
         }
     }
 
@@ -123,6 +127,14 @@ internal sealed class BoundTree
 
     private void Expand(int leaf, LineageRef formula, WorkLimit limit)
     {
+        if (!formula.IsNode)
+        {
+            // Copying may have simplified it.
+            _nodes[leaf].Bounds = _nodes[leaf].Bounds.Intersect(_leafBounds!.OfLeaf(formula));
+            _nodes[leaf].IsOpen = false;
+            return;
+        }
+
         _expansion!.Expand(formula, limit);
         var children = new BoundNode[_expansion.Children.Count];
         for (int i = 0; i < children.Length; i++)

@@ -18,6 +18,8 @@ internal sealed class FormulaBounds
         _circuits = new CircuitBounds(this, arena);
     }
 
+    public LineageArena Arena => _arena;
+
     public OutcomeChances Chances => _chances;
 
     public TailBounds Of(LineageRef formula, WorkLimit limit)

@@ -9,7 +9,6 @@ internal sealed class Refinement
     private readonly long _start;
     private readonly Lineage _lineage;
     private readonly BoundTree? _tree;
-    private RefinementEnd _end;
     private TimeSpan _elapsed;
 
     /// <summary>The first bounds; those that are always right if the deadline has passed before.</summary>
@@ -27,13 +26,19 @@ internal sealed class Refinement
         }
         catch (OutOfTimeException)
         {
-            _end = RefinementEnd.Time;
+            End = RefinementEnd.Time;
         }
 
         _elapsed = options.Clock.GetElapsedTime(own);
     }
 
     public TailBounds Bounds => _tree?.Bounds ?? TailBounds.Unknown;
+
+    /// <summary>Why the last refinement ended.</summary>
+    public RefinementEnd End { get; private set; }
+
+    /// <summary>Bytes held beside the lineage.</summary>
+    public long Bytes => _tree?.Bytes ?? 0;
 
     public bool CanRefine => _tree is { IsOpen: true };
 
@@ -43,46 +48,52 @@ internal sealed class Refinement
     /// Refines until it is enough, nothing is left to refine, about so many more nodes are made, or the deadline or the memory budget is
     /// spent.
     /// </summary>
-    public void Refine(long nodes, Func<TailBounds, bool> isEnough, CancellationToken cancellationToken)
+    /// <param name="nodes">How many more nodes, at least 1.</param>
+    /// <param name="isEnough">Whether the bounds need not be tighter.</param>
+    /// <param name="cancellationToken">Cancels the work.</param>
+    /// <param name="memoryBudget">The memory budget, if not that of the options.</param>
+    public void Refine(
+        long nodes, Func<TailBounds, bool> isEnough, CancellationToken cancellationToken, long? memoryBudget = null)
     {
         if (_tree is null)
         {
             return;
         }
 
-        var limit = new WorkLimit(_options, _start, cancellationToken);
+        EvaluationOptions options = memoryBudget is null ? _options : _options with { MemoryBudget = Math.Max(1, memoryBudget.Value) };
+        var limit = new WorkLimit(options, _start, cancellationToken);
         long own = _options.Clock.GetTimestamp();
         long end = nodes > long.MaxValue - NodeCount ? long.MaxValue : NodeCount + nodes;
-        _end = RefinementEnd.None;
+        End = RefinementEnd.None;
         try
         {
-            while (_end == RefinementEnd.None)
+            while (End == RefinementEnd.None)
             {
                 if (isEnough(Bounds))
                 {
-                    _end = RefinementEnd.Enough;
+                    End = RefinementEnd.Enough;
                 }
                 else if (!CanRefine)
                 {
-                    _end = RefinementEnd.Complete;
+                    End = RefinementEnd.Complete;
                 }
                 else if (NodeCount >= end)
                 {
-                    _end = RefinementEnd.Nodes;
+                    End = RefinementEnd.Nodes;
                 }
-                else if (_lineage.Arena.Bytes + _tree.Bytes > _options.MemoryBudget)
+                else if (_lineage.Arena.Bytes + _tree.Bytes > options.MemoryBudget)
                 {
-                    _end = RefinementEnd.Memory;
+                    End = RefinementEnd.Memory;
                 }
                 else
                 {
-                    _tree.Refine(_options, limit);
+                    _tree.Refine(options, limit);
                 }
             }
         }
         catch (OutOfTimeException)
         {
-            _end = RefinementEnd.Time;
+            End = RefinementEnd.Time;
         }
         finally
         {
@@ -110,7 +121,7 @@ internal sealed class Refinement
         CultureInfo.InvariantCulture,
         $"{(asked.IsExact ? "An exact figure" : $"A figure {asked}")} was asked for; these are certain bounds. {Reason()}");
 
-    private string Reason() => _end switch
+    private string Reason() => End switch
     {
         RefinementEnd.Time =>
             $"The deadline was reached after {NodeCount:N0} nodes. Allow a later EvaluationOptions.Deadline, or ask for less accuracy.",

@@ -10,8 +10,8 @@ namespace Uncertain.Inference.Bounds;
 /// <param name="High">The greatest probability: an upper bound of P and a lower bound of 1 - P.</param>
 internal readonly record struct TailBounds(Tails<double> Low, Tails<double> High)
 {
-    /// <summary>Up to this relative width in both tails, the middle is an exact figure as <see cref="Guarantee.Exact"/> promises it.</summary>
-    private const double ExactWidth = 1e-12;
+    /// <summary>How far an exact figure may be off, as <see cref="Guarantee.Exact"/> promises it: relative, in both tails.</summary>
+    private const double ExactError = 1e-12;
 
     public static TailBounds Always => new(Tails<double>.Always, Tails<double>.Always);
 
@@ -24,26 +24,31 @@ internal readonly record struct TailBounds(Tails<double> Low, Tails<double> High
 
     /// <summary>Whether the ends meet, as far as an exact figure may be off.</summary>
     public bool IsExact =>
-        High.True - Low.True <= ExactWidth * Low.True && Low.False - High.False <= ExactWidth * High.False;
+        High.True - Low.True <= 2 * ExactError * Low.True && Low.False - High.False <= 2 * ExactError * High.False;
 
     /// <summary>The middle of both tails.</summary>
     public Tails<double> Middle => new((Low.True + High.True) / 2, (Low.False + High.False) / 2);
 
+    /// <summary>What a figure says, as certain as it is itself.</summary>
+    public static TailBounds Of(Probability figure) => figure.Guarantee.Kind == GuaranteeKind.Exact
+        ? Around(figure)
+        : new(new(figure.Lower, figure.ComplementUpper), new(figure.Upper, figure.ComplementLower));
+
     /// <summary>What is known of an exact figure, which may be off by its relative error.</summary>
     public static TailBounds Around(Probability exact)
     {
-        double value = exact.Value;
-        double complement = exact.Complement;
+        // A thousandth less, so that these bounds count as meeting again.
+        const double Error = 0.999 * ExactError;
         return new(
-            new(Below(value), Above(complement, exact.LogComplement)),
-            new(Above(value, exact.LogValue), Below(complement)));
+            new(Below(exact.Value), Above(exact.Complement, exact.LogComplement)),
+            new(Above(exact.Value, exact.LogValue), Below(exact.Complement)));
 
-        static double Below(double tail) => tail is 0 or 1 ? tail : Math.BitDecrement(tail * (1 - ExactWidth));
+        static double Below(double tail) => tail is 0 or 1 ? tail : Math.BitDecrement(tail * (1 - Error));
 
         // A tail that shows as 0 may be below the range of double.
         static double Above(double tail, double log) => tail == 0 && log == double.NegativeInfinity
             ? 0
-            : Math.Min(1, Math.BitIncrement(tail * (1 + ExactWidth)));
+            : Math.Min(1, Math.BitIncrement(tail * (1 + Error)));
     }
 
     /// <summary>The negation: ends and tails change places.</summary>
