@@ -48,7 +48,7 @@ public sealed class RandomBoundsTests(ITestOutputHelper output)
             var formulas = new RandomFormulas(seed, manyOutcomes: false);
             Lineage lineage = i % 2 == 0 ? formulas.Circuit() : formulas.Terms(dual: i % 4 == 1, monotone: false);
             (BigRational value, BigRational complement) = RationalEnumeration.Of(lineage);
-            BoundTree tree = Tree(lineage, compiles: false);
+            BoundTree tree = Tree(lineage);
             while (true)
             {
                 AssertOrder(BigRational.From(tree.Bounds.Low.True), value, seed, lineage);
@@ -60,7 +60,7 @@ public sealed class RandomBoundsTests(ITestOutputHelper output)
                     break;
                 }
 
-                tree.Refine(EvaluationOptions.Default, NoLimit());
+                tree.Refine(EvaluationOptions.Default, NoLimit(), compiles: false);
             }
         }
     }
@@ -87,7 +87,7 @@ public sealed class RandomBoundsTests(ITestOutputHelper output)
     /// <summary>Without compilation, step by step to the end, where the bounds meet.</summary>
     private static int CheckSteps(Lineage lineage, double value, double complement, int seed)
     {
-        BoundTree tree = Tree(lineage, compiles: false);
+        BoundTree tree = Tree(lineage);
         TailBounds last = TailBounds.Unknown;
         for (int step = 1; ; step++)
         {
@@ -105,7 +105,7 @@ public sealed class RandomBoundsTests(ITestOutputHelper output)
                 return step;
             }
 
-            tree.Refine(EvaluationOptions.Default, NoLimit());
+            tree.Refine(EvaluationOptions.Default, NoLimit(), compiles: false);
         }
     }
 
@@ -134,8 +134,8 @@ public sealed class RandomBoundsTests(ITestOutputHelper output)
 
     private static bool Holds(double low, double value, double high) => low <= value * (1 + Slack) && value <= high * (1 + Slack);
 
-    private static BoundTree Tree(Lineage lineage, bool compiles) =>
-        new(lineage, new FormulaBounds(lineage.Arena), NoLimit(), compiles);
+    private static BoundTree Tree(Lineage lineage) =>
+        new(lineage, new FormulaBounds(lineage.Arena, isThorough: lineage.GetHashCode() % 2 == 0), NoLimit());
 
     private static WorkLimit NoLimit() => new(EvaluationOptions.Default, 0, CancellationToken.None);
 }

@@ -4,12 +4,13 @@ namespace Uncertain.Inference.Bounds;
 
 /// <summary>
 /// A partial compilation of one lineage: independent parts and decisions down to leaves, of which only bounds are known. Refining takes
-/// the leaf apart that contributes most to the gap, or compiles it. The bounds always hold and never widen.
+/// the leaf apart that contributes most to the gap, or compiles it or the whole. The bounds always hold and never widen.
 /// </summary>
 /// <remarks>
 /// D. Olteanu, J. Huang, C. Koch, "Approximate confidence computation in probabilistic databases", IEEE International Conference on Data
-/// Engineering, 2010: decomposition into independent parts and by the most frequent variable, and bounds at the leaves. Compiling a leaf
-/// is tried with as many nodes as refining has taken so far, so that the two together cost at most about twice what the quicker one would.
+/// Engineering, 2010: decomposition into independent parts and by the most frequent variable, and bounds at the leaves. Compiling the
+/// whole, or a leaf, is tried with as many nodes as refining has taken so far, so that the two together cost little more than twice what the
+/// quicker one would.
 /// Not safe for concurrent use.
 /// </remarks>
 internal sealed class BoundTree
@@ -21,22 +22,18 @@ internal sealed class BoundTree
     private const int BytesPerNode = 400;
 
     private readonly Lineage _lineage;
-    private readonly LeafCompilation? _compilation;
+    private readonly LeafCompilation _compilation = new();
     private BoundNode[] _nodes = new BoundNode[1];
     private int _count = 1;
+    private long _triedWhole;
     private LineageArena? _arena;
     private FormulaBounds? _leafBounds;
     private Expansion? _expansion;
 
     /// <summary>Bounds in linear time; nothing is taken apart yet.</summary>
-    /// <param name="lineage">The lineage.</param>
-    /// <param name="bounds">Bounds on formulas of its arena.</param>
-    /// <param name="limit">When to end.</param>
-    /// <param name="compiles">Whether leaves may be compiled; else they are only taken apart.</param>
-    public BoundTree(Lineage lineage, FormulaBounds bounds, WorkLimit limit, bool compiles = true)
+    public BoundTree(Lineage lineage, FormulaBounds bounds, WorkLimit limit)
     {
         _lineage = lineage;
-        _compilation = compiles ? new LeafCompilation() : null;
         _nodes[0] = Leaf(lineage.Ref, TailBounds.Always, bounds, limit);
         _nodes[0].Parent = -1;
     }
@@ -51,30 +48,38 @@ internal sealed class BoundTree
     public Probability? Exact { get; private set; }
 
     /// <summary>Nodes made so far, by taking apart and by compiling.</summary>
-    public long NodeCount => _count + (_expansion?.Made ?? 0) + (_compilation?.Nodes ?? 0);
+    public long NodeCount => _count + (_expansion?.Made ?? 0) + _compilation.Nodes;
 
     /// <summary>Bytes held.</summary>
     public long Bytes => ((long)_nodes.Length * BytesPerNode) + (_arena?.Bytes ?? 0);
 
     /// <summary>One step of refining, of about as many nodes as the leaf's formula has.</summary>
+    /// <param name="options">The budgets.</param>
+    /// <param name="limit">When to end.</param>
+    /// <param name="compiles">Whether the leaf may be compiled; else it is only taken apart.</param>
     /// <exception cref="OutOfTimeException">The deadline has passed; what was known before still holds.</exception>
-    public void Refine(EvaluationOptions options, WorkLimit limit)
+    public void Refine(EvaluationOptions options, WorkLimit limit, bool compiles = true)
     {
         limit.Look();
         Open();
-        int leaf = Pick();
         long refined = _count + _expansion!.Made;
-        LineageRef formula = _nodes[leaf].Formula;
-        Lineage whole = leaf == 0 ? _lineage : new Lineage(_arena!, formula);
-        if (_compilation?.TryCompile(whole, refined, ref _nodes[leaf].Tried, Bytes, options, limit) is { } exact)
+        if (compiles && _compilation.TryCompile(_lineage, refined, ref _triedWhole, Bytes, options, limit) is { } whole)
         {
-            Exact = leaf == 0 ? exact : null;
-            _nodes[leaf].Bounds = _nodes[leaf].Bounds.Intersect(TailBounds.Around(exact));
-            _nodes[leaf].IsOpen = false;
+            Exact = whole;
+            Close(0, whole);
+            return;
+        }
+
+        int leaf = Pick();
+        LineageRef formula = leaf == 0 ? _arena!.Import(_lineage.Arena, _lineage.Ref) : _nodes[leaf].Formula;
+        if (compiles && leaf > 0
+            && _compilation.TryCompile(new Lineage(_arena!, formula), refined, ref _nodes[leaf].Tried, Bytes, options, limit) is { } part)
+        {
+            Close(leaf, part);
         }
         else
         {
-            Expand(leaf, leaf == 0 ? _arena!.Import(_lineage.Arena, _lineage.Ref) : formula, limit);
+            Expand(leaf, formula, limit);
         }
 
         for (int node = _nodes[leaf].Parent; node >= 0; node = _nodes[node].Parent)
@@ -83,12 +88,18 @@ internal sealed class BoundTree
         }
     }
 
+    private void Close(int node, Probability exact)
+    {
+        _nodes[node].Bounds = _nodes[node].Bounds.Intersect(TailBounds.Around(exact));
+        _nodes[node].IsOpen = false;
+    }
+
     private void Open()
     {
         if (_arena is null)
         {
             _arena = new LineageArena(_lineage.Worlds);
-            _leafBounds = new FormulaBounds(_arena);
+            _leafBounds = new FormulaBounds(_arena, isThorough: true);
             _expansion = new Expansion(_arena, _leafBounds.Chances);
         }
     }

@@ -22,7 +22,7 @@ internal sealed class Refinement
         try
         {
             limit.Look();
-            _tree = new BoundTree(lineage, new FormulaBounds(lineage.Arena), limit);
+            _tree = new BoundTree(lineage, new FormulaBounds(lineage.Arena, isThorough: true), limit);
         }
         catch (OutOfTimeException)
         {
@@ -52,8 +52,10 @@ internal sealed class Refinement
     /// <param name="isEnough">Whether the bounds need not be tighter.</param>
     /// <param name="cancellationToken">Cancels the work.</param>
     /// <param name="memoryBudget">The memory budget, if not that of the options.</param>
+    /// <param name="compiles">Whether parts may be compiled.</param>
     public void Refine(
-        long nodes, Func<TailBounds, bool> isEnough, CancellationToken cancellationToken, long? memoryBudget = null)
+        long nodes, Func<TailBounds, bool> isEnough, CancellationToken cancellationToken, long? memoryBudget = null,
+        bool compiles = true)
     {
         if (_tree is null)
         {
@@ -87,7 +89,7 @@ internal sealed class Refinement
                 }
                 else
                 {
-                    _tree.Refine(options, limit);
+                    _tree.Refine(options, limit, compiles);
                 }
             }
         }

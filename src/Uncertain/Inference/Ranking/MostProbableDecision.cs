@@ -4,17 +4,17 @@ using Uncertain.Numerics;
 namespace Uncertain.Inference.Ranking;
 
 /// <summary>
-/// The k most probable answers. In each round those are refined that stand most in the way: among the k with the greatest upper bounds
-/// the ones with the least lower bounds, and among the others the ones with the greatest upper bounds.
+/// The k most probable answers. Refined are only answers while they have one of the k greatest upper bounds: whatever the order of the
+/// work, an answer whose upper bound stays above the k-th probability could not be left out unrefined.
 /// </summary>
 /// <remarks>
-/// After C. Ré, N. Dalvi, D. Suciu, "Efficient top-k query evaluation on probabilistic data", IEEE International Conference on Data
-/// Engineering, 2007, whose critical region is the one between the k-th lower bound and the upper bound after the k-th; here with
-/// certain bounds. Which answers are refined does not depend on the number of threads.
+/// The critical region between the k-th lower bound and the upper bound after the k-th decides as in C. Ré, N. Dalvi, D. Suciu,
+/// "Efficient top-k query evaluation on probabilistic data", IEEE International Conference on Data Engineering, 2007; here with certain
+/// bounds. Which answers are refined does not depend on the number of threads.
 /// </remarks>
 internal sealed class MostProbableDecision
 {
-    // Refined side by side in a round, on either side of the border.
+    // Refined side by side in a round.
     private const int Batch = 8;
 
     private readonly Contenders _answers;
@@ -50,15 +50,16 @@ internal sealed class MostProbableDecision
                 continue;
             }
 
-            List<int> batch = InTheWay(places, lower, upper);
+            List<int> batch = InTheWay(places, lower);
             _answers.Report(_answers.Count - _active.Count);
             if (batch.Count == 0)
             {
                 return Result(_active);
             }
 
+            // Enough for now: ahead of all others, or no longer among the k greatest upper bounds.
             _answers.Refine(batch, bounds =>
-                ProbabilityOrder.Compare(bounds.Low, upper) > 0 || ProbabilityOrder.Compare(bounds.High, lower) < 0);
+                ProbabilityOrder.Compare(bounds.Low, upper) > 0 || ProbabilityOrder.Compare(bounds.High, upper) < 0);
         }
 
         _answers.Report(_answers.Count);
@@ -107,18 +108,19 @@ internal sealed class MostProbableDecision
         return _ahead.Count > before;
     }
 
-    private List<int> InTheWay(int places, Tails<double> lower, Tails<double> upper)
+    /// <summary>
+    /// What to refine next: of the k greatest upper bounds, since an answer that has one of them at the end must be known; of the
+    /// others only what ties with them.
+    /// </summary>
+    private List<int> InTheWay(int places, Tails<double> lower)
     {
-        // What lies on the far side of the border already does not hold it up.
-        List<int> inside = [.. _active.Take(places)
-            .Where(_answers.CanRefine)
-            .OrderBy(answer => _answers[answer].Low, Comparer<Tails<double>>.Create(ProbabilityOrder.Compare))
-            .Take(Batch)];
-        inside.AddRange(_active.Skip(places)
-            .Where(_answers.CanRefine)
-            .Where(answer => ProbabilityOrder.Compare(_answers[answer].High, lower) >= 0)
-            .Take(Batch));
-        return inside;
+        List<int> batch = [.. _active.Take(places).Where(_answers.CanRefine).Take(Batch)];
+        return batch.Count > 0
+            ? batch
+            : [.. _active.Skip(places)
+                .Where(_answers.CanRefine)
+                .Where(answer => ProbabilityOrder.Compare(_answers[answer].High, lower) >= 0)
+                .Take(Batch)];
     }
 
     private int ByUpperBound(int left, int right)
