@@ -12,8 +12,8 @@ public sealed partial class UncertainSet<T>
     /// <remarks>
     /// The answers that come out are then evaluated to the accuracy asked, so that their order stands too. Answers that tie with those
     /// behind the last place are <see cref="Selection{T}.Undecided"/>: two exact figures tie if they are equal up to their rounding. Where
-    /// the options name an evaluator other than the chooser or <see cref="Evaluators.Bounds"/>, or the query has a safe plan, all answers
-    /// are evaluated by it and compared.
+    /// the options name an evaluator other than the chooser or <see cref="Evaluators.Bounds"/>, or evidence, or the query has a safe plan, all
+    /// answers are evaluated as the options say and compared.
     /// </remarks>
     /// <param name="count">How many answers, at least 1. If there are not more in all, all come out.</param>
     /// <param name="options">What is asked of the answers that come out, and the budgets; the node budget is that of one answer.</param>
@@ -34,7 +34,7 @@ public sealed partial class UncertainSet<T>
     /// <remarks>
     /// The probabilities of the answers are the bounds that decided; evaluate the lineage of one for more. An exact figure is compared as
     /// it is, without regard to its rounding. Where the options name an evaluator other than the chooser or
-    /// <see cref="Evaluators.Bounds"/>, or the query has a safe plan, all answers are evaluated by it and compared.
+    /// <see cref="Evaluators.Bounds"/>, or evidence, or the query has a safe plan, all answers are evaluated as the options say and compared.
     /// </remarks>
     /// <param name="probability">In (0, 1].</param>
     /// <param name="options">The budgets; the node budget is that of one answer.</param>

@@ -73,6 +73,7 @@ internal sealed class Contest<T>
     }
 
     private static bool IsInterleaved(UncertainSet<T> query, EvaluationOptions options) =>
-        options.Evaluator is BoundsEvaluator
-        || (options.Evaluator is ChoosingEvaluator && !Evaluators.SafePlan.Examine(query.Plan).IsSuitable);
+        options.Given is null
+        && (options.Evaluator is BoundsEvaluator
+            || (options.Evaluator is ChoosingEvaluator && !Evaluators.SafePlan.Examine(query.Plan).IsSuitable));
 }
