@@ -1,4 +1,5 @@
 using Uncertain.Inference;
+using Uncertain.Inference.Bounds;
 using Uncertain.Inference.Choice;
 using Uncertain.Inference.Compilation;
 using Uncertain.Inference.Safe;
@@ -17,6 +18,11 @@ public static class Evaluators
 
     /// <summary>Exact for any lineage, by knowledge compilation within the node budget; worst case exponential.</summary>
     public static IEvaluator Compilation { get; } = new CompilationEvaluator();
+
+    /// <summary>
+    /// Certain bounds for any lineage, tightened until the accuracy asked for is reached or a budget is spent; exact where they meet.
+    /// </summary>
+    public static IEvaluator Bounds { get; } = new BoundsEvaluator();
 
     /// <summary>Estimates with (epsilon, delta) guarantees for any lineage.</summary>
     public static IEvaluator Sampling { get; } = new SamplingEvaluator();

@@ -1,5 +1,6 @@
 using System.Globalization;
 using System.Runtime.CompilerServices;
+using Uncertain.Inference.Bounds;
 using Uncertain.Numerics;
 
 namespace Uncertain;
@@ -19,8 +20,9 @@ public sealed class Probability : IFormattable
     private readonly StrongBox<Tails<ExtendedDouble>>? _tails;
 
     private Probability(
-        double value, double complement, double logValue, double logComplement, double lower, double upper, Guarantee guarantee,
-        string evaluator, ulong? seed, Cost cost, string? shortfall, StrongBox<Tails<ExtendedDouble>>? tails = null)
+        double value, double complement, double logValue, double logComplement, double lower, double upper, double complementLower,
+        double complementUpper, Guarantee guarantee, string evaluator, ulong? seed, Cost cost, string? shortfall,
+        StrongBox<Tails<ExtendedDouble>>? tails = null)
     {
         Value = value;
         Complement = complement;
@@ -28,6 +30,8 @@ public sealed class Probability : IFormattable
         LogComplement = logComplement;
         Lower = lower;
         Upper = upper;
+        ComplementLower = complementLower;
+        ComplementUpper = complementUpper;
         Guarantee = guarantee;
         Evaluator = evaluator;
         Seed = seed;
@@ -53,6 +57,15 @@ public sealed class Probability : IFormattable
 
     /// <summary>Upper bound under <see cref="Guarantee"/>; equal to <see cref="Value"/> where that is exact.</summary>
     public double Upper { get; }
+
+    /// <summary>
+    /// Lower bound of 1 - P under <see cref="Guarantee"/>; tighter than 1 - <see cref="Upper"/> where P is close to 1 and an evaluator
+    /// knows more digits.
+    /// </summary>
+    public double ComplementLower { get; }
+
+    /// <summary>Upper bound of 1 - P under <see cref="Guarantee"/>.</summary>
+    public double ComplementUpper { get; }
 
     /// <summary>What is promised of the bounds.</summary>
     public Guarantee Guarantee { get; }
@@ -127,7 +140,8 @@ public sealed class Probability : IFormattable
     {
         ArgumentException.ThrowIfNullOrEmpty(shortfall);
         return new Probability(
-            Value, Complement, LogValue, LogComplement, Lower, Upper, Guarantee, Evaluator, Seed, Cost, shortfall, _tails);
+            Value, Complement, LogValue, LogComplement, Lower, Upper, ComplementLower, ComplementUpper, Guarantee, Evaluator, Seed, Cost,
+            shortfall, _tails);
     }
 
     /// <summary>For example <c>0.8731 (exact)</c> or <c>0.87 [0.86, 0.88] (99 % confidence)</c>; invariant culture.</summary>
@@ -159,8 +173,8 @@ public sealed class Probability : IFormattable
         double value = Math.Min(1, tails.True);
         double complement = Math.Min(1, tails.False);
         return new Probability(
-            value, complement, LogOf(value, complement), LogOf(complement, value), value, value, Guarantee.Exact, evaluator, null,
-            cost, null);
+            value, complement, LogOf(value, complement), LogOf(complement, value), value, value, complement, complement,
+            Guarantee.Exact, evaluator, null, cost, null);
     }
 
     internal static Probability Exact(Tails<ExtendedDouble> tails, string evaluator, Cost cost)
@@ -173,9 +187,25 @@ public sealed class Probability : IFormattable
         double logComplement = value < 1e-3 ? LogOf(complement, value) : tails.False.Log();
         bool isInRange = TailConversions.IsInRange(new Tails<double>(value, complement), isZeroExact: false);
         return new Probability(
-            value, complement, Math.Min(0, logValue), Math.Min(0, logComplement), value, value, Guarantee.Exact, evaluator, null,
-            cost, null, isInRange ? null : new StrongBox<Tails<ExtendedDouble>>(tails));
+            value, complement, Math.Min(0, logValue), Math.Min(0, logComplement), value, value, complement, complement,
+            Guarantee.Exact, evaluator, null, cost, null, isInRange ? null : new StrongBox<Tails<ExtendedDouble>>(tails));
     }
+
+    /// <summary>Certain bounds on both tails; the figure is the middle, exact where the bounds meet.</summary>
+    internal static Probability Between(TailBounds bounds, string evaluator, Cost cost)
+    {
+        Tails<double> middle = bounds.Middle;
+        return bounds.IsExact
+            ? Exact(middle, evaluator, cost)
+            : new Probability(
+                middle.True, middle.False, LogOf(middle.True, middle.False), LogOf(middle.False, middle.True), bounds.Low.True,
+                bounds.High.True, bounds.High.False, bounds.Low.False, Guarantee.Bounds, evaluator, null, cost, null);
+    }
+
+    /// <summary>The same figure at another cost.</summary>
+    internal Probability WithCost(Cost cost) => new(
+        Value, Complement, LogValue, LogComplement, Lower, Upper, ComplementLower, ComplementUpper, Guarantee, Evaluator, Seed, cost,
+        Shortfall, _tails);
 
     /// <summary>An estimate of which an evaluator knows the logarithms too, below the range of double.</summary>
     internal static Probability Estimated(
@@ -184,13 +214,14 @@ public sealed class Probability : IFormattable
     {
         CheckBounds(lower, estimate, upper);
         return new Probability(
-            estimate, Unit(complement), logValue, logComplement, lower, upper, Guarantee.Confidence(delta), evaluator, seed, cost,
-            null);
+            estimate, Unit(complement), logValue, logComplement, lower, upper, 1 - upper, 1 - lower, Guarantee.Confidence(delta),
+            evaluator, seed, cost, null);
     }
 
     private static Probability Inexact(
         double value, double complement, double lower, double upper, Guarantee guarantee, string evaluator, ulong? seed, Cost cost) =>
-        new(value, complement, LogOf(value, complement), LogOf(complement, value), lower, upper, guarantee, evaluator, seed, cost, null);
+        new(value, complement, LogOf(value, complement), LogOf(complement, value), lower, upper, 1 - upper, 1 - lower, guarantee,
+            evaluator, seed, cost, null);
 
     // ln(tail), from the other tail where that is the smaller one: ln(1 - x) = -x - x^2/2 - ...
     private static double LogOf(double tail, double other) => other < 0.5 ? LogOneMinus(other) : Math.Log(tail);

@@ -48,7 +48,7 @@ public sealed class QueryPlan
     {
         var text = new StringBuilder();
         Append(text, Root, 0);
-        foreach (IEvaluator evaluator in (IEvaluator[])[Evaluators.SafePlan, Evaluators.Compilation, Evaluators.Sampling])
+        foreach (IEvaluator evaluator in (IEvaluator[])[Evaluators.SafePlan, Evaluators.Compilation, Evaluators.Bounds, Evaluators.Sampling])
         {
             text.Append(evaluator.Name).Append(": ").Append(evaluator.Examine(this)).Append('\n');
         }

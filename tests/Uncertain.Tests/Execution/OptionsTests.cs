@@ -32,7 +32,7 @@ public sealed class OptionsTests
     public void Accuracy_EpsilonOrDeltaOutOfRange_IsRefused(double value)
     {
         const string Distance = "The distance must be in (0, 1). For no distance at all ask for Accuracy.Exact.";
-        const string Miss = "The chance of a miss must be in (0, 1). For certainty ask for Accuracy.Exact.";
+        const string Miss = "The chance of a miss must be in (0, 1). For certainty ask for Accuracy.CertainlyWithin or Accuracy.Exact.";
 
         Refuses(Distance, () => Accuracy.Within(value));
         Refuses(Distance, () => Accuracy.WithinFactor(value));

@@ -1,12 +1,14 @@
 using Uncertain.Execution;
+using Uncertain.Inference.Bounds;
 using Uncertain.Inference.Posteriors;
 
 namespace Uncertain.Inference.Choice;
 
 /// <summary>
 /// The cheapest of the library's evaluators that delivers what was asked. A safe plan where there is one; otherwise each answer's
-/// lineage is compiled, and sampled where compiling would go over its budget and something less than exact is asked for, or is all that
-/// can be had; then the answer says so.
+/// lineage is compiled. Where compiling would go over its budget and something less than exact is asked for, or is all that can be had,
+/// the answer is bounded, and sampled where the bounds stay too wide; if that is less than asked, it says so. What is to be certain is
+/// never sampled.
 /// </summary>
 internal sealed class ChoosingEvaluator : IEvidenceEvaluator
 {
@@ -16,7 +18,9 @@ internal sealed class ChoosingEvaluator : IEvidenceEvaluator
     // Of an answer's time, so much goes into compiling before sampling gets the rest.
     private const double CompilingShare = 0.5;
 
-    private static readonly TimeSpan s_leastTime = TimeSpan.FromMilliseconds(1);
+    // What goes into bounds before sampling: a small part of what sampling will take.
+    private const int BoundingNodes = 10_000;
+    private const double BoundingShare = 0.1;
 
     private static readonly Accuracy s_substitute = Accuracy.Within(0.01, 0.01);
 
@@ -27,7 +31,7 @@ internal sealed class ChoosingEvaluator : IEvidenceEvaluator
         ArgumentNullException.ThrowIfNull(plan);
         return Suitability.Can(plan.Safe.Refusal is not { } refusal
             ? "takes the safe plan"
-            : $"compiles each answer's lineage, and samples what is over the budget (no safe plan: {refusal.Message})");
+            : $"compiles each answer's lineage, and bounds or samples what is over the budget (no safe plan: {refusal.Message})");
     }
 
     public Probability Evaluate(Lineage lineage, EvaluationOptions options, CancellationToken cancellationToken)
@@ -40,13 +44,12 @@ internal sealed class ChoosingEvaluator : IEvidenceEvaluator
     {
         ArgumentNullException.ThrowIfNull(query);
         ArgumentNullException.ThrowIfNull(options);
-        long start = options.Clock.GetTimestamp();
         bool isSafe = query.Plan.Safe.Plan is not null
             && (options.Given is not { } evidence || SafeEvidence.WhyNot(query.Node, evidence, cancellationToken) is null);
         return isSafe && SafeAnswers(query, options, cancellationToken) is { } answers
             ? answers
             : options.Given is null
-                ? LineageAnswers(query, options, start, cancellationToken)
+                ? SharedTime.Evaluate(query, options, Evaluate, cancellationToken)
                 : ConditionalEvaluation.Evaluate(query, options, cancellationToken);
     }
 
@@ -66,28 +69,14 @@ internal sealed class ChoosingEvaluator : IEvidenceEvaluator
         }
     }
 
-    private static IEnumerable<Answer<T>> LineageAnswers<T>(
-        UncertainSet<T> query, EvaluationOptions options, long start, CancellationToken cancellationToken)
-    {
-        IReadOnlyList<Record<T>> records = query.Derive(options, cancellationToken);
-        int threads = Math.Min(options.Threads, Math.Max(1, records.Count));
-        EvaluationOptions single = options with { Threads = records.Count > 1 ? 1 : options.Threads };
-        var progress = new ProgressReporter(options);
-        int done = 0;
-        return OrderedParallel.Select(records, threads, Answer, cancellationToken);
-
-        Answer<T> Answer(Record<T> record, int index)
-        {
-            TimeSpan? share = (options.Deadline - options.Clock.GetElapsedTime(start)) * threads / (records.Count - index);
-            Probability probability = Evaluate(record.Lineage, single, share, cancellationToken);
-            progress.Report(EvaluationStage.Evaluating, Interlocked.Increment(ref done), records.Count);
-            return new Answer<T>(record.Value, record.Lineage, probability);
-        }
-    }
-
     private static Probability Evaluate(
         Lineage lineage, EvaluationOptions options, TimeSpan? time, CancellationToken cancellationToken)
     {
+        if (!options.Accuracy.IsExact && options.Accuracy.Delta == 0)
+        {
+            return BoundsEvaluator.Evaluate(lineage, options, time, cancellationToken);
+        }
+
         long start = options.Clock.GetTimestamp();
         Accuracy asked = options.Accuracy;
         string reason;
@@ -95,7 +84,7 @@ internal sealed class ChoosingEvaluator : IEvidenceEvaluator
         {
             EvaluationOptions trial = options with
             {
-                Deadline = AtLeast(time * CompilingShare),
+                Deadline = SharedTime.AtLeast(time * CompilingShare),
                 NodeBudget = asked.IsExact ? options.NodeBudget : Math.Min(options.NodeBudget, TrialNodes),
             };
             return Evaluators.Compilation.Evaluate(lineage, trial, cancellationToken);
@@ -105,16 +94,26 @@ internal sealed class ChoosingEvaluator : IEvidenceEvaluator
             reason = refusal.Message;
         }
 
-        EvaluationOptions sampling = options with
+        // Certain bounds are worth more than an estimate that is no closer.
+        Accuracy enough = asked.IsExact ? s_substitute : asked;
+        EvaluationOptions bounding = options with { Accuracy = enough, NodeBudget = Math.Min(options.NodeBudget, BoundingNodes) };
+        Probability figure = BoundsEvaluator.Evaluate(
+            lineage, bounding, BoundingShare * (time - options.Clock.GetElapsedTime(start)), cancellationToken);
+        if (figure.Shortfall is not null)
         {
-            Accuracy = asked.IsExact ? s_substitute : asked,
-            Deadline = AtLeast(time - options.Clock.GetElapsedTime(start)),
-        };
-        Probability estimate = Evaluators.Sampling.Evaluate(lineage, sampling, cancellationToken);
-        return asked.IsExact && estimate.Guarantee.Kind != GuaranteeKind.Exact
-            ? estimate.WithShortfall($"An exact figure was asked for; this is an estimate. {reason}")
-            : estimate;
+            EvaluationOptions sampling = options with
+            {
+                Accuracy = enough,
+                Deadline = SharedTime.AtLeast(time - options.Clock.GetElapsedTime(start)),
+            };
+            figure = Evaluators.Sampling.Evaluate(lineage, sampling, cancellationToken);
+        }
+
+        return asked.IsExact && figure.Guarantee.Kind != GuaranteeKind.Exact
+            ? figure.WithShortfall($"An exact figure was asked for; {Description(figure)} {reason}")
+            : figure;
     }
 
-    private static TimeSpan? AtLeast(TimeSpan? time) => time < s_leastTime ? s_leastTime : time;
+    private static string Description(Probability figure) =>
+        figure.Guarantee.Kind == GuaranteeKind.Bounds ? "these are certain bounds." : "this is an estimate.";
 }

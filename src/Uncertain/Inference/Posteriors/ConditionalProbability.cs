@@ -13,10 +13,16 @@ internal static class ConditionalProbability
     /// Within the part r of each, a share p may be off by p (1 - p) ((1 + r)^2 - 1); relative to a lower bound of it, by
     /// ((1 + r)^2 - 1) (1 + r)^2 at most. The factors below keep that under what was asked, over the whole range of epsilon.
     /// </remarks>
-    public static Accuracy OfParts(Accuracy asked) => asked.IsExact
-        ? asked
-        : Accuracy.WithinFactor(
-            asked.IsRelative ? Math.Min(0.3 * asked.Epsilon, 0.2) : Math.Min(1.5 * asked.Epsilon, 0.6), asked.Delta / 2);
+    public static Accuracy OfParts(Accuracy asked)
+    {
+        if (asked.IsExact)
+        {
+            return asked;
+        }
+
+        double part = asked.IsRelative ? Math.Min(0.3 * asked.Epsilon, 0.2) : Math.Min(1.5 * asked.Epsilon, 0.6);
+        return asked.Delta == 0 ? Accuracy.CertainlyWithinFactor(part) : Accuracy.WithinFactor(part, asked.Delta / 2);
+    }
 
     /// <summary>The share; null where both are 0 for certain.</summary>
     public static Probability? Of(Probability with, Probability without, Accuracy asked)

@@ -110,13 +110,13 @@ internal sealed class Estimation
     {
         if (tally.IsEnough)
         {
-            return _options.Accuracy.IsExact
-                ? $"exact was asked, and sampling only estimates; this is {_task.Accuracy}. Ask Evaluators.Compilation or the "
-                    + "chooser for exact figures"
+            return _options.Accuracy.Delta == 0
+                ? $"{_options.Accuracy} was asked, and sampling only estimates; this is {_task.Accuracy}. Ask Evaluators.Compilation, "
+                    + "Evaluators.Bounds or the chooser for what is certain"
                 : null;
         }
 
-        string asked = _options.Accuracy.IsExact ? "exact was asked" : $"{_task.Accuracy} was asked";
+        string asked = $"{_options.Accuracy} was asked";
         string end = _task.Budget.HasDeadline
             ? $"the deadline of {_options.Deadline} ended the sampling after {tally.Worlds:N0} worlds"
             : $"the sampling was given up after {tally.Worlds:N0} worlds, because it would go on too long";

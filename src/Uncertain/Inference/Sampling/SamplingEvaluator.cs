@@ -44,7 +44,13 @@ internal sealed class SamplingEvaluator : IEvaluator
     }
 
     /// <summary>What a lineage is sampled for if <paramref name="accuracy"/> is asked.</summary>
-    internal static Accuracy Attainable(Accuracy accuracy) => accuracy.IsExact ? s_insteadOfExact : accuracy;
+    internal static Accuracy Attainable(Accuracy accuracy) => accuracy switch
+    {
+        { IsExact: true } => s_insteadOfExact,
+        { Delta: > 0 } => accuracy,
+        { IsRelative: true } => Accuracy.WithinFactor(accuracy.Epsilon, s_insteadOfExact.Delta),
+        _ => Accuracy.Within(accuracy.Epsilon, s_insteadOfExact.Delta),
+    };
 
     private IEnumerable<Answer<T>> Answers<T>(
         UncertainSet<T> query, EvaluationOptions options, WorkBudget budget, CancellationToken cancellationToken)
