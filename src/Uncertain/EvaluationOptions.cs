@@ -49,7 +49,9 @@ public sealed record EvaluationOptions
             : throw new ArgumentOutOfRangeException(nameof(value), value, "The node budget must be at least 1.");
     } = 2_000_000;
 
-    /// <summary>Bytes that lineages and compiled forms may take in all; null (default) for no limit. Positive.</summary>
+    /// <summary>
+    /// Bytes that lineages, compiled forms and the tables of a safe plan may take in all; null (default) for no limit. Positive.
+    /// </summary>
     public long? MemoryBudget
     {
         get;

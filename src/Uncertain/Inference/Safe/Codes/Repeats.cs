@@ -22,8 +22,10 @@ internal static class Repeats
     /// <param name="columns">Codes by column and row; at least one column.</param>
     /// <param name="rows">Number of rows.</param>
     /// <param name="workspace">Holds the result.</param>
-    public static RowPairs? Find(int[][] columns, int rows, Workspace workspace)
+    /// <param name="most">The largest number of rows with the same codes.</param>
+    public static RowPairs? Find(int[][] columns, int rows, Workspace workspace, out int most)
     {
+        most = 1;
         Span<uint> hashes = workspace.Rent<uint>(rows).AsSpan(0, rows);
         hashes.Clear();
         foreach (int[] column in columns)
@@ -42,9 +44,11 @@ internal static class Repeats
         ReadOnlySpan<int> hit = hits.AsSpan(0, count);
         RowKeys keys = RowKeys.Of(Kernels.GatherAll(columns, hit, workspace), count, workspace, out int[] keyOf);
         Span<int> first = keys.FirstRows(keyOf.AsSpan(0, count), workspace);
+        int[] members = workspace.RentZeroed<int>(keys.Count);
         var result = new RowPairs(workspace, count - keys.Count);
         for (int i = 0; i < count; i++)
         {
+            most = Math.Max(most, ++members[keyOf[i]]);
             if (first[keyOf[i]] != i)
             {
                 result.Add(hit[i], hit[first[keyOf[i]]]);

@@ -84,7 +84,8 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         where TNumber : unmanaged, IAdditionOperators<TNumber, TNumber, TNumber>, IMultiplyOperators<TNumber, TNumber, TNumber>,
             IAdditiveIdentity<TNumber, TNumber>, IMultiplicativeIdentity<TNumber, TNumber>
     {
-        if (rows.Count < LeastToMark || rows.Columns.Length < 2 || Repeats.Find(rows.Columns, rows.Count, run.Workspace) is not { } repeats)
+        if (rows.Count < LeastToMark || rows.Columns.Length < 2
+            || Repeats.Find(rows.Columns, rows.Count, run.Workspace, out int most) is not { } repeats)
         {
             return null;
         }
@@ -104,7 +105,7 @@ internal sealed class ScanStep(SourcePart part, IEnumerable<Field> variables) : 
         Array.ForEach(rows.Columns, column => Kernels.Remove(column.AsSpan(0, rows.Count), repeats.Left));
         Kernels.Remove(tails.AsSpan(0, rows.Count), repeats.Left);
         return new CodeTable<TNumber>(
-            Variables, rows.Count - repeats.Count, rows.Columns, new RowTails<TNumber>(tails), Part.IsChancy ? 1 + repeats.Count : 1);
+            Variables, rows.Count - repeats.Count, rows.Columns, new RowTails<TNumber>(tails), Part.IsChancy ? most : 1);
     }
 
     private CodeTable<TNumber> MergeMany<TNumber>(ScanRows rows, SafeRun<TNumber> run)
