@@ -12,15 +12,31 @@ namespace Uncertain.Benchmarks;
 public sealed class GateInstance
 {
     private const int Variables = 2000;
+    private const int Derivations = 10;
+    private const int OperandsPerAnswer = Derivations * 4;
 
     private readonly IWorker _worker;
     private readonly AlignedWords _bits;
     private readonly WorldProgram _program;
+    private readonly int[] _gates;
+    private readonly int _answers;
 
     /// <param name="operands">Operands of gates for each variable.</param>
     public GateInstance(int operands)
     {
-        Lineage[] answers = Answers(operands);
+        var worlds = new WorldSpace();
+        var random = new Random(1);
+        Lineage[] records = [.. Enumerable.Range(0, Variables).Select(i => worlds.Event($"v{i}", random.NextDouble()))];
+        _answers = Variables * operands / OperandsPerAnswer;
+        int[][][] derivations =
+        [
+            .. Enumerable.Range(0, _answers).Select(_ => Enumerable.Range(0, Derivations).Select(_ => Three(random)).ToArray()),
+        ];
+        Lineage[] answers =
+        [
+            .. derivations.Select(answer => Lineage.Any([.. answer.Select(three => Lineage.All([.. three.Select(i => records[i])]))])),
+        ];
+        _gates = [.. derivations.SelectMany(GatesOf)];
         var budget = new WorkBudget(new EvaluationOptions(), CancellationToken.None);
         LineageRef[] roots = [.. answers.Select(answer => answer.Ref)];
         _program = WorldProgram.Build(answers[0].Arena, roots, 1, budget)!;
@@ -35,7 +51,7 @@ public sealed class GateInstance
     }
 
     /// <summary>Operands of all gates.</summary>
-    public int OperandCount => _program.Code.Length - _program.GateCount;
+    public int OperandCount => _answers * OperandsPerAnswer;
 
     /// <summary>The library's kernel on ready bits.</summary>
     public void Gates(int worlds)
@@ -56,14 +72,25 @@ public sealed class GateInstance
     public void Worlds(int worlds) => _worker.Run(0, worlds);
 
     /// <summary>The same gates by hand.</summary>
-    public ReadyBits ByHand(int words) => new(_program.Code, _program.Draws.RowCount, _program.RowCount, words);
+    public ReadyBits ByHand(int words) => new(_gates, Variables, Variables + (_answers * (Derivations + 1)), words);
 
-    private static Lineage[] Answers(int operands)
+    /// <summary>Three different records.</summary>
+    private static int[] Three(Random random)
     {
-        var worlds = new WorldSpace();
-        var random = new Random(1);
-        Lineage[] records = [.. Enumerable.Range(0, Variables).Select(i => worlds.Event($"v{i}", random.NextDouble()))];
-        return [.. Enumerable.Range(0, Variables * operands / 40).Select(_ => Lineage.Any(
-            [.. Enumerable.Range(0, 10).Select(_ => Lineage.All([.. random.GetItems(records, 3)]))]))];
+        var chosen = new HashSet<int>();
+        while (chosen.Count < 3)
+        {
+            chosen.Add(random.Next(Variables));
+        }
+
+        return [.. chosen];
+    }
+
+    /// <summary>An answer's gates, the last of which is true where the answer is not there.</summary>
+    private static IEnumerable<int> GatesOf(int[][] answer, int number)
+    {
+        int row = Variables + (number * (Derivations + 1));
+        return answer.SelectMany(three => three.Select(i => 2 * i).Prepend(3))
+            .Append(Derivations).Concat(Enumerable.Range(row, Derivations).Select(r => (2 * r) + 1));
     }
 }

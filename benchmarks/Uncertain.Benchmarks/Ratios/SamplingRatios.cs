@@ -12,7 +12,7 @@ public static class SamplingRatios
         new("sampling-gates", ByHand, 0.5, () => Throughput(10, (instance, worlds) => instance.Gates(worlds)), IsLeast: true),
         new("sampling-draws-85", ByHand, 0.25, () => Throughput(85, (instance, worlds) => instance.Worlds(worlds)), IsLeast: true),
         new("sampling-draws-10", ByHand, 0.25, () => Throughput(10, (instance, worlds) => instance.Worlds(worlds)), IsLeast: true),
-        new("sampling-coverage", "worlds of the optimal rule of Dagum, Karp, Luby and Ross (2000); a small factor", 2, Coverage),
+        new("sampling-coverage", "worlds of the optimal rule of Dagum, Karp, Luby and Ross (2000), up to a small factor", 2, Coverage),
         new("sampling-rare", "goal in time, P near 1e-12 within 5 % from 10,000 conjunctions", 1, Rare),
     ];
 

@@ -5,14 +5,17 @@ namespace Uncertain.Inference.Sampling;
 
 /// <summary>The inner loop of sampling: conjunctions of rows of bits, each row optionally negated.</summary>
 /// <remarks>
-/// Code of one conjunction: the number of operands, then for each one 2 * row + (1 if negated). Row r takes the words
-/// from r * width on. The loops are compiled with all optimizations at once: an estimate runs them a few times for long.
+/// <para>Code of one conjunction: the number of operands, then for each one 2 * row + (1 if negated). Row r takes the words
+/// from r * width on.</para>
+/// <para>Code of one gate: a number of terms, the conjunction of its operands, then the conjunction of each term, all of which must be
+/// false: a disjunction of conjunctions takes one row, and what is used but once is never stored.</para>
+/// <para>The loops are compiled with all optimizations at once: an estimate runs them a few times for long.</para>
 /// </remarks>
 internal static class GateKernel
 {
     private const MethodImplOptions Kernel = MethodImplOptions.NoInlining | MethodImplOptions.AggressiveOptimization;
 
-    /// <summary>Evaluates the conjunctions of <paramref name="code"/> one after the other into rows from <paramref name="row"/> on.</summary>
+    /// <summary>Evaluates the gates of <paramref name="code"/> one after the other into rows from <paramref name="row"/> on.</summary>
     /// <returns>The row after the last one written.</returns>
     public static int Run<TVector>(ReadOnlySpan<int> code, int row, ref ulong words, int width)
         where TVector : struct, IWordVector<TVector> =>
@@ -52,18 +55,32 @@ internal static class GateKernel
     private static int RunWide<TVector>(ReadOnlySpan<int> code, int row, ref ulong words)
         where TVector : struct, IWordVector<TVector>
     {
-        ref int operand = ref MemoryMarshal.GetReference(code);
-        ref int end = ref Unsafe.Add(ref operand, code.Length);
-        while (Unsafe.IsAddressLessThan(ref operand, ref end))
+        ref int gate = ref MemoryMarshal.GetReference(code);
+        ref int end = ref Unsafe.Add(ref gate, code.Length);
+        while (Unsafe.IsAddressLessThan(ref gate, ref end))
         {
             ref ulong target = ref Unsafe.Add(ref words, (nint)row * WorldBlock.Words);
+            ref int term = ref gate;
             for (int column = 0; column < WorldBlock.Words; column += 4 * TVector.Count)
             {
-                And(ref operand, ref Unsafe.Add(ref words, column), out TVector a, out TVector b, out TVector c, out TVector d);
-                Store(ref Unsafe.Add(ref target, column), a, b, c, d);
+                ref ulong source = ref Unsafe.Add(ref words, column);
+                term = ref Unsafe.Add(ref gate, 1);
+                And(ref term, ref source, out TVector first, out TVector second, out TVector third, out TVector fourth);
+                for (int terms = gate; terms > 0; terms--)
+                {
+                    term = ref Unsafe.Add(ref term, 1 + term);
+                    And(ref term, ref source, out TVector a, out TVector b, out TVector c, out TVector d);
+                    TVector negated = TVector.Create(ulong.MaxValue);
+                    first = TVector.And(first, a, negated);
+                    second = TVector.And(second, b, negated);
+                    third = TVector.And(third, c, negated);
+                    fourth = TVector.And(fourth, d, negated);
+                }
+
+                Store(ref Unsafe.Add(ref target, column), first, second, third, fourth);
             }
 
-            operand = ref Unsafe.Add(ref operand, 1 + operand);
+            gate = ref Unsafe.Add(ref term, 1 + term);
             row++;
         }
 
@@ -77,25 +94,40 @@ internal static class GateKernel
         int position = 0;
         while (position < code.Length)
         {
-            ReadOnlySpan<int> operands = code.Slice(position + 1, code[position]);
-            ref ulong target = ref Unsafe.Add(ref words, (nint)row * width);
+            int term = position;
             for (int column = 0; column < width; column += TVector.Count)
             {
-                TVector all = TVector.Create(ulong.MaxValue);
-                foreach (int operand in operands)
+                ref ulong source = ref Unsafe.Add(ref words, column);
+                term = position + 1;
+                TVector all = And<TVector>(code.Slice(term + 1, code[term]), ref source, width);
+                for (int terms = code[position]; terms > 0; terms--)
                 {
-                    ref ulong source = ref Unsafe.Add(ref words, ((nint)(operand >> 1) * width) + column);
-                    all = TVector.And(all, TVector.Load(ref source), Sign<TVector>(operand));
+                    term += 1 + code[term];
+                    TVector one = And<TVector>(code.Slice(term + 1, code[term]), ref source, width);
+                    all = TVector.And(all, one, TVector.Create(ulong.MaxValue));
                 }
 
-                all.Store(ref Unsafe.Add(ref target, column));
+                all.Store(ref Unsafe.Add(ref source, (nint)row * width));
             }
 
-            position += 1 + operands.Length;
+            position = term + 1 + code[term];
             row++;
         }
 
         return row;
+    }
+
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    private static TVector And<TVector>(ReadOnlySpan<int> operands, ref ulong words, int width)
+        where TVector : struct, IWordVector<TVector>
+    {
+        TVector all = TVector.Create(ulong.MaxValue);
+        foreach (int operand in operands)
+        {
+            all = TVector.And(all, TVector.Load(ref Unsafe.Add(ref words, (nint)(operand >> 1) * width)), Sign<TVector>(operand));
+        }
+
+        return all;
     }
 
     /// <summary>One conjunction in four columns: four accumulators hide the latency of the loads and share the decoding of the operand.</summary>

@@ -3,8 +3,8 @@ using Uncertain.Lineages;
 namespace Uncertain.Inference.Sampling;
 
 /// <summary>
-/// One or more formulas as a flat program: rows of chance variables first, then one row for each conjunction, operands before
-/// their users, then the roots.
+/// One or more formulas as a flat program: rows of chance variables first, then one row for each gate, operands before their
+/// users, then the roots.
 /// </summary>
 internal sealed class WorldProgram
 {
@@ -25,7 +25,7 @@ internal sealed class WorldProgram
     /// <summary>See <see cref="GateKernel"/>.</summary>
     public int[] Code { get; }
 
-    /// <summary>The code in parts of whole conjunctions that take some microseconds each.</summary>
+    /// <summary>The code in parts of whole gates that take some microseconds each.</summary>
     public Range[] Parts { get; }
 
     public int GateCount { get; }
@@ -53,25 +53,24 @@ internal sealed class WorldProgram
         }
 
         int[] nodes = cone.Nodes(budget);
-        var rows = new Dictionary<int, int>(nodes.Length);
         var draws = new Draws(arena.Worlds.Variables, cone.Slots, seed, budget);
+        HashSet<int> terms = budget.HasEnded ? [] : Terms(arena, nodes, formulas, budget);
         if (budget.HasEnded)
         {
             return null;
         }
 
-        var code = new int[nodes.Length + cone.OperandCount];
+        var rows = new Dictionary<int, int>(nodes.Length - terms.Count);
+        var code = new int[(2 * nodes.Length) - terms.Count + cone.OperandCount - terms.Count];
         var parts = new List<Range>();
         int length = 0;
         int partStart = 0;
         for (int i = 0; i < nodes.Length; i++)
         {
-            rows[nodes[i]] = draws.RowCount + i;
-            ReadOnlySpan<LineageRef> operands = arena.Operands(nodes[i]);
-            code[length++] = operands.Length;
-            foreach (LineageRef operand in operands)
+            if (!terms.Contains(nodes[i]))
             {
-                code[length++] = Edge(operand);
+                AddGate(arena.Operands(nodes[i]));
+                rows[nodes[i]] = draws.RowCount + rows.Count;
             }
 
             if (length - partStart >= PartLength || i + 1 == nodes.Length)
@@ -91,9 +90,78 @@ internal sealed class WorldProgram
             roots[i] = Edge(formulas[i]);
         }
 
-        return new WorldProgram(draws, code, [.. parts], nodes.Length, roots);
+        return new WorldProgram(draws, code, [.. parts], rows.Count, roots);
+
+        void AddGate(ReadOnlySpan<LineageRef> operands)
+        {
+            int gate = length++;
+            AddConjunction(operands);
+            foreach (LineageRef operand in operands)
+            {
+                if (operand.IsNode && terms.Contains(operand.Index))
+                {
+                    code[gate]++;
+                    AddConjunction(arena.Operands(operand.Index));
+                }
+            }
+        }
+
+        void AddConjunction(ReadOnlySpan<LineageRef> operands)
+        {
+            int count = length++;
+            foreach (LineageRef operand in operands)
+            {
+                if (!operand.IsNode || !terms.Contains(operand.Index))
+                {
+                    code[count]++;
+                    code[length++] = Edge(operand);
+                }
+            }
+        }
 
         int Edge(LineageRef formula) =>
             ((formula.IsLiteral ? draws.RowOf(formula.Index) : rows[formula.Index]) << 1) | (formula.IsNegated ? 1 : 0);
+    }
+
+    /// <summary>The nodes that are evaluated as terms of their only user: it negates them, and they have no terms themselves.</summary>
+    private static HashSet<int> Terms(LineageArena arena, int[] nodes, ReadOnlySpan<LineageRef> roots, WorkBudget budget)
+    {
+        // Used by one negated edge; used again, or in another way.
+        var once = new HashSet<int>();
+        var otherwise = new HashSet<int>();
+        foreach (LineageRef root in roots)
+        {
+            if (root.IsNode)
+            {
+                otherwise.Add(root.Index);
+            }
+        }
+
+        for (int i = 0; i < nodes.Length && !((i & 0xFFF) == 0xFFF && budget.HasEnded); i++)
+        {
+            foreach (LineageRef operand in arena.Operands(nodes[i]))
+            {
+                if (operand.IsNode && !(operand.IsNegated && once.Add(operand.Index)))
+                {
+                    otherwise.Add(operand.Index);
+                }
+            }
+        }
+
+        once.ExceptWith(otherwise);
+        foreach (int node in nodes)
+        {
+            // Operands come first, so that it is known whether they are terms.
+            foreach (LineageRef operand in arena.Operands(node))
+            {
+                if (operand.IsNode && once.Contains(operand.Index))
+                {
+                    once.Remove(node);
+                    break;
+                }
+            }
+        }
+
+        return once;
     }
 }
