@@ -49,6 +49,14 @@ internal sealed class VariableTable
     /// <summary>The chances of consecutive slots.</summary>
     public void Chances(int firstSlot, Span<double> chances) => _chances.CopyTo(firstSlot, chances);
 
+    /// <summary>The chances of a variable's outcomes.</summary>
+    public double[] ChancesOf(int variable)
+    {
+        var chances = new double[OutcomeCount(variable)];
+        _chances.CopyTo(FirstSlot(variable), chances);
+        return chances;
+    }
+
     public int VariableOf(int slot) => slot < _plain ? slot : _variableOfSlot[slot - _plain];
 
     public int FirstSlot(int variable) => variable < _plain ? variable : _firstSlot[variable - _plain];

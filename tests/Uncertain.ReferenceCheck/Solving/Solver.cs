@@ -21,11 +21,14 @@ internal sealed class Solver(IEvaluator evaluator, TimeSpan limit, CancellationT
     /// <summary>P(<paramref name="lineage"/> | <paramref name="given"/>).</summary>
     public Figure Chance(Lineage lineage, Lineage given)
     {
-        Figure whole = Chance(given);
-        return double.IsNegativeInfinity(whole.Log)
-            ? throw new LeftOutException(
-                $"the condition has probability 0{(whole.IsExact ? "" : " in the estimate: it is too rare for the accuracy asked")}")
-            : Chance(lineage & given) / whole;
+        try
+        {
+            return Figure.Of(lineage.Evaluate(Options() with { Given = lineage.Worlds.Given(given) }, cancellationToken));
+        }
+        catch (InvalidInputException exception)
+        {
+            throw new LeftOutException($"the condition has probability 0: {exception.Message}");
+        }
     }
 
     /// <summary>

@@ -33,32 +33,30 @@ internal sealed class ConditionedFormulas
     public (LineageRef With, LineageRef? Without) Of(LineageArena arena, LineageRef lineage)
     {
         LineageRef formula = Take(arena, lineage, _findings.Known);
-        EvidencePart[] parts = PartsOf(formula);
+        if (_findings.Parts.Count == 0 || formula.IsConstant)
+        {
+            return (formula, null);
+        }
+
+        var cone = new Cone(_arena);
+        cone.Add(formula);
+        EvidencePart[] parts = PartsOf(cone);
         if (parts.Length == 0)
         {
             return (formula, null);
         }
 
         _touched.UnionWith(parts);
+        formula = Apart.From(_arena, formula, cone, variable => _findings.PartOf(variable) is not null);
         LineageRef evidence = _arena.And([.. parts.Select(part => Take(part.Arena, part.Formula, null))]);
         return (_arena.And(formula, evidence), _arena.And(!formula, evidence));
     }
 
-    private EvidencePart[] PartsOf(LineageRef formula)
-    {
-        if (_findings.Parts.Count == 0 || formula.IsConstant)
-        {
-            return [];
-        }
-
-        var cone = new Cone(_arena);
-        cone.Add(formula);
-        return
-        [
-            .. cone.Slots.Select(slot => _findings.PartOf(Space.Variables.VariableOf(slot))).OfType<EvidencePart>().Distinct()
-                .OrderBy(part => part.Variables[0]),
-        ];
-    }
+    private EvidencePart[] PartsOf(Cone cone) =>
+    [
+        .. cone.Slots.Select(slot => _findings.PartOf(Space.Variables.VariableOf(slot))).OfType<EvidencePart>().Distinct()
+            .OrderBy(part => part.Variables[0]),
+    ];
 
     private LineageRef Take(LineageArena from, LineageRef formula, IReadOnlyDictionary<int, LineageRef>? known)
     {

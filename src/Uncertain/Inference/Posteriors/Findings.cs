@@ -52,6 +52,23 @@ internal sealed class Findings(
     /// </summary>
     public VariableTable OpenChances => _isRestricted ? Chances : worlds.Variables;
 
+    /// <summary>Puts the parts of earlier findings in the same arena, which may be compiled, in place of equal ones.</summary>
+    public void ReuseParts(Findings earlier)
+    {
+        Dictionary<LineageRef, EvidencePart> known = earlier.Parts.ToDictionary(part => part.Formula);
+        for (int i = 0; i < parts.Length; i++)
+        {
+            if (known.TryGetValue(parts[i].Formula, out EvidencePart? same))
+            {
+                parts[i] = same;
+                foreach (int variable in same.Variables)
+                {
+                    _partOf[variable] = same;
+                }
+            }
+        }
+    }
+
     public EvidencePart? PartOf(int variable) => _partOf.GetValueOrDefault(variable);
 
     private VariableTable Changed()

@@ -23,17 +23,22 @@ internal sealed class FindingsReader
     private SortedSet<int> _changed = [];
     private bool _isPossible = true;
 
-    private FindingsReader(WorldSpace worlds, CancellationToken cancellationToken)
+    private FindingsReader(VariableTable table, LineageArena arena, CancellationToken cancellationToken)
     {
-        _table = worlds.Variables;
-        _arena = new LineageArena(worlds);
+        _table = table;
+        _arena = arena;
         _cancellationToken = cancellationToken;
     }
 
     /// <summary>Null if there is a contradiction among what is known of single variables.</summary>
-    public static Findings? TryRead(WorldSpace worlds, ReadOnlySpan<Lineage> pieces, CancellationToken cancellationToken)
+    public static Findings? TryRead(WorldSpace worlds, ReadOnlySpan<Lineage> pieces, CancellationToken cancellationToken) =>
+        TryRead(worlds.Variables, new LineageArena(worlds), pieces, cancellationToken);
+
+    /// <summary>The same with other chances, and with formulas in a given arena, where equal parts are equal references.</summary>
+    public static Findings? TryRead(
+        VariableTable table, LineageArena arena, ReadOnlySpan<Lineage> pieces, CancellationToken cancellationToken)
     {
-        var reader = new FindingsReader(worlds, cancellationToken);
+        var reader = new FindingsReader(table, arena, cancellationToken);
         var imports = new Dictionary<LineageArena, LineageImport>();
         foreach (Lineage piece in pieces)
         {
@@ -46,7 +51,7 @@ internal sealed class FindingsReader
         }
 
         reader.Propagate();
-        return reader._isPossible ? new Findings(worlds, reader._allowed, reader._known, reader.Parts()) : null;
+        return reader._isPossible ? new Findings(arena.Worlds, reader._allowed, reader._known, reader.Parts()) : null;
     }
 
     private void Add(LineageRef formula)
