@@ -64,6 +64,39 @@ public sealed class CompilationBudgetTests
         Assert.True(best < TimeSpan.FromMilliseconds(50), $"took {best}");
     }
 
+    [Theory]
+    [InlineData(40)]
+    [InlineData(150)]
+    [InlineData(300)]
+    public void Evaluate_WideDisjunctionCancelled_ThrowsSoon(int milliseconds)
+    {
+        // Each of the many linear steps has to look up in time.
+        var worlds = new WorldSpace();
+        Lineage[] row = [.. Enumerable.Range(0, 400_000).Select(i => worlds.Event($"x{i}", 0.1))];
+        Lineage chain = Lineage.Any([.. Enumerable.Range(0, row.Length - 1).Select(i => row[i] & row[i + 1])]);
+        TimeSpan best = TimeSpan.MaxValue;
+        for (int run = 0; run < 8 && best > TimeSpan.FromMilliseconds(50); run++)
+        {
+            using var cancellation = new CancellationTokenSource();
+            long cancelled = 0;
+            using CancellationTokenRegistration registration =
+                cancellation.Token.Register(() => cancelled = Stopwatch.GetTimestamp());
+            cancellation.CancelAfter(milliseconds);
+            try
+            {
+                Evaluators.Compilation.Evaluate(chain, EvaluationOptions.Default, cancellation.Token);
+                best = TimeSpan.Zero; // Done before.
+            }
+            catch (OperationCanceledException)
+            {
+                TimeSpan late = Stopwatch.GetElapsedTime(cancelled);
+                best = late < best ? late : best;
+            }
+        }
+
+        Assert.True(best < TimeSpan.FromMilliseconds(50), $"took {best}");
+    }
+
     [Fact]
     public void Compile_ReadOnceAsWritten_NeedsNoNodeBudget()
     {

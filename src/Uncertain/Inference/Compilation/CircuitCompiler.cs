@@ -115,7 +115,7 @@ internal sealed class CircuitCompiler(
             }
         }
 
-        SparseGraph graph = SparseGraph.FromPairs(variables.Count + module.Count, pairs);
+        SparseGraph graph = SparseGraph.FromPairs(variables.Count + module.Count, pairs, budget);
         EliminationTree tree = EliminationTree.Build(graph, budget);
         int[] order = TreeNumbering.Preorder(tree, variables.Count, TreeNumbering.Depths(tree));
         parents = TreeNumbering.ParentRanks(tree, order);

@@ -45,7 +45,7 @@ internal sealed class FormulaGraph
         var numbers = new IntMap(16);
         int[] reached = Reach(arena, root, numbers, budget, out int operandCount);
         budget.Bytes(24L * reached.Length + 12L * operandCount);
-        Array.Sort(reached);
+        Sort(reached, root.Index, budget);
         var local = new IntMap(reached.Length);
         for (int i = 0; i < reached.Length; i++)
         {
@@ -69,6 +69,33 @@ internal sealed class FormulaGraph
 
         first[^1] = position;
         return new FormulaGraph(first, operands, atoms.Local(root, local), atoms.Atoms);
+    }
+
+    // Marked and swept in linear time where that touches hardly more than the formula.
+    private static void Sort(int[] reached, int last, CompilationBudget budget)
+    {
+        const int Sparse = 16;
+        if (reached.Length < last / Sparse)
+        {
+            Array.Sort(reached);
+            return;
+        }
+
+        var isReached = new bool[last + 1];
+        foreach (int index in reached)
+        {
+            isReached[index] = true;
+        }
+
+        int next = 0;
+        for (int index = 0; next < reached.Length; index++)
+        {
+            if (isReached[index])
+            {
+                reached[next++] = index;
+                budget.Step();
+            }
+        }
     }
 
     private static int[] Reach(LineageArena arena, LineageRef root, IntMap seen, CompilationBudget budget, out int operandCount)

@@ -16,20 +16,14 @@ internal sealed class SparseGraph
 
     public int[] Degrees { get; }
 
-    /// <summary>From pairs, each packed as (smaller &lt;&lt; 32) | larger; repeats are allowed.</summary>
-    public static SparseGraph FromPairs(int vertices, List<long> pairs)
+    /// <summary>From pairs, each packed as (smaller &lt;&lt; 32) | larger; repeats are allowed. Linear time.</summary>
+    public static SparseGraph FromPairs(int vertices, List<long> pairs, CompilationBudget budget)
     {
-        pairs.Sort();
         int[] degrees = new int[vertices];
-        long previous = -1;
         foreach (long pair in pairs)
         {
-            if (pair != previous)
-            {
-                degrees[pair >> 32]++;
-                degrees[(int)pair]++;
-                previous = pair;
-            }
+            degrees[pair >> 32]++;
+            degrees[(int)pair]++;
         }
 
         var neighbours = new int[vertices][];
@@ -37,19 +31,33 @@ internal sealed class SparseGraph
         {
             neighbours[v] = degrees[v] == 0 ? [] : new int[degrees[v]];
             degrees[v] = 0;
+            budget.Step();
         }
 
-        previous = -1;
         foreach (long pair in pairs)
         {
-            if (pair != previous)
+            int low = (int)(pair >> 32);
+            int high = (int)pair;
+            neighbours[low][degrees[low]++] = high;
+            neighbours[high][degrees[high]++] = low;
+        }
+
+        // Each neighbour once, in the order of the pairs.
+        int[] lastSeen = new int[vertices];
+        for (int v = 0; v < vertices; v++)
+        {
+            int kept = 0;
+            foreach (int u in neighbours[v])
             {
-                int low = (int)(pair >> 32);
-                int high = (int)pair;
-                neighbours[low][degrees[low]++] = high;
-                neighbours[high][degrees[high]++] = low;
-                previous = pair;
+                if (lastSeen[u] != v + 1)
+                {
+                    lastSeen[u] = v + 1;
+                    neighbours[v][kept++] = u;
+                }
             }
+
+            degrees[v] = kept;
+            budget.Step();
         }
 
         return new SparseGraph(neighbours, degrees);

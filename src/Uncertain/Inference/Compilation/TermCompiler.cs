@@ -134,7 +134,7 @@ internal sealed class TermCompiler(
             budget.Step();
         }
 
-        SparseGraph graph = SparseGraph.FromPairs(joins ? variables : variables + terms.Count, pairs);
+        SparseGraph graph = SparseGraph.FromPairs(joins ? variables : variables + terms.Count, pairs, budget);
         return EliminationTree.Build(graph, budget);
     }
 

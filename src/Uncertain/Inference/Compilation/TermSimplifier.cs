@@ -92,20 +92,17 @@ internal sealed class TermSimplifier(AtomTable atoms, Workspace workspace, Compi
 
     private TermList Absorb(TermList terms)
     {
-        int[] order = new int[terms.Count];
-        int[] lengths = new int[terms.Count];
+        int[] order = ByLength(terms);
         int[] occurrences = workspace.LiteralCount;
         for (int i = 0; i < order.Length; i++)
         {
-            order[i] = i;
-            lengths[i] = terms[i].Length;
+            budget.Step();
             foreach (int literal in terms[i])
             {
                 occurrences[literal]++;
             }
         }
 
-        Array.Sort(lengths, order);
         var seen = new TermSet(terms);
         var kept = new List<int>(terms.Count);
         var watch = new Dictionary<int, List<int>>();
@@ -117,7 +114,7 @@ internal sealed class TermSimplifier(AtomTable atoms, Workspace workspace, Compi
             budget.Step();
 
             // Only strictly shorter terms can absorb; those of this length wait until it is done.
-            if (at > 0 && lengths[at] > lengths[at - 1])
+            if (at > 0 && terms[term].Length > terms[order[at - 1]].Length)
             {
                 for (; watched < kept.Count; watched++)
                 {
@@ -150,6 +147,35 @@ internal sealed class TermSimplifier(AtomTable atoms, Workspace workspace, Compi
         }
 
         return result;
+    }
+
+    /// <summary>The terms, the shortest first; those of one length in the order of the input.</summary>
+    private static int[] ByLength(TermList terms)
+    {
+        int longest = 0;
+        for (int i = 0; i < terms.Count; i++)
+        {
+            longest = Math.Max(longest, terms[i].Length);
+        }
+
+        int[] next = new int[longest + 2];
+        for (int i = 0; i < terms.Count; i++)
+        {
+            next[terms[i].Length + 1]++;
+        }
+
+        for (int length = 1; length < next.Length; length++)
+        {
+            next[length] += next[length - 1];
+        }
+
+        int[] order = new int[terms.Count];
+        for (int i = 0; i < order.Length; i++)
+        {
+            order[next[terms[i].Length]++] = i;
+        }
+
+        return order;
     }
 
     private static void Watch(TermList terms, int term, int[] occurrences, Dictionary<int, List<int>> watch)

@@ -46,7 +46,7 @@ internal sealed class BucketPlan
     /// <summary>Null if a bucket has too many states.</summary>
     public static BucketPlan? TryMake(TermNetwork network, CompilationBudget budget)
     {
-        SparseGraph graph = network.Graph();
+        SparseGraph graph = network.Graph(budget);
         var bits = new int[network.VertexCount];
         for (int vertex = 0; vertex < bits.Length; vertex++)
         {

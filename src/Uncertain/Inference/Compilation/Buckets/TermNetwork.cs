@@ -106,7 +106,7 @@ internal sealed class TermNetwork
     public int State(int literal) => Outcomes(Vertex(literal)).IndexOf(literal >> 1) + 1;
 
     /// <summary>Pairs of vertices that are in one term.</summary>
-    public SparseGraph Graph()
+    public SparseGraph Graph(CompilationBudget budget)
     {
         var pairs = new List<long>();
         for (int term = 0; term < TermCount; term++)
@@ -124,9 +124,11 @@ internal sealed class TermNetwork
                     }
                 }
             }
+
+            budget.Step();
         }
 
-        return SparseGraph.FromPairs(VertexCount, pairs);
+        return SparseGraph.FromPairs(VertexCount, pairs, budget);
     }
 
     private void ListOutcomes()
