@@ -18,7 +18,7 @@ public sealed partial class WorldSpace
         [CallerArgumentExpression(nameof(records))] string? name = null)
     {
         T[] copy = SourceReader<T>.Read(records);
-        name = SourceReader.NameOf<T>(name);
+        name = SourceReader.NameOf(name, typeof(T));
         SourceReader.CheckKey(copy, key, name);
         return Create(name, SourceKind.Certain, copy, LineageColumn.Certain, null, key);
     }
@@ -37,7 +37,7 @@ public sealed partial class WorldSpace
         [CallerArgumentExpression(nameof(records))] string? name = null)
     {
         ArgumentNullException.ThrowIfNull(chance);
-        name = SourceReader.NameOf<T>(name);
+        name = SourceReader.NameOf(name, typeof(T));
         var read = SourceReader<T>.WithChances(records, chance, name);
         SourceReader.CheckKey(read.Records, key, name);
         return Create(name, SourceKind.Independent, read.Records, AddIndependent(read.Chances, read.AreUncertain, name), null, key);
@@ -60,7 +60,7 @@ public sealed partial class WorldSpace
     {
         ArgumentNullException.ThrowIfNull(group);
         ArgumentNullException.ThrowIfNull(chance);
-        name = SourceReader.NameOf<T>(name);
+        name = SourceReader.NameOf(name, typeof(T));
         (T[] copy, double[] chances, _) = SourceReader<T>.WithChances(records, chance, name);
         AlternativeGroups groups = SourceReader.Groups(copy, group, chances, name);
         SourceReader.CheckKey(copy, key, name);
@@ -78,7 +78,7 @@ public sealed partial class WorldSpace
     {
         ArgumentNullException.ThrowIfNull(lineage);
         T[] copy = SourceReader<T>.Read(records);
-        name = SourceReader.NameOf<T>(name);
+        name = SourceReader.NameOf(name, typeof(T));
         Lineage[] given = SourceReader.Lineages(copy, lineage, this, name);
         var lineages = new LineageRef[copy.Length];
         lock (Gate)

@@ -8,7 +8,7 @@ internal sealed class SlotNames
 {
     private readonly Lock _lock = new();
     private readonly Dictionary<int, string> _events = [];
-    private readonly List<(int FirstSlot, string Source, int[]? RecordOfSlot)> _sources = [];
+    private readonly List<Source> _sources = [];
 
     public void AddEvent(int slot, string name)
     {
@@ -26,7 +26,7 @@ internal sealed class SlotNames
     {
         lock (_lock)
         {
-            _sources.Add((firstSlot, source, recordOfSlot));
+            _sources.Add(new Source(firstSlot, source, recordOfSlot));
         }
     }
 
@@ -55,8 +55,19 @@ internal sealed class SlotNames
                 (low, high) = _sources[middle].FirstSlot <= slot ? (middle, high) : (low, middle - 1);
             }
 
-            (int first, string source, int[]? records) = _sources[low];
-            return (source, records is null ? slot - first : records[slot - first]);
+            Source source = _sources[low];
+            int place = slot - source.FirstSlot;
+            return (source.Name, source.RecordOfSlot is null ? place : source.RecordOfSlot[place]);
         }
+    }
+
+    // A class: lists of objects come compiled with the runtime, and every first query of a process makes this one.
+    private sealed class Source(int firstSlot, string name, int[]? recordOfSlot)
+    {
+        public int FirstSlot { get; } = firstSlot;
+
+        public string Name { get; } = name;
+
+        public int[]? RecordOfSlot { get; } = recordOfSlot;
     }
 }

@@ -21,10 +21,10 @@ internal static class SourceReader
     }
 
     /// <summary>The source's name: the argument's text where that is a plain name, else the record type's.</summary>
-    public static string NameOf<T>(string? text) =>
+    public static string NameOf(string? text, Type recordType) =>
         text is not null && text.Length is > 0 and <= 60 && text.All(c => char.IsLetterOrDigit(c) || c is '_' or '.' or ' ' or '-')
             ? text
-            : PlanText.TypeName(typeof(T));
+            : PlanText.TypeName(recordType);
 
     public static AlternativeGroups Groups<T, TGroup>(
         T[] records, Expression<Func<T, TGroup>> group, double[] chances, string name)
