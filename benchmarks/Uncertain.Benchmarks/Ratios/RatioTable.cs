@@ -11,6 +11,7 @@ public static class RatioTable
         ("Query speed", QuerySpeed.Goals),
         ("Small queries", SmallQueries.Goals),
         ("Hard lineages, one core", HardLineages.Goals),
+        ("Selections", Selections.Goals),
     ];
 
     /// <returns>Whether some goal was measured.</returns>
