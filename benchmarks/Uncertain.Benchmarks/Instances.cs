@@ -1,7 +1,7 @@
 namespace Uncertain.Benchmarks;
 
 /// <summary>Generated data; the same seed gives the same data.</summary>
-public static class Instances
+public static partial class Instances
 {
     public static (Sighting[] Sightings, Unit[] Units) Sightings(int sightings, int units, int places, int seed = 1)
     {

@@ -12,6 +12,8 @@ public static class RatioTable
         ("Small queries", SmallQueries.Goals),
         ("Hard lineages, one core", HardLineages.Goals),
         ("Sampling", SamplingRatios.Goals),
+        ("Selections", Selections.Goals),
+        ("Updates", Updates.Goals),
     ];
 
     /// <returns>Whether some goal was measured.</returns>

@@ -36,6 +36,15 @@ internal static class SlowQueries
         }
     }
 
+    /// <summary>The lineage of such a grid, with chances that differ a little.</summary>
+    public static Lineage HardLineage(WorldSpace worlds, int size, string name, double chance)
+    {
+        Lineage[] rows = [.. Enumerable.Range(0, size).Select(i => worlds.Event($"{name} r{i}", chance + (0.001 * i)))];
+        Lineage[] columns = [.. Enumerable.Range(0, size).Select(i => worlds.Event($"{name} c{i}", chance + (0.002 * i)))];
+        return Lineage.Any([.. from r in Enumerable.Range(0, size) from c in Enumerable.Range(0, size)
+                               select rows[r] & columns[c] & worlds.Event($"{name} {r},{c}", chance)]);
+    }
+
     /// <summary>Whether any cell of a grid joins a true row with a true column: its compiled form grows fast with the grid.</summary>
     private static UncertainSet<int> Grid(WorldSpace worlds, int size)
     {

@@ -50,16 +50,17 @@ internal sealed class MostProbableDecision
                 continue;
             }
 
-            List<int> batch = InTheWay(places, lower);
+            List<int> batch = InTheWay(places, lower, out bool isInside);
             _answers.Report(_answers.Count - _active.Count);
             if (batch.Count == 0)
             {
                 return Result(_active);
             }
 
-            // Enough for now: ahead of all others, or no longer among the k greatest upper bounds.
+            // Enough for now: ahead of all others, or no longer among the k greatest upper bounds, or behind for good.
+            Tails<double> border = isInside ? upper : lower;
             _answers.Refine(batch, bounds =>
-                ProbabilityOrder.Compare(bounds.Low, upper) > 0 || ProbabilityOrder.Compare(bounds.High, upper) < 0);
+                ProbabilityOrder.Compare(bounds.Low, upper) > 0 || ProbabilityOrder.Compare(bounds.High, border) < 0);
         }
 
         _answers.Report(_answers.Count);
@@ -112,10 +113,11 @@ internal sealed class MostProbableDecision
     /// What to refine next: of the k greatest upper bounds, since an answer that has one of them at the end must be known; of the
     /// others only what ties with them.
     /// </summary>
-    private List<int> InTheWay(int places, Tails<double> lower)
+    private List<int> InTheWay(int places, Tails<double> lower, out bool isInside)
     {
         List<int> batch = [.. _active.Take(places).Where(_answers.CanRefine).Take(Batch)];
-        return batch.Count > 0
+        isInside = batch.Count > 0;
+        return isInside
             ? batch
             : [.. _active.Skip(places)
                 .Where(_answers.CanRefine)
