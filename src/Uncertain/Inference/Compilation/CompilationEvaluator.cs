@@ -1,5 +1,6 @@
 using Uncertain.Execution;
 using Uncertain.Inference.Compilation.Cases;
+using Uncertain.Inference.Compilation.Sweeps;
 using Uncertain.Lineages;
 using Uncertain.Numerics;
 
@@ -81,8 +82,17 @@ internal sealed class CompilationEvaluator : IEvaluator
     {
         long own = options.Clock.GetTimestamp();
         cancellationToken.ThrowIfCancellationRequested();
-        if (!IsLate(options, start)
-            && CaseEvaluator.TryPrepare(lineage.Arena, lineage.Ref) is { } cases
+        if (IsLate(options, start))
+        {
+            return Evaluate(Compile(lineage, options, start, cancellationToken), options, own);
+        }
+
+        if (SweepEvaluator.TryEvaluate(lineage.Arena, lineage.Ref, options.NodeBudget, cancellationToken, out SweepResult swept))
+        {
+            return swept.ToProbability(EvaluatorName, options.Clock.GetElapsedTime(own));
+        }
+
+        if (CaseEvaluator.TryPrepare(lineage.Arena, lineage.Ref) is { } cases
             && TryCases(cases, lineage, options, start, own, cancellationToken) is { } probability)
         {
             return probability;
