@@ -63,7 +63,9 @@ public sealed record EvaluationOptions
     /// <summary>Seed of all draws; the same seed gives the same figures on any machine. Default 1.</summary>
     public ulong Seed { get; init; } = 1;
 
-    /// <summary>Threads to use, at least 1. Default: all processors.</summary>
+    /// <summary>
+    /// Threads to use, at least 1. Default: all processors. With more than one, a query's lambdas may be called at the same time.
+    /// </summary>
     public int Threads
     {
         get;

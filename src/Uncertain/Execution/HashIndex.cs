@@ -21,7 +21,9 @@ internal sealed class HashIndex<TKey, TValue>
     private HashIndex(RecordList<TValue> records, TKey[] keys, IEqualityComparer<TKey>? comparer, QueryRun run)
     {
         Records = records;
-        _next = new int[records.Count];
+
+        // Numbers of integers may take the keys' own places: what is read of a key then is whether it is null, and no integer is.
+        _next = keys as int[] ?? new int[records.Count];
         _numbers = Number(keys, _next, comparer, run);
         _first = new int[_numbers.Count];
         Array.Fill(_first, None);

@@ -47,8 +47,9 @@ internal sealed class IntegerKeyTable : KeyTable<int>
             return place;
         }
 
-        _entries = new ulong[2 * _entries.Length];
-        _shift--;
+        // By 4: less is thrown away on the way to a large table.
+        _entries = new ulong[4 * _entries.Length];
+        _shift -= 2;
         for (int number = 0; number < _keys.Count; number++)
         {
             _entries[PlaceOf(_keys[number])] = ((ulong)(number + 1) << 32) | (uint)_keys[number];

@@ -6,66 +6,68 @@ namespace Uncertain.Execution;
 internal static class OrderedParallel
 {
     // Blocks start small, so that the first results come at once, and grow so that threads are rarely waited for.
-    private const int LargestBlock = 1024;
+    private const int LargestBlock = 4096;
+
+    // Items that a worker takes at a time, where there are many.
+    private const int LargestRun = 32;
 
     /// <summary>One result for each item. A failure is thrown where its turn comes, so that the results before it are not lost.</summary>
     public static IEnumerable<TResult> Select<TItem, TResult>(
         IReadOnlyList<TItem> items, int threads, Func<TItem, int, TResult> compute, CancellationToken cancellationToken)
     {
         int size = threads;
+        TResult[] results = [];
         for (int start = 0; start < items.Count; start += size, size = Math.Min(2 * size, Math.Max(threads, LargestBlock)))
         {
             cancellationToken.ThrowIfCancellationRequested();
-            foreach ((TResult? result, Exception? failure) in Block(items, start, Math.Min(size, items.Count - start), threads, compute))
+            int count = Math.Min(size, items.Count - start);
+            if (results.Length < count)
             {
-                if (failure is not null)
-                {
-                    ExceptionDispatchInfo.Throw(failure);
-                }
-
-                yield return result!;
+                results = new TResult[Math.Min(items.Count, 2 * count)];
             }
+
+            (int good, ExceptionDispatchInfo? failure) = Compute(items, start, results.AsMemory(0, count), threads, compute);
+            for (int i = 0; i < good; i++)
+            {
+                yield return results[i];
+            }
+
+            failure?.Throw();
         }
     }
 
-    private static (TResult? Result, Exception? Failure)[] Block<TItem, TResult>(
-        IReadOnlyList<TItem> items, int start, int count, int threads, Func<TItem, int, TResult> compute)
+    private static (int Good, ExceptionDispatchInfo? Failure) Compute<TItem, TResult>(
+        IReadOnlyList<TItem> items, int start, Memory<TResult> results, int threads, Func<TItem, int, TResult> compute)
     {
-        var results = new (TResult? Result, Exception? Failure)[count];
-        if (threads == 1 || count == 1)
+        int count = results.Length;
+        int length = Math.Clamp(count / (4 * threads), 1, LargestRun);
+        int good = count;
+        ExceptionDispatchInfo? first = null;
+        var gate = new Lock();
+        Workers.Run(threads, (count + length - 1) / length, (_, run) =>
         {
-            for (int i = 0; i < count && One(i); i++)
+            // What comes before a failure is still computed; what comes after it will not be asked for.
+            int end = Math.Min(count, (run + 1) * length);
+            for (int i = run * length; i < end && i < Volatile.Read(ref good); i++)
             {
-            }
-        }
-        else
-        {
-            Parallel.For(0, count, new ParallelOptions { MaxDegreeOfParallelism = threads }, (i, loop) =>
-            {
-                if (!One(i))
+                try
                 {
-                    // What comes before i is still computed; what comes after it will not be asked for.
-                    loop.Break();
+                    results.Span[i] = compute(items[start + i], start + i);
                 }
-            });
-        }
-
-        return results;
-
-        bool One(int i)
-        {
-            try
-            {
-                results[i] = (compute(items[start + i], start + i), null);
-                return true;
-            }
 #pragma warning disable CA1031 // Whatever it is, the reader gets it in its turn.
-            catch (Exception failure)
+                catch (Exception failure)
 #pragma warning restore CA1031
-            {
-                results[i] = (default, failure);
-                return false;
+                {
+                    lock (gate)
+                    {
+                        if (i < good)
+                        {
+                            (good, first) = (i, ExceptionDispatchInfo.Capture(failure));
+                        }
+                    }
+                }
             }
-        }
+        });
+        return (good, first);
     }
 }

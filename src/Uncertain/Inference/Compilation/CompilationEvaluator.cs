@@ -82,20 +82,18 @@ internal sealed class CompilationEvaluator : IEvaluator
     {
         long own = options.Clock.GetTimestamp();
         cancellationToken.ThrowIfCancellationRequested();
-        if (IsLate(options, start))
+        if (!IsLate(options, start))
         {
-            return Evaluate(Compile(lineage, options, start, cancellationToken), options, own);
-        }
+            if (SweepEvaluator.TryEvaluate(lineage.Arena, lineage.Ref, options.NodeBudget, cancellationToken, out SweepResult swept))
+            {
+                return swept.ToProbability(EvaluatorName, options.Clock.GetElapsedTime(own));
+            }
 
-        if (SweepEvaluator.TryEvaluate(lineage.Arena, lineage.Ref, options.NodeBudget, cancellationToken, out SweepResult swept))
-        {
-            return swept.ToProbability(EvaluatorName, options.Clock.GetElapsedTime(own));
-        }
-
-        if (CaseEvaluator.TryPrepare(lineage.Arena, lineage.Ref) is { } cases
-            && TryCases(cases, lineage, options, start, own, cancellationToken) is { } probability)
-        {
-            return probability;
+            if (CaseEvaluator.TryPrepare(lineage.Arena, lineage.Ref) is { } cases
+                && TryCases(cases, lineage, options, start, own, cancellationToken) is { } probability)
+            {
+                return probability;
+            }
         }
 
         return TryEvaluateForm(lineage, options, options, start, own, cancellationToken, out string? refusal)
