@@ -121,8 +121,10 @@ internal sealed class Merge<T>
     // Each worker has its own numbers; the segments in their order say in which order the values appear.
     private (T[] Values, int[] Counts) Renumber(KeyTable<T>[] workers)
     {
-        KeyTable<T> all = KeyTable<T>.Create();
         int[][] common = [.. workers.Select(worker => new int[worker.Count])];
+
+        // The first worker's table takes the others' values, too.
+        KeyTable<T> all = workers[0];
         for (int worker = 0; worker < workers.Length; worker++)
         {
             all.Add(workers[worker].Keys, common[worker]);
