@@ -1,5 +1,4 @@
 using System.Globalization;
-using System.Runtime.CompilerServices;
 using Uncertain.Inference.Bounds;
 using Uncertain.Numerics;
 
@@ -16,28 +15,15 @@ namespace Uncertain;
 /// </remarks>
 public sealed class Probability : IFormattable
 {
-    // Only where a tail is too close to the end of double's range, or beyond it.
-    private readonly StrongBox<Tails<ExtendedDouble>>? _tails;
+    private readonly ProbabilityDetails? _details;
 
-    private Probability(
-        double value, double complement, double logValue, double logComplement, double lower, double upper, double complementLower,
-        double complementUpper, Guarantee guarantee, string evaluator, ulong? seed, Cost cost, string? shortfall,
-        StrongBox<Tails<ExtendedDouble>>? tails = null)
+    private Probability(double value, double complement, string evaluator, Cost cost, ProbabilityDetails? details)
     {
         Value = value;
         Complement = complement;
-        LogValue = logValue;
-        LogComplement = logComplement;
-        Lower = lower;
-        Upper = upper;
-        ComplementLower = complementLower;
-        ComplementUpper = complementUpper;
-        Guarantee = guarantee;
         Evaluator = evaluator;
-        Seed = seed;
         Cost = cost;
-        Shortfall = shortfall;
-        _tails = tails;
+        _details = details;
     }
 
     /// <summary>The probability in [0, 1]; the estimate where it is not exact.</summary>
@@ -47,34 +33,34 @@ public sealed class Probability : IFormattable
     public double Complement { get; }
 
     /// <summary>Natural logarithm of P; minus infinity only where P is 0 exactly.</summary>
-    public double LogValue { get; }
+    public double LogValue => _details?.LogValue ?? LogOf(Value, Complement);
 
     /// <summary>Natural logarithm of 1 - P; minus infinity only where P is 1 exactly.</summary>
-    public double LogComplement { get; }
+    public double LogComplement => _details?.LogComplement ?? LogOf(Complement, Value);
 
     /// <summary>Lower bound under <see cref="Guarantee"/>; equal to <see cref="Value"/> where that is exact.</summary>
-    public double Lower { get; }
+    public double Lower => _details?.Value.Lower ?? Value;
 
     /// <summary>Upper bound under <see cref="Guarantee"/>; equal to <see cref="Value"/> where that is exact.</summary>
-    public double Upper { get; }
+    public double Upper => _details?.Value.Upper ?? Value;
 
     /// <summary>
     /// Lower bound of 1 - P under <see cref="Guarantee"/>; tighter than 1 - <see cref="Upper"/> where P is close to 1 and an evaluator
     /// knows more digits.
     /// </summary>
-    public double ComplementLower { get; }
+    public double ComplementLower => _details?.Complement.Lower ?? Complement;
 
     /// <summary>Upper bound of 1 - P under <see cref="Guarantee"/>.</summary>
-    public double ComplementUpper { get; }
+    public double ComplementUpper => _details?.Complement.Upper ?? Complement;
 
     /// <summary>What is promised of the bounds.</summary>
-    public Guarantee Guarantee { get; }
+    public Guarantee Guarantee => _details?.Guarantee ?? Guarantee.Exact;
 
     /// <summary>Name of the evaluator that obtained the figure.</summary>
     public string Evaluator { get; }
 
     /// <summary>The seed that gives the same figure again; null where nothing was drawn.</summary>
-    public ulong? Seed { get; }
+    public ulong? Seed => _details?.Seed;
 
     /// <summary>What the figure cost.</summary>
     public Cost Cost { get; }
@@ -82,10 +68,16 @@ public sealed class Probability : IFormattable
     /// <summary>
     /// In which way the figure is less than what was asked, and why; null where it delivers all that was asked.
     /// </summary>
-    public string? Shortfall { get; }
+    public string? Shortfall => _details?.Shortfall;
 
     /// <summary>Both tails with the range of extended numbers, for further computation.</summary>
-    internal Tails<ExtendedDouble> Tails => _tails?.Value ?? new Tails<double>(Value, Complement).Widen();
+    internal Tails<ExtendedDouble> Tails => _details?.Tails ?? new Tails<double>(Value, Complement).Widen();
+
+    /// <summary>Whether it is more than 0, or may be.</summary>
+    internal bool IsPossible => Value > 0 || Guarantee.Kind != GuaranteeKind.Exact || LogValue > double.NegativeInfinity;
+
+    private ProbabilityDetails Details =>
+        _details ?? new ProbabilityDetails(LogValue, LogComplement, (Value, Value), (Complement, Complement), Guarantee.Exact);
 
     /// <summary>An exact figure from its two tails.</summary>
     /// <param name="value">P in [0, 1].</param>
@@ -139,9 +131,7 @@ public sealed class Probability : IFormattable
     public Probability WithShortfall(string shortfall)
     {
         ArgumentException.ThrowIfNullOrEmpty(shortfall);
-        return new Probability(
-            Value, Complement, LogValue, LogComplement, Lower, Upper, ComplementLower, ComplementUpper, Guarantee, Evaluator, Seed, Cost,
-            shortfall, _tails);
+        return new Probability(Value, Complement, Evaluator, Cost, Details with { Shortfall = shortfall });
     }
 
     /// <summary>For example <c>0.8731 (exact)</c> or <c>0.87 [0.86, 0.88] (99 % confidence)</c>; invariant culture.</summary>
@@ -172,9 +162,7 @@ public sealed class Probability : IFormattable
         // Rounding may leave a tail some units in the last place above 1.
         double value = Math.Min(1, tails.True);
         double complement = Math.Min(1, tails.False);
-        return new Probability(
-            value, complement, LogOf(value, complement), LogOf(complement, value), value, value, complement, complement,
-            Guarantee.Exact, evaluator, null, cost, null);
+        return new Probability(value, complement, evaluator, cost, null);
     }
 
     internal static Probability Exact(Tails<ExtendedDouble> tails, string evaluator, Cost cost)
@@ -182,13 +170,17 @@ public sealed class Probability : IFormattable
         double value = Math.Min(1, tails.True.ToDouble());
         double complement = Math.Min(1, tails.False.ToDouble());
 
+        if (TailConversions.IsInRange(new Tails<double>(value, complement), isZeroExact: false))
+        {
+            return new Probability(value, complement, evaluator, cost, null);
+        }
+
         // Close to 1 the other tail carries more of the logarithm's digits.
         double logValue = complement < 1e-3 ? LogOf(value, complement) : tails.True.Log();
         double logComplement = value < 1e-3 ? LogOf(complement, value) : tails.False.Log();
-        bool isInRange = TailConversions.IsInRange(new Tails<double>(value, complement), isZeroExact: false);
         return new Probability(
-            value, complement, Math.Min(0, logValue), Math.Min(0, logComplement), value, value, complement, complement,
-            Guarantee.Exact, evaluator, null, cost, null, isInRange ? null : new StrongBox<Tails<ExtendedDouble>>(tails));
+            value, complement, evaluator, cost, new ProbabilityDetails(
+                Math.Min(0, logValue), Math.Min(0, logComplement), (value, value), (complement, complement), Guarantee.Exact, Tails: tails));
     }
 
     /// <summary>Certain bounds on both tails; the figure is the middle, exact where the bounds meet.</summary>
@@ -198,14 +190,13 @@ public sealed class Probability : IFormattable
         return bounds.IsExact
             ? Exact(middle, evaluator, cost)
             : new Probability(
-                middle.True, middle.False, LogOf(middle.True, middle.False), LogOf(middle.False, middle.True), bounds.Low.True,
-                bounds.High.True, bounds.High.False, bounds.Low.False, Guarantee.Bounds, evaluator, null, cost, null);
+                middle.True, middle.False, evaluator, cost, new ProbabilityDetails(
+                    LogOf(middle.True, middle.False), LogOf(middle.False, middle.True), (bounds.Low.True, bounds.High.True),
+                    (bounds.High.False, bounds.Low.False), Guarantee.Bounds));
     }
 
     /// <summary>The same figure at another cost.</summary>
-    internal Probability WithCost(Cost cost) => new(
-        Value, Complement, LogValue, LogComplement, Lower, Upper, ComplementLower, ComplementUpper, Guarantee, Evaluator, Seed, cost,
-        Shortfall, _tails);
+    internal Probability WithCost(Cost cost) => new(Value, Complement, Evaluator, cost, _details);
 
     /// <summary>An estimate of which an evaluator knows the logarithms too, below the range of double.</summary>
     internal static Probability Estimated(
@@ -214,14 +205,14 @@ public sealed class Probability : IFormattable
     {
         CheckBounds(lower, estimate, upper);
         return new Probability(
-            estimate, Unit(complement), logValue, logComplement, lower, upper, 1 - upper, 1 - lower, Guarantee.Confidence(delta),
-            evaluator, seed, cost, null);
+            estimate, Unit(complement), evaluator, cost, new ProbabilityDetails(
+                logValue, logComplement, (lower, upper), (1 - upper, 1 - lower), Guarantee.Confidence(delta), seed));
     }
 
     private static Probability Inexact(
         double value, double complement, double lower, double upper, Guarantee guarantee, string evaluator, ulong? seed, Cost cost) =>
-        new(value, complement, LogOf(value, complement), LogOf(complement, value), lower, upper, 1 - upper, 1 - lower, guarantee,
-            evaluator, seed, cost, null);
+        new(value, complement, evaluator, cost, new ProbabilityDetails(
+            LogOf(value, complement), LogOf(complement, value), (lower, upper), (1 - upper, 1 - lower), guarantee, seed));
 
     // ln(tail), from the other tail where that is the smaller one: ln(1 - x) = -x - x^2/2 - ...
     private static double LogOf(double tail, double other) => other < 0.5 ? LogOneMinus(other) : Math.Log(tail);

@@ -98,8 +98,7 @@ public sealed partial class UncertainSet<T> : IPlanned
     }
 
     // What is in no world is not an answer; that a lineage holds in none may show only when it is evaluated.
-    private static bool IsPossible(Answer<T> answer) =>
-        answer.Probability.Guarantee.Kind != GuaranteeKind.Exact || answer.Probability.LogValue > double.NegativeInfinity;
+    private static bool IsPossible(Answer<T> answer) => answer.Probability.IsPossible;
 
     // An evaluator that knows nothing of evidence is asked about lineages that the evidence is worked into.
     private IEnumerable<Answer<T>> AnswersOf(EvaluationOptions options, CancellationToken cancellationToken) =>

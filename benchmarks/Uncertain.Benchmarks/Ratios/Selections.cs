@@ -17,7 +17,7 @@ public static class Selections
         AtLeast("at-least-20-query", Query),
     ];
 
-    private static UncertainSet<int> Query() => Instances.HardAnswers(Answers, 12, 48);
+    private static UncertainSet<int> Query() => Instances.HardAnswers(Answers, 14, 98);
 
     private static UncertainSet<int> Held()
     {
@@ -28,7 +28,7 @@ public static class Selections
     private static Goal MostProbable(string name, Func<UncertainSet<int>> make) => new(name, "all evaluated exactly", 0.1, () =>
     {
         UncertainSet<int> set = make();
-        return Timing.Compare(() => Check(set.EvaluateMostProbable(Asked)), () => set.Evaluate());
+        return Timing.Compare(() => Check(set.EvaluateMostProbable(Asked)), () => set.Evaluate(), turns: 1);
     });
 
     private static Goal AtLeast(string name, Func<UncertainSet<int>> make) => new(name, "all evaluated exactly", 0.1, () =>
@@ -37,7 +37,7 @@ public static class Selections
 
         // Between the last that is asked for and the next one.
         double[] last = [.. set.Evaluate().Select(answer => answer.Probability.Value).OrderDescending().Skip(Asked - 1).Take(2)];
-        return Timing.Compare(() => Check(set.EvaluateAtLeast((last[0] + last[1]) / 2)), () => set.Evaluate());
+        return Timing.Compare(() => Check(set.EvaluateAtLeast((last[0] + last[1]) / 2)), () => set.Evaluate(), turns: 1);
     });
 
     private static void Check(Selection<int> selection)
