@@ -1,6 +1,7 @@
 using System.Collections.Immutable;
 using System.Diagnostics;
 using System.Globalization;
+using System.Runtime.InteropServices;
 using Uncertain.Inference.Posteriors;
 using Uncertain.Numerics;
 using Uncertain.Worlds;
@@ -25,21 +26,48 @@ namespace Uncertain;
 public sealed class Evidence
 {
     private readonly Lock _lock = new();
+    private readonly int _count;
+
+    // Swapped as a whole when the pieces are first asked for, so that it can be read without a lock.
+    private volatile Link _link;
     private Findings? _findings;
 
-    internal Evidence(WorldSpace worlds, ImmutableArray<Lineage> pieces)
+    internal Evidence(WorldSpace worlds, ReadOnlySpan<Lineage> pieces, Evidence? before = null)
     {
         Worlds = worlds;
-        Pieces = pieces;
+        _link = new Link(before, [.. pieces]);
+        _count = (before?._count ?? 0) + pieces.Length;
     }
 
     /// <summary>The world space of the variables.</summary>
     public WorldSpace Worlds { get; }
 
     /// <summary>The lineages that are true, in the order given.</summary>
-    public ImmutableArray<Lineage> Pieces { get; }
+    public ImmutableArray<Lineage> Pieces
+    {
+        get
+        {
+            Link link = _link;
+            if (link.Before is null)
+            {
+                return link.Own;
+            }
 
-    /// <summary>This evidence and more.</summary>
+            // Filled from the end; evidence that grew piece by piece is as deep as it has pieces.
+            var pieces = new Lineage[_count];
+            int end = _count;
+            for (Link? next = link; next is not null; next = next.Before?._link)
+            {
+                end -= next.Own.Length;
+                next.Own.CopyTo(pieces, end);
+            }
+
+            _link = link = new Link(null, ImmutableCollectionsMarshal.AsImmutableArray(pieces));
+            return link.Own;
+        }
+    }
+
+    /// <summary>This evidence and more. Costs as much as there is more: the pieces are copied when they are first asked for.</summary>
     /// <param name="pieces">Lineages that are true as well.</param>
     /// <exception cref="WorldSpaceMismatchException">A lineage belongs to another world space.</exception>
     /// <exception cref="InvalidInputException">A lineage is <c>default</c>.</exception>
@@ -53,7 +81,7 @@ public sealed class Evidence
             }
         }
 
-        return new Evidence(Worlds, Pieces.AddRange(pieces));
+        return new Evidence(Worlds, pieces, before: this);
     }
 
     /// <summary>
@@ -161,7 +189,7 @@ public sealed class Evidence
 
     /// <summary>For example <c>evidence: 3 pieces</c>.</summary>
     public override string ToString() =>
-        string.Create(CultureInfo.InvariantCulture, $"evidence: {Pieces.Length:N0} {(Pieces.Length == 1 ? "piece" : "pieces")}");
+        string.Create(CultureInfo.InvariantCulture, $"evidence: {_count:N0} {(_count == 1 ? "piece" : "pieces")}");
 
     private static EvaluationOptions Plain(EvaluationOptions? options) => (options ?? EvaluationOptions.Default) with { Given = null };
 
@@ -175,4 +203,7 @@ public sealed class Evidence
                 ?? throw Impossible.Because(this, cancellationToken);
         }
     }
+
+    /// <summary>Pieces that came after those of other evidence.</summary>
+    private sealed record Link(Evidence? Before, ImmutableArray<Lineage> Own);
 }

@@ -10,16 +10,15 @@ namespace Uncertain;
 /// </summary>
 /// <remarks>
 /// <para>A change costs what depends on it: small answers are evaluated anew from their compiled form, in large ones only the nodes above the
-/// changed variables, in conjunctions of n independent parts log n of them. Confirming or refuting anything that is more than one
-/// variable's outcome compiles the answers that share variables with it once more, together with it.</para>
+/// changed variables, in conjunctions of n independent parts log n of them. A confirmed record does not cost more after others. Confirming or
+/// refuting anything that ties several variables together, or a variable that such evidence is about, reads all of the evidence again and
+/// compiles the answers that share variables with what is new once more, together with it.</para>
 /// <para>A change that is refused changes nothing. Each change can be undone, the last one first; undoing compiles nothing.</para>
 /// <para>Thread safety: one thread at a time. The world space is not changed.</para>
 /// </remarks>
 /// <typeparam name="T">Type of the values.</typeparam>
 public sealed class MaintainedAnswers<T>
 {
-    private static readonly Dictionary<int, double[]> s_noChances = [];
-
     private readonly WorldSpace _worlds;
     private readonly MaintainedForms _forms;
     private readonly Answer<T>[] _answers;
@@ -69,7 +68,8 @@ public sealed class MaintainedAnswers<T>
         IReadOnlyDictionary<Lineage, double> chances, CancellationToken cancellationToken = default)
     {
         ArgumentNullException.ThrowIfNull(chances);
-        return Change(_forms.Evidence, ChangedChances.Of(chances, _worlds, _forms.SetChances), cancellationToken);
+        Dictionary<int, double[]> changed = ChangedChances.Of(chances, _worlds, _forms.SetChances);
+        return Changed(_forms.Change(_forms.Evidence, changed, cancellationToken));
     }
 
     /// <summary>A lineage was found to be true: a record, an event, an answer, or any formula of such.</summary>
@@ -80,7 +80,7 @@ public sealed class MaintainedAnswers<T>
     /// <exception cref="WorldSpaceMismatchException">It belongs to another world space.</exception>
     /// <exception cref="EvaluationRefusedException">A budget ran out while answers were compiled together with it.</exception>
     public IReadOnlyList<AnswerChange<T>> Confirm(Lineage lineage, CancellationToken cancellationToken = default) =>
-        Change(_forms.Evidence.And(lineage), s_noChances, cancellationToken);
+        Changed(_forms.Confirm(lineage, cancellationToken));
 
     /// <summary>A lineage was found to be false; otherwise as <see cref="Confirm"/>.</summary>
     /// <param name="lineage">The lineage.</param>
@@ -108,14 +108,12 @@ public sealed class MaintainedAnswers<T>
 
     internal void Start(Evidence given, CancellationToken cancellationToken)
     {
-        Change(_forms.Evidence.And(given.Pieces.AsSpan()), s_noChances, cancellationToken);
+        Changed(_forms.Change(_forms.Evidence.And(given.Pieces.AsSpan()), new Dictionary<int, double[]>(), cancellationToken));
         _changes.Clear();
     }
 
-    private List<AnswerChange<T>> Change(
-        Evidence evidence, IReadOnlyDictionary<int, double[]> chances, CancellationToken cancellationToken)
+    private List<AnswerChange<T>> Changed(MaintainedChange change)
     {
-        MaintainedChange change = _forms.Change(evidence, chances, cancellationToken);
         _changes.Push(change);
         return Renew(change);
     }

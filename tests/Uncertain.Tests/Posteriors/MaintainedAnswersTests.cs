@@ -65,6 +65,84 @@ public sealed class MaintainedAnswersTests(ITestOutputHelper output)
     }
 
     [Fact]
+    public void Confirm_ManyPiecesWithChancesAndUndoing_EqualsStartingWithAllOfThem()
+    {
+        int refused = 0;
+        int undone = 0;
+        for (int seed = 8_900_000; seed < 8_900_100; seed++)
+        {
+            var random = new Random(seed);
+            var worlds = new WorldSpace();
+            Lineage[] literals =
+            [
+                .. Enumerable.Range(0, 8).Select(i => worlds.Event($"call {i}", 0.1 + (0.1 * i))),
+                .. worlds.Choice("berth", 0.2, 0.3, 0.4), .. worlds.Choice("day", 0.25, 0.25, 0.5),
+            ];
+            Lineage Some() => random.Next(2) == 0 ? literals[random.Next(literals.Length)] : !literals[random.Next(literals.Length)];
+            UncertainSet<int> set = worlds.WithLineage(
+                Enumerable.Range(0, 6), i => (Some() & Some()) | (Some() & Some() & Some()) | Some() & !Some(), "set");
+            MaintainedAnswers<int> answers = set.Maintain();
+            var chances = new Stack<(Lineage Literal, double Chance)?>();
+            for (int step = 0; step < 12; step++)
+            {
+                if (random.Next(5) == 0 && answers.ChangeCount > 0)
+                {
+                    undone++;
+                    answers.Undo();
+                    chances.Pop();
+                    AssertAnew(set, answers, chances, seed);
+                    continue;
+                }
+
+                (Lineage Literal, double Chance)? change = random.Next(4) == 0 ? (literals[random.Next(8)], 0.05 + (0.9 * random.NextDouble())) : null;
+                Lineage piece = random.Next(3) switch
+                {
+                    0 => Some() | Some(),
+                    1 => Some() & Some(),
+                    _ => Some(),
+                };
+                double[] before = Values(answers);
+                try
+                {
+                    _ = change is { } pair ? answers.SetChance(pair.Literal, pair.Chance) : answers.Confirm(piece);
+                    chances.Push(change);
+                }
+                catch (InvalidInputException)
+                {
+                    refused++;
+                    Assert.Equal(before, Values(answers));
+                    Assert.Throws<InvalidInputException>(
+                        () => set.Maintain(new EvaluationOptions { Given = answers.Evidence.And(piece) }));
+                }
+
+                AssertAnew(set, answers, chances, seed);
+            }
+        }
+
+        output.WriteLine($"{refused} refused, {undone} undone");
+        Assert.True(refused > 50 && undone > 50);
+    }
+
+    [Fact]
+    public void Evidence_ConfirmedOneByOne_HasAllPiecesInOrder()
+    {
+        var worlds = new WorldSpace();
+        Lineage[] seen = [.. Enumerable.Range(0, 20_000).Select(i => worlds.Event($"seen {i}", 0.5))];
+        Evidence evidence = worlds.Given(seen[0]);
+        for (int i = 1; i < seen.Length; i += 3)
+        {
+            evidence = evidence.And(seen.AsSpan()[i..Math.Min(i + 3, seen.Length)]);
+        }
+
+        Evidence more = evidence.And(!seen[3]);
+        Lineage[] all = [.. seen, !seen[3]];
+
+        Assert.Equal(seen, evidence.Pieces);
+        Assert.Equal(all, more.Pieces);
+        Assert.Equal("evidence: 20,001 pieces", more.ToString());
+    }
+
+    [Fact]
     public void Confirm_WhatWasRefuted_ChangesNothing()
     {
         var worlds = new WorldSpace();
@@ -102,6 +180,26 @@ public sealed class MaintainedAnswersTests(ITestOutputHelper output)
         Assert.Equal(1 / 6.0, answers.Answers[0].Probability.Value, 1e-15);
         Assert.Equal(0, answers.Answers[1].Probability.Value);
         Assert.Equal(5 / 6.0, answers.Answers[2].Probability.Value, 1e-15);
+    }
+
+    private static void AssertAnew(
+        UncertainSet<int> set, MaintainedAnswers<int> answers, IEnumerable<(Lineage Literal, double Chance)?> chances, int seed)
+    {
+        MaintainedAnswers<int> anew = set.Maintain(new EvaluationOptions { Given = answers.Evidence });
+        foreach ((Lineage Literal, double Chance)? change in chances.Reverse())
+        {
+            if (change is { } pair)
+            {
+                anew.SetChance(pair.Literal, pair.Chance);
+            }
+        }
+
+        double[] expected = Values(anew);
+        double[] actual = Values(answers);
+        for (int i = 0; i < expected.Length; i++)
+        {
+            Assert.True(Closeness.RelativeError(expected[i], actual[i]) <= Closeness.Exact, $"seed {seed}: {actual[i]:R}, anew {expected[i]:R}");
+        }
     }
 
     private static string? Check(TestCase test)

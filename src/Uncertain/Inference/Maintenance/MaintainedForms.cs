@@ -13,6 +13,8 @@ namespace Uncertain.Inference.Maintenance;
 /// </summary>
 internal sealed class MaintainedForms
 {
+    private static readonly Dictionary<int, double[]> s_noChances = [];
+
     private readonly EvaluationOptions _options;
     private readonly IReadOnlyList<Lineage> _lineages;
     private readonly LineageArena _arena;
@@ -20,7 +22,11 @@ internal sealed class MaintainedForms
     private readonly ConditionedForm[] _forms;
     private readonly Probability[] _probabilities;
     private readonly VariableIndex _index;
-    private Findings _findings;
+
+    // What is known of single variables is in a table of its own, which grows with each piece; the findings are those of the last time that
+    // all of the evidence was read, and their parts are the present ones.
+    private Dictionary<int, bool[]> _allowed = [];
+    private Findings _parts;
 
     public MaintainedForms(
         WorldSpace worlds, IReadOnlyList<Lineage> lineages, EvaluationOptions options, CancellationToken cancellationToken)
@@ -31,7 +37,7 @@ internal sealed class MaintainedForms
         _arena = new LineageArena(worlds);
         _chances = new ChanceState(worlds.Variables);
         Evidence = worlds.Given();
-        _findings = FindingsReader.TryRead(_chances.Set, _arena, [], cancellationToken)!;
+        _parts = FindingsReader.TryRead(_chances.Set, _arena, [], cancellationToken)!;
         _forms =
         [
             .. OrderedParallel.Select(
@@ -49,7 +55,50 @@ internal sealed class MaintainedForms
     public Evidence Evidence { get; private set; }
 
     /// <summary>
-    /// Changes chances, or what is known, or both. If it fails all is as before.
+    /// One more piece is known. Where it speaks of single variables that are in no part of the evidence, only it is read and costs only
+    /// what depends on these; else all of the evidence is. If it fails all is as before.
+    /// </summary>
+    /// <param name="piece">What is true.</param>
+    /// <param name="cancellationToken">Cancels it.</param>
+    /// <returns>What was changed, to be undone.</returns>
+    /// <exception cref="InvalidInputException">It cannot be true given what is known.</exception>
+    /// <exception cref="EvaluationRefusedException">A budget ran out while lineages were compiled with it.</exception>
+    public MaintainedChange Confirm(Lineage piece, CancellationToken cancellationToken)
+    {
+        Evidence evidence = Evidence.And(piece);
+        Findings own = FindingsReader.TryRead(_chances.Set, _arena, [piece], cancellationToken)
+            ?? throw Impossible.Because(evidence, cancellationToken);
+        if (own.Parts.Count > 0 || own.Allowed.Keys.Any(variable => _parts.PartOf(variable) is not null))
+        {
+            return Change(evidence, s_noChances, cancellationToken);
+        }
+
+        return Run(change =>
+        {
+            foreach ((int variable, bool[] allowed) in own.Allowed)
+            {
+                bool[]? before = _allowed.GetValueOrDefault(variable);
+                bool[] now = before is null ? allowed : [.. allowed.Zip(before, (one, other) => one && other)];
+                if (!now.Contains(true))
+                {
+                    throw Impossible.Because(evidence, cancellationToken);
+                }
+
+                if (before is null || !now.AsSpan().SequenceEqual(before))
+                {
+                    change.Narrowed.Add((variable, before));
+                    _allowed[variable] = now;
+                }
+            }
+
+            Restrict(change, change.Narrowed.Select(pair => pair.Variable), evidence);
+            Update(change, change.Variables.SelectMany(variable => _index.AnswersOf(variable).ToArray()));
+            Evidence = evidence;
+        });
+    }
+
+    /// <summary>
+    /// Changes chances, or what is known, or both. Reads all of the evidence. If it fails all is as before.
     /// </summary>
     /// <param name="evidence">All that is known then.</param>
     /// <param name="chances">The chances that are set anew, by variable.</param>
@@ -58,10 +107,7 @@ internal sealed class MaintainedForms
     /// <exception cref="InvalidInputException">The evidence is impossible.</exception>
     /// <exception cref="EvaluationRefusedException">A budget ran out while lineages were compiled with new evidence.</exception>
     public MaintainedChange Change(
-        Evidence evidence, IReadOnlyDictionary<int, double[]> chances, CancellationToken cancellationToken)
-    {
-        var change = new MaintainedChange(Evidence, _findings);
-        try
+        Evidence evidence, IReadOnlyDictionary<int, double[]> chances, CancellationToken cancellationToken) => Run(change =>
         {
             foreach ((int variable, double[] own) in chances)
             {
@@ -71,25 +117,11 @@ internal sealed class MaintainedForms
 
             Findings findings = FindingsReader.TryRead(_chances.Set, _arena, evidence.Pieces.AsSpan(), cancellationToken)
                 ?? throw Impossible.Because(evidence, cancellationToken);
-            findings.ReuseParts(_findings);
+            findings.ReuseParts(_parts);
             Apply(change, evidence, findings, cancellationToken);
             Evidence = evidence;
-            _findings = findings;
-            return change;
-        }
-        catch (Exception exception)
-        {
-            Undo(change);
-            if (exception is OverflowException)
-            {
-                throw new EvaluationRefusedException(
-                    "A probability is below 2^-2,000,000,000 with this change, beyond the range of the evaluator's numbers. Nothing was changed.",
-                    exception);
-            }
-
-            throw;
-        }
-    }
+            _parts = findings;
+        });
 
     /// <summary>Takes the last change back.</summary>
     public void Undo(MaintainedChange change)
@@ -116,24 +148,75 @@ internal sealed class MaintainedForms
             _probabilities[answer] = probability;
         }
 
-        (Evidence, _findings) = (change.Evidence, change.Findings);
+        (Evidence, _parts, _allowed) = (change.Evidence, change.Parts, change.Allowed);
+        foreach ((int variable, bool[]? old) in change.Narrowed)
+        {
+            if (old is null)
+            {
+                _allowed.Remove(variable);
+            }
+            else
+            {
+                _allowed[variable] = old;
+            }
+        }
+    }
+
+    private MaintainedChange Run(Action<MaintainedChange> apply)
+    {
+        var change = new MaintainedChange(Evidence, _parts, _allowed);
+        try
+        {
+            apply(change);
+            return change;
+        }
+        catch (Exception exception)
+        {
+            Undo(change);
+            if (exception is OverflowException)
+            {
+                throw new EvaluationRefusedException(
+                    "A probability is below 2^-2,000,000,000 with this change, beyond the range of the evaluator's numbers. Nothing was changed.",
+                    exception);
+            }
+
+            throw;
+        }
+    }
+
+    // The chances of variables given what is known of each by itself.
+    private void Restrict(MaintainedChange change, IEnumerable<int> variables, Evidence evidence)
+    {
+        foreach (int variable in variables)
+        {
+            change.Variables.Add(variable);
+            change.Given.Add((variable, ChanceState.Of(_chances.Given, variable)));
+            if (!_chances.TryRestrict(variable, _allowed.GetValueOrDefault(variable)))
+            {
+                throw Contradiction(evidence);
+            }
+        }
+    }
+
+    private void Update(MaintainedChange change, IEnumerable<int> answers)
+    {
+        foreach (int answer in answers.Distinct().Order())
+        {
+            change.Before.Add((answer, _forms[answer], _probabilities[answer]));
+            _forms[answer].Update(change.Variables);
+            _probabilities[answer] = _forms[answer].Probability;
+        }
     }
 
     private void Apply(MaintainedChange change, Evidence evidence, Findings findings, CancellationToken cancellationToken)
     {
         long start = _options.Clock.GetTimestamp();
-        foreach (int variable in change.Set.Select(pair => pair.Variable).Union(Differing(_findings.Allowed, findings.Allowed)))
-        {
-            change.Variables.Add(variable);
-            change.Given.Add((variable, ChanceState.Of(_chances.Given, variable)));
-            if (!_chances.TryRestrict(variable, findings.Allowed.GetValueOrDefault(variable)))
-            {
-                throw Contradiction(evidence);
-            }
-        }
+        int[] changed = [.. change.Set.Select(pair => pair.Variable).Union(Differing(_allowed, findings.Allowed))];
+        _allowed = new Dictionary<int, bool[]>(findings.Allowed);
+        Restrict(change, changed, evidence);
 
         // Lineages that depend on evidence which came or went have to be compiled with it anew.
-        EvidencePart[] other = [.. findings.Parts.Except(_findings.Parts), .. _findings.Parts.Except(findings.Parts)];
+        EvidencePart[] other = [.. findings.Parts.Except(_parts.Parts), .. _parts.Parts.Except(findings.Parts)];
         var recompiled = new SortedSet<int>();
         foreach (int variable in other.SelectMany(part => part.Variables))
         {
@@ -150,7 +233,7 @@ internal sealed class MaintainedForms
             }
         }
 
-        IEnumerable<EvidencePart> doubtful = findings.Parts.Except(_findings.Parts)
+        IEnumerable<EvidencePart> doubtful = findings.Parts.Except(_parts.Parts)
             .Union(change.Variables.Select(findings.PartOf).OfType<EvidencePart>());
         foreach (EvidencePart part in doubtful)
         {
@@ -158,12 +241,7 @@ internal sealed class MaintainedForms
         }
 
         touched.ExceptWith(recompiled);
-        foreach (int answer in touched)
-        {
-            change.Before.Add((answer, _forms[answer], _probabilities[answer]));
-            _forms[answer].Update(change.Variables);
-            _probabilities[answer] = _forms[answer].Probability;
-        }
+        Update(change, touched);
 
         foreach (int answer in recompiled)
         {
