@@ -77,6 +77,22 @@ public sealed class EvidenceTests
     }
 
     [Fact]
+    public void Compile_GivenEvidence_IsRefusedWithWhatToDoInstead()
+    {
+        var worlds = new WorldSpace();
+        Lineage late = worlds.Event("late", 0.2);
+        Lineage lineage = late | worlds.Event("cancelled", 0.1);
+        var options = new EvaluationOptions { Given = worlds.Given(!late) };
+
+        EvaluationRefusedException refusal = Assert.Throws<EvaluationRefusedException>(() => lineage.Compile(options));
+
+        Assert.Contains("evidence: 1 piece", refusal.Message, StringComparison.Ordinal);
+        Assert.Contains("Lineage.Evaluate", refusal.Message, StringComparison.Ordinal);
+        Assert.Equal(0.1, lineage.Evaluate(options).Value, 1e-15);
+        Assert.Equal(0.28, lineage.Compile(options with { Given = null }).Evaluate().Value, 1e-15);
+    }
+
+    [Fact]
     public void AndUnique_TwoBerthsOfOneShip_LeavesOneOfThem()
     {
         var worlds = new WorldSpace();
