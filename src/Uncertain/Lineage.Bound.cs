@@ -9,7 +9,8 @@ public readonly partial struct Lineage
     /// </summary>
     /// <remarks>
     /// The bounds are on the probability without evidence. For bounds given evidence call
-    /// <see cref="Evaluate(EvaluationOptions?, CancellationToken)"/> with <see cref="Evaluators.Bounds"/> and <see cref="EvaluationOptions.Given"/>.
+    /// <see cref="Evaluate(EvaluationOptions?, CancellationToken)"/> with <see cref="Evaluators.Bounds"/> and
+    /// <see cref="EvaluationOptions.Given"/>.
     /// </remarks>
     /// <param name="cancellationToken">Cancels the work on the first bounds.</param>
     public BoundedLineage Bound(CancellationToken cancellationToken = default)

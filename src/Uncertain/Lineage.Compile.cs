@@ -11,8 +11,8 @@ public readonly partial struct Lineage
     /// </summary>
     /// <remarks>
     /// The form is the lineage's own, without evidence. For one probability given evidence call
-    /// <see cref="Evaluate(EvaluationOptions?, CancellationToken)"/> with <see cref="EvaluationOptions.Given"/>; for probabilities that are asked again and again while evidence comes in, use
-    /// <see cref="UncertainSet{T}.Maintain"/>.
+    /// <see cref="Evaluate(EvaluationOptions?, CancellationToken)"/> with <see cref="EvaluationOptions.Given"/>; for
+    /// probabilities that are asked again and again while evidence comes in, use <see cref="UncertainSet{T}.Maintain"/>.
     /// </remarks>
     /// <param name="options">Node budget, memory budget and deadline; evidence is refused, and the rest does not matter here.</param>
     /// <param name="cancellationToken">Cancels the compilation.</param>
