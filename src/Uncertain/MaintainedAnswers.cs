@@ -76,7 +76,9 @@ public sealed class MaintainedAnswers<T>
     /// <param name="lineage">The lineage.</param>
     /// <param name="cancellationToken">Cancels the change.</param>
     /// <returns>The answers whose probabilities have changed.</returns>
-    /// <exception cref="InvalidInputException">It cannot be true given what was found before.</exception>
+    /// <exception cref="InvalidInputException">
+    /// It cannot be true given what was found before, or contains what was added to the world space after these answers were made.
+    /// </exception>
     /// <exception cref="WorldSpaceMismatchException">It belongs to another world space.</exception>
     /// <exception cref="EvaluationRefusedException">A budget ran out while answers were compiled together with it.</exception>
     public IReadOnlyList<AnswerChange<T>> Confirm(Lineage lineage, CancellationToken cancellationToken = default) =>
@@ -86,7 +88,9 @@ public sealed class MaintainedAnswers<T>
     /// <param name="lineage">The lineage.</param>
     /// <param name="cancellationToken">Cancels the change.</param>
     /// <returns>The answers whose probabilities have changed.</returns>
-    /// <exception cref="InvalidInputException">It cannot be false given what was found before.</exception>
+    /// <exception cref="InvalidInputException">
+    /// It cannot be false given what was found before, or contains what was added to the world space after these answers were made.
+    /// </exception>
     /// <exception cref="WorldSpaceMismatchException">It belongs to another world space.</exception>
     /// <exception cref="EvaluationRefusedException">A budget ran out while answers were compiled together with it.</exception>
     public IReadOnlyList<AnswerChange<T>> Refute(Lineage lineage, CancellationToken cancellationToken = default) =>

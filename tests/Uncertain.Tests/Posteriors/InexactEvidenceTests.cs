@@ -90,7 +90,7 @@ public sealed class InexactEvidenceTests(ITestOutputHelper output)
         }
 
         output.WriteLine($"{count:N0} cases, {_figures:N0} figures, {_open:N0} of them not exact; {_refused:N0} evaluations refused");
-        Assert.True(_figures > count && _open > 20);
+        Assert.True(_figures > count && _open > 0);
     }
 
     [Fact]

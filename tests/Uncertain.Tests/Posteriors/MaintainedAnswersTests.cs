@@ -124,6 +124,24 @@ public sealed class MaintainedAnswersTests(ITestOutputHelper output)
     }
 
     [Fact]
+    public void Confirm_WhatWasAddedLater_IsRefusedAndChangesNothing()
+    {
+        var worlds = new WorldSpace();
+        Lineage early = worlds.Event("early", 0.3);
+        MaintainedAnswers<int> answers = worlds.WithLineage([1], _ => early, "set").Maintain();
+        Lineage late = worlds.Event("late", 0.5);
+
+        foreach (Lineage piece in (Lineage[])[late, !late, late | early])
+        {
+            InvalidInputException exception = Assert.Throws<InvalidInputException>(() => answers.Confirm(piece));
+            Assert.Contains("after these answers were made", exception.Message, StringComparison.Ordinal);
+        }
+
+        Assert.Equal(0, answers.ChangeCount);
+        Assert.Equal(0.3, answers.Answers[0].Probability.Value);
+    }
+
+    [Fact]
     public void Evidence_ConfirmedOneByOne_HasAllPiecesInOrder()
     {
         var worlds = new WorldSpace();

@@ -66,6 +66,7 @@ internal sealed class MaintainedForms
     public MaintainedChange Confirm(Lineage piece, CancellationToken cancellationToken)
     {
         Evidence evidence = Evidence.And(piece);
+        CheckKnown(piece);
         Findings own = FindingsReader.TryRead(_chances.Set, _arena, [piece], cancellationToken)
             ?? throw Impossible.Because(evidence, cancellationToken);
         if (own.Parts.Count > 0 || own.Allowed.Keys.Any(variable => _parts.PartOf(variable) is not null))
@@ -159,6 +160,17 @@ internal sealed class MaintainedForms
             {
                 _allowed[variable] = old;
             }
+        }
+    }
+
+    private void CheckKnown(Lineage piece)
+    {
+        var cone = new Sampling.Cone(piece.Arena);
+        cone.Add(piece.Ref);
+        if (cone.Slots.Any(slot => slot >= _chances.Set.SlotCount))
+        {
+            throw new InvalidInputException(
+                $"{piece} contains what was added to the world space after these answers were made, so they know nothing of it. Make them again.");
         }
     }
 
