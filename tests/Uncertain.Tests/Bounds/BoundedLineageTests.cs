@@ -104,6 +104,18 @@ public sealed class BoundedLineageTests
         Assert.NotNull(probability.Shortfall);
     }
 
+    [Fact]
+    public void Refine_AMillionNestedNodes_NeedsNoStack()
+    {
+        Lineage nested = Nested(1_000_000);
+
+        Probability probability = nested.Bound().Refine(10);
+
+        // The last is a disjunction with an event of chance 0.5.
+        Assert.InRange(probability.Value, 0.5, 1);
+        Assert.True(probability.Upper < 1);
+    }
+
     [Theory]
     [InlineData(0)]
     [InlineData(1)]
@@ -112,5 +124,17 @@ public sealed class BoundedLineageTests
     {
         Assert.Throws<ArgumentOutOfRangeException>(() => Accuracy.CertainlyWithin(epsilon));
         Assert.Throws<ArgumentOutOfRangeException>(() => Accuracy.CertainlyWithinFactor(epsilon));
+    }
+
+    private Lineage Nested(int count)
+    {
+        Lineage[] events = [.. Enumerable.Range(0, 100).Select(i => _worlds.Event($"e{i}", 0.5))];
+        Lineage nested = events[0];
+        for (int i = 0; i < count; i++)
+        {
+            nested = i % 2 == 0 ? nested & events[i % 100] : nested | events[i * 7 % 100];
+        }
+
+        return nested;
     }
 }

@@ -4,7 +4,16 @@ namespace Uncertain.Tests.Bounds;
 
 public sealed class SelectionTests
 {
+    // A wrong estimate has a chance of one in 10^10.
+    private static readonly EvaluationOptions s_sampling = new()
+    {
+        Evaluator = Evaluators.Sampling,
+        Accuracy = Accuracy.Within(0.02, 1e-10),
+        Seed = 7,
+    };
+
     private readonly WorldSpace _worlds = new();
+    private int _grids;
 
     [Fact]
     public void EvaluateMostProbable_DifferentChances_AreInOrder()
@@ -104,6 +113,40 @@ public sealed class SelectionTests
     }
 
     [Fact]
+    public void EvaluateMostProbable_EstimatesDecide_IsNotCertified()
+    {
+        // No conjunctions, whose probabilities sampling knows exactly. The estimates are far apart, but hold with a chance only.
+        Selection<int> selection = Grids(0.1, 0.6).EvaluateMostProbable(1, s_sampling);
+
+        Assert.Equal([1], selection.Answers.Select(answer => answer.Value));
+        Assert.Equal(GuaranteeKind.Confidence, selection.Answers[0].Probability.Guarantee.Kind);
+        Assert.False(selection.IsCertified);
+    }
+
+    [Fact]
+    public void EvaluateAtLeast_EstimatesDecide_IsNotCertified()
+    {
+        Selection<int> selection = Grids(0.1, 0.6).EvaluateAtLeast(0.5, s_sampling);
+
+        Assert.Equal([1], selection.Answers.Select(answer => answer.Value));
+        Assert.Equal(GuaranteeKind.Confidence, selection.Answers[0].Probability.Guarantee.Kind);
+        Assert.False(selection.IsCertified);
+    }
+
+    [Fact]
+    public void EvaluateAtLeast_ThresholdWithinTheEstimate_LeavesItUndecided()
+    {
+        double chance = Grids(0.4).Evaluate()[0].Probability.Value;
+
+        Selection<int> selection = Grids(0.4).EvaluateAtLeast(chance, s_sampling);
+
+        Assert.Empty(selection.Answers);
+        Assert.Equal([0], selection.Undecided.Select(answer => answer.Value));
+        Assert.InRange(chance, selection.Undecided[0].Probability.Lower, selection.Undecided[0].Probability.Upper);
+        Assert.NotNull(selection.Shortfall);
+    }
+
+    [Fact]
     public void EvaluateAtLeast_ExactlyTheThreshold_Belongs()
     {
         Selection<int> selection = Formulas(0.5, 0.25, 0.75).EvaluateAtLeast(0.5);
@@ -162,6 +205,12 @@ public sealed class SelectionTests
     {
         // Events of two lineages each are no records: no safe plan takes them.
         Lineage[] lineages = [.. chances.Select((chance, i) => _worlds.Event($"f{i}", chance))];
+        return _worlds.WithLineage(Enumerable.Range(0, chances.Length), i => lineages[i]);
+    }
+
+    private UncertainSet<int> Grids(params double[] chances)
+    {
+        Lineage[] lineages = [.. chances.Select((chance, i) => SlowQueries.HardLineage(_worlds, 3, $"{i} {_grids++}", chance))];
         return _worlds.WithLineage(Enumerable.Range(0, chances.Length), i => lineages[i]);
     }
 

@@ -28,6 +28,9 @@ internal struct BoundNode
     /// <summary>The formula of a leaf.</summary>
     public LineageRef Formula;
 
+    /// <summary>Number of nodes of a leaf's formula if that is nested, 0 for a list of terms.</summary>
+    public int NestedNodes;
+
     /// <summary>The chance of this case of the decision above.</summary>
     public TailBounds Weight;
 

@@ -23,6 +23,7 @@ internal sealed class BoundTree
 
     private readonly Lineage _lineage;
     private readonly LeafCompilation _compilation = new();
+    private readonly int _nestedNodes;
     private BoundNode[] _nodes = new BoundNode[1];
     private int _count = 1;
     private long _triedWhole;
@@ -36,6 +37,7 @@ internal sealed class BoundTree
         _lineage = lineage;
         _nodes[0] = Leaf(lineage.Ref, TailBounds.Always, bounds, limit);
         _nodes[0].Parent = -1;
+        _nestedNodes = bounds.NestedNodes;
     }
 
     /// <summary>The bounds on the whole lineage.</summary>
@@ -51,7 +53,8 @@ internal sealed class BoundTree
     public long NodeCount => _count + (_expansion?.Made ?? 0) + _compilation.Nodes;
 
     /// <summary>Bytes held.</summary>
-    public long Bytes => ((long)_nodes.Length * BytesPerNode) + (_arena?.Bytes ?? 0);
+    public long Bytes =>
+        ((long)_nodes.Length * BytesPerNode) + (_arena?.Bytes ?? 0) + (_leafBounds?.Bytes ?? 0) + (_expansion?.Bytes ?? 0);
 
     /// <summary>One step of refining, of about as many nodes as the leaf's formula has.</summary>
     /// <param name="options">The budgets.</param>
@@ -63,7 +66,7 @@ internal sealed class BoundTree
         limit.Look();
         Open();
         long refined = _count + _expansion!.Made;
-        if (compiles && _compilation.TryCompile(_lineage, refined, ref _triedWhole, Bytes, options, limit) is { } whole)
+        if (compiles && _compilation.TryCompile(_lineage, _nestedNodes, refined, ref _triedWhole, Bytes, options, limit) is { } whole)
         {
             Exact = whole;
             Close(0, whole);
@@ -73,7 +76,8 @@ internal sealed class BoundTree
         int leaf = Pick();
         LineageRef formula = leaf == 0 ? _arena!.Import(_lineage.Arena, _lineage.Ref) : _nodes[leaf].Formula;
         if (compiles && leaf > 0
-            && _compilation.TryCompile(new Lineage(_arena!, formula), refined, ref _nodes[leaf].Tried, Bytes, options, limit) is { } part)
+            && _compilation.TryCompile(
+                new Lineage(_arena!, formula), _nodes[leaf].NestedNodes, refined, ref _nodes[leaf].Tried, Bytes, options, limit) is { } part)
         {
             Close(leaf, part);
         }
@@ -239,6 +243,13 @@ internal sealed class BoundTree
     private static BoundNode Leaf(LineageRef formula, TailBounds weight, FormulaBounds bounds, WorkLimit limit)
     {
         TailBounds own = bounds.Of(formula, limit);
-        return new BoundNode { Formula = formula, Weight = weight, Bounds = own, IsOpen = formula.IsNode && !own.IsExact };
+        return new BoundNode
+        {
+            Formula = formula,
+            NestedNodes = bounds.NestedNodes,
+            Weight = weight,
+            Bounds = own,
+            IsOpen = formula.IsNode && !own.IsExact,
+        };
     }
 }

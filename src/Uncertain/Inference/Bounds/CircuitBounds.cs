@@ -15,6 +15,9 @@ internal sealed class CircuitBounds(FormulaBounds formulas, LineageArena arena)
     private const byte Even = 1;
     private const byte Odd = 2;
 
+    // Bounds, users, signs and whether it is private.
+    private const long BytesPerNode = 32 + 4 + 1 + 1;
+
     private readonly Reach _reach = new(arena);
     private readonly DenseNumbers _variables = new();
     private int[] _places = new int[64];
@@ -23,6 +26,11 @@ internal sealed class CircuitBounds(FormulaBounds formulas, LineageArena arena)
     private int[] _users = new int[64];
     private byte[] _signs = new byte[64];
     private bool[] _isPrivate = new bool[64];
+
+    /// <summary>Number of nodes of the formula that was bounded last.</summary>
+    public int NodeCount => _reach.Count;
+
+    public long Bytes => _reach.Bytes + _variables.Bytes + (5L * _places.Length) + (BytesPerNode * _bounds.Length);
 
     private VariableTable Table => arena.Worlds.Variables;
 

@@ -11,6 +11,8 @@ internal sealed class DenseNumbers
 
     public int Count { get; private set; }
 
+    public long Bytes => 12L * _keys.Length;
+
     public void Clear()
     {
         Count = 0;

@@ -23,6 +23,9 @@ internal sealed class Expansion(LineageArena arena, OutcomeChances chances)
     /// <summary>Nodes of formulas made so far.</summary>
     public long Made => _residuals.Made;
 
+    /// <summary>Bytes of the lists.</summary>
+    public long Bytes => _residuals.Bytes + (4L * (_units.Capacity + _others.Capacity)) + (40L * _children.Capacity);
+
     private VariableTable Table => arena.Worlds.Variables;
 
     /// <summary>Takes a conjunction, or the negation of one, apart.</summary>

@@ -25,14 +25,28 @@ internal sealed class FormulaBounds
 
     public OutcomeChances Chances => _chances;
 
+    /// <summary>Number of nodes of the formula that was bounded last if it is nested deeper than a list of terms, else 0.</summary>
+    public int NestedNodes { get; private set; }
+
+    /// <summary>Bytes of the lists.</summary>
+    public long Bytes => _terms.Bytes + _circuits.Bytes;
+
     public TailBounds Of(LineageRef formula, WorkLimit limit)
     {
+        NestedNodes = 0;
         if (!formula.IsNode)
         {
             return OfLeaf(formula);
         }
 
-        return (TryTerms(formula.Index, limit) ?? _circuits.Of(formula.Index, limit)).NegateIf(formula.IsNegated);
+        if (TryTerms(formula.Index, limit) is { } terms)
+        {
+            return terms.NegateIf(formula.IsNegated);
+        }
+
+        TailBounds bounds = _circuits.Of(formula.Index, limit);
+        NestedNodes = _circuits.NodeCount;
+        return bounds.NegateIf(formula.IsNegated);
     }
 
     /// <summary>A literal or a constant.</summary>

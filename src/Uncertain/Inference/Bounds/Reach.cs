@@ -11,6 +11,8 @@ internal sealed class Reach(LineageArena arena)
 
     public LineageArena Arena => arena;
 
+    public long Bytes => _numbers.Bytes + (4L * _nodes.Capacity);
+
     /// <summary>Number of nodes reached.</summary>
     public int Count => _nodes.Count;
 

@@ -83,7 +83,7 @@ internal sealed class Refinement
                 {
                     End = RefinementEnd.Nodes;
                 }
-                else if (_lineage.Arena.Bytes + _tree.Bytes > options.MemoryBudget)
+                else if (_lineage.Arena.Bytes + _tree.Bytes >= options.MemoryBudget)
                 {
                     End = RefinementEnd.Memory;
                 }

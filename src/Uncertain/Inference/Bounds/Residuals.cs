@@ -24,6 +24,10 @@ internal sealed class Residuals(LineageArena arena)
     /// <summary>Nodes made so far, counting wide ones as several.</summary>
     public long Made { get; private set; }
 
+    /// <summary>Bytes of the lists, without the arena's.</summary>
+    public long Bytes =>
+        _reach.Bytes + _decided.Bytes + _chosen.Bytes + _seen.Bytes + (4L * (_owners.Capacity + _counts.Capacity + _residual.Length));
+
     private VariableTable Table => arena.Worlds.Variables;
 
     /// <summary>Forgets what is decided.</summary>

@@ -37,6 +37,9 @@ internal sealed class TermBounds(OutcomeChances chances)
     private bool _isBackward;
     private WorkLimit? _limit;
 
+    /// <summary>Bytes of the lists.</summary>
+    public long Bytes => (4L * (_countOf.Length + _groupOf.Length + _pool.Length)) + (40L * _uses.Length) + _literals.Bytes;
+
     /// <summary>Begins a new disjunction.</summary>
     public void Clear()
     {

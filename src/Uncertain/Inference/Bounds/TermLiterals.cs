@@ -16,6 +16,8 @@ internal sealed class TermLiterals(OutcomeChances chances)
 
     public int Count => _literals.Count;
 
+    public long Bytes => _literals.Bytes + _variables.Bytes + (36L * _bounds.Length);
+
     public int VariableCount => _variables.Count;
 
     public void Clear()

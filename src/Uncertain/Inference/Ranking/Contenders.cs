@@ -17,6 +17,9 @@ internal sealed class Contenders
     // Answers that one task of the first bounds takes: they share its lists.
     private const int Stretch = 64;
 
+    // Its lineage, bounds, figure, refinement and whether that is spent.
+    private const long BytesPerAnswer = 16 + 32 + 8 + 8 + 1;
+
     private readonly EvaluationOptions _options;
     private readonly long _start;
     private readonly CancellationToken _cancellationToken;
@@ -113,6 +116,11 @@ internal sealed class Contenders
             return Figure(answer);
         }
 
+        if (_isSpent[answer] && _figures[answer] is { } spent)
+        {
+            return asked.Allows(_bounds[answer]) ? spent : spent.WithShortfall(Shortfall!);
+        }
+
         Refinement refinement = _refinements[answer] ??= Open(answer);
         long before = refinement.NodeCount;
         refinement.Refine(Math.Max(1, _options.NodeBudget - before), asked.Allows, _cancellationToken, MemoryEach(1) + refinement.Bytes);
@@ -165,7 +173,9 @@ internal sealed class Contenders
                 SayLate();
                 break;
             case RefinementEnd.Memory:
+                // The next answers need what this one holds.
                 _isSpent[answer] = true;
+                Release(answer);
                 Shortfall ??= Text($"The memory budget of {_options.MemoryBudget:N0} bytes was reached. Raise ")
                     + "EvaluationOptions.MemoryBudget to decide the others.";
                 break;
@@ -185,7 +195,7 @@ internal sealed class Contenders
     private void SayLate() => Shortfall ??= Text($"The deadline of {_options.Deadline?.TotalSeconds:0.###} s was reached. Allow a later ")
         + "EvaluationOptions.Deadline to decide the others.";
 
-    /// <summary>The memory budget of each of some answers: the lineages', and a share of what they and all open refinements leave.</summary>
+    /// <summary>The memory budget of each of some answers: the lineages', and a share of what they, the lists and all open refinements leave.</summary>
     private long? MemoryEach(int answers)
     {
         if (_options.MemoryBudget is not { } budget)
@@ -195,7 +205,8 @@ internal sealed class Contenders
 
         long held = _refinements.Sum(refinement => refinement?.Bytes ?? 0);
         long lineages = _lineages[0].Arena.Bytes;
-        return lineages + (Math.Max(0, budget - lineages - held) / Math.Min(answers, _options.Threads));
+        long left = budget - lineages - (BytesPerAnswer * Count) - held;
+        return lineages + (Math.Max(0, left) / Math.Min(answers, _options.Threads));
     }
 
     private static string Text(FormattableString text) => text.ToString(CultureInfo.InvariantCulture);
