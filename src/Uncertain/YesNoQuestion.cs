@@ -21,6 +21,8 @@ public sealed class YesNoQuestion
     /// <summary>The plan: steps in words, and which evaluators can take it. Touches no data.</summary>
     public QueryPlan Plan => _yes.Plan;
 
+    internal PlanNode<bool> Node => _yes.Node;
+
     /// <summary>The question whose answer is yes where this one's is no.</summary>
     public static YesNoQuestion operator !(YesNoQuestion question)
     {

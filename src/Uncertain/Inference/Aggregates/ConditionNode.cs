@@ -1,0 +1,27 @@
+using Uncertain.Execution;
+using Uncertain.Lineages;
+using Uncertain.Planning;
+using Uncertain.Planning.Calculus;
+
+namespace Uncertain.Inference.Aggregates;
+
+/// <summary>Yes, in the worlds where an aggregate satisfies a condition.</summary>
+/// <param name="aggregate">The aggregate.</param>
+/// <param name="words">The condition in words.</param>
+/// <param name="condition">Its lineage.</param>
+internal sealed class ConditionNode<TValue>(
+    AggregateDefinition<TValue> aggregate, string words, Func<AggregateProblem<TValue>, QueryRun, LineageRef> condition)
+    : PlanNode<bool>(aggregate.Worlds, aggregate.Input)
+{
+    public override string Describe() => $"is {aggregate.Describe()} {words}";
+
+    public override IEnumerable<Batch<bool>> Run(QueryRun run)
+    {
+        var output = new Batch<bool>();
+        output.Add(true, condition(aggregate.Prepare(run), run));
+        run.Checkpoint(1);
+        yield return output;
+    }
+
+    public override Conjunction Translate() => throw new NoSafePlanException("a condition on an aggregate has no safe plan");
+}
