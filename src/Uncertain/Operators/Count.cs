@@ -12,7 +12,7 @@ public partial class UncertainSet<T>
     /// </summary>
     public Aggregate<int> Count() => new(new ElementAggregate<T, int, int>(
         Node, null, "count",
-        (elements, _) => new SumProblem<int>(elements, [.. Enumerable.Repeat(1L, elements.Length)], count => (int)count, 1)));
+        (elements, _, _) => new SumProblem<int>(elements, [.. Enumerable.Repeat(1L, elements.Length)], count => (int)count, 1)));
 
     /// <summary>How many elements are there that satisfy a condition.</summary>
     /// <param name="predicate">The condition.</param>

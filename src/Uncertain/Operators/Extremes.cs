@@ -52,7 +52,7 @@ public partial class UncertainSet<T>
         return new Aggregate<TValue>(new ElementAggregate<T, TValue, TValue>(
             Node, new Lambda<T, TValue>(selector, nameof(Quantile)),
             string.Create(CultureInfo.InvariantCulture, $"quantile {level}"),
-            (elements, values) => new QuantileProblem<TValue>(elements, values, (long)parts / divisor, Parts / divisor)));
+            (elements, values, run) => new QuantileProblem<TValue>(elements, values, (long)parts / divisor, Parts / divisor, run)));
     }
 
     private Aggregate<TValue> Ranked<TValue>(Expression<Func<T, TValue>> selector, string name, int rank, bool fromLargest)
@@ -60,6 +60,6 @@ public partial class UncertainSet<T>
         ArgumentOutOfRangeException.ThrowIfLessThan(rank, 1);
         return new Aggregate<TValue>(new ElementAggregate<T, TValue, TValue>(
             Node, new Lambda<T, TValue>(selector, name), name,
-            (elements, values) => new OrderProblem<TValue>(elements, values, rank, fromLargest)));
+            (elements, values, run) => new OrderProblem<TValue>(elements, values, rank, fromLargest, run)));
     }
 }

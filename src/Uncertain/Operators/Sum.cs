@@ -41,7 +41,7 @@ public partial class UncertainSet<T>
 
     private Aggregate<TValue> Sum<TAmount, TValue>(
         Expression<Func<T, TAmount>> selector, Func<TAmount, decimal> exact, Func<decimal, TValue> decode) =>
-        new(new ElementAggregate<T, TAmount, TValue>(Node, new Lambda<T, TAmount>(selector, nameof(Sum)), "sum", (elements, amounts) =>
+        new(new ElementAggregate<T, TAmount, TValue>(Node, new Lambda<T, TAmount>(selector, nameof(Sum)), "sum", (elements, amounts, _) =>
         {
             AmountGrid grid = AmountGrid.Of(Array.ConvertAll(amounts, amount => exact(amount)));
             return new SumProblem<TValue>(elements, grid.Weights, units => decode(grid.Amount(units)), (double)grid.Amount(1));
@@ -51,6 +51,6 @@ public partial class UncertainSet<T>
         Expression<Func<T, TAmount>> selector, Func<TAmount, decimal> exact, Func<decimal, TValue> decode, Func<TValue, decimal> encode) =>
         new(new ElementAggregate<T, TAmount, TValue>(
             Node, new Lambda<T, TAmount>(selector, nameof(Average)), "average",
-            (elements, amounts) =>
+            (elements, amounts, _) =>
                 new AverageProblem<TValue>(elements, Array.ConvertAll(amounts, amount => exact(amount)), decode, encode)));
 }

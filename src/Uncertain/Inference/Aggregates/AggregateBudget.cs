@@ -6,8 +6,8 @@ namespace Uncertain.Inference.Aggregates;
 
 /// <summary>What the exact evaluation of one aggregate may still spend: work, states, bytes, time; and whether it was cancelled.</summary>
 /// <remarks>
-/// A state is a residual set of lineages whose law is computed. States, the masses kept for them and the nodes of residual lineages count
-/// as nodes of the node budget.
+/// A state is a residual set of lineages whose law is computed. States, the masses kept for them and what is left of their lineages
+/// count as nodes of the node budget.
 /// </remarks>
 internal sealed class AggregateBudget
 {
@@ -19,10 +19,18 @@ internal sealed class AggregateBudget
     private readonly ProgressReporter _progress;
     private readonly long _start;
     private long _stepsLeft = StepsBetweenLooks;
+    private readonly long _productLimit;
     private long _done;
+    private long _products;
 
-    public AggregateBudget(EvaluationOptions options, long start, CancellationToken cancellationToken)
+    /// <param name="options">Budgets and threads.</param>
+    /// <param name="start">When the evaluation began.</param>
+    /// <param name="cancellationToken">Cancels it.</param>
+    /// <param name="productLimit">Products of masses after which it is given up.</param>
+    public AggregateBudget(
+        EvaluationOptions options, long start, CancellationToken cancellationToken, long productLimit = long.MaxValue)
     {
+        _productLimit = productLimit;
         _options = options;
         _start = start;
         _cancellationToken = cancellationToken;
@@ -74,6 +82,16 @@ internal sealed class AggregateBudget
             throw Spent(
                 Text($"needs more than the node budget of {_options.NodeBudget:N0} for the parts of it that share records"),
                 "Raise EvaluationOptions.NodeBudget");
+        }
+    }
+
+    /// <summary>So many products of masses are about to be computed.</summary>
+    public void Products(long count)
+    {
+        _products += count;
+        if (_products > _productLimit)
+        {
+            throw Spent(Text($"needs more than {_productLimit:N0} products"), "Ask for Accuracy.Exact");
         }
     }
 

@@ -13,6 +13,7 @@ internal static class AggregateEvaluation
     // Where sampling would do, the exact way gets so many states and this part of the time.
     private const int TrialStates = 50_000;
     private const double ExactShare = 0.5;
+    private const long TrialProducts = 500_000_000;
 
     private static readonly Accuracy s_insteadOfExact = Accuracy.Within(0.01, 0.01);
 
@@ -92,7 +93,8 @@ internal static class AggregateEvaluation
         AggregateProblem<TValue> problem, QueryRun run, EvaluationOptions options, EvaluationOptions trial, long start,
         CancellationToken cancellationToken)
     {
-        var budget = new AggregateBudget(trial, start, cancellationToken);
+        var budget = new AggregateBudget(
+            trial, start, cancellationToken, options.Accuracy.IsExact ? long.MaxValue : TrialProducts);
         Law law = problem.Solve(run.Arena, budget);
         var masses = new List<(TValue Value, ExtendedDouble Mass)>(law.Count);
         ExtendedDouble none = default;

@@ -27,6 +27,7 @@ internal static class Convolution
         long range = checked(left.Last + right.Last - first);
         double blur = left.Blur + left.Omitted + right.Blur + right.Omitted;
         budget.Hold(24 * Math.Min(products, range));
+        budget.Products(products);
         if (range / 4 > products || range >= MostValues)
         {
             return Sparse(left, right, blur, budget);

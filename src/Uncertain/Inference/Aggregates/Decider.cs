@@ -92,7 +92,7 @@ internal sealed class Decider(LineageArena arena, AggregateBudget budget)
             sum[i] = new Contribution(Given(residual.Lineages[i], variable, slot), residual.Weights[i]);
         }
 
-        budget.Nodes(arena.Count - before);
+        budget.Nodes(arena.Count - before + (sum.Length / 4));
         budget.Hold(arena.Bytes);
         return sum;
     }

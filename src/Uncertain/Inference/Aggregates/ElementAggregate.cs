@@ -10,7 +10,7 @@ namespace Uncertain.Inference.Aggregates;
 /// <param name="name">The aggregate's name as it is called.</param>
 /// <param name="build">Makes the problem from lineages and fields.</param>
 internal sealed class ElementAggregate<T, TField, TValue>(
-    PlanNode<T> input, Lambda<T, TField>? field, string name, Func<LineageRef[], TField[], AggregateProblem<TValue>> build)
+    PlanNode<T> input, Lambda<T, TField>? field, string name, Func<LineageRef[], TField[], QueryRun, AggregateProblem<TValue>> build)
     : AggregateDefinition<TValue>(input)
 {
     private readonly PlanNode<T> _input = input;
@@ -34,7 +34,7 @@ internal sealed class ElementAggregate<T, TField, TValue>(
             }
         }
 
-        return build([.. lineages], [.. fields]);
+        return build([.. lineages], [.. fields], run);
     }
 
     private void Check(T element, TField? own)

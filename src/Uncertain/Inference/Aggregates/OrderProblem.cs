@@ -14,10 +14,11 @@ namespace Uncertain.Inference.Aggregates;
 /// <param name="values">Their values.</param>
 /// <param name="k">Which one, from 1.</param>
 /// <param name="fromLargest">Whether counted from the largest.</param>
-internal sealed class OrderProblem<TValue>(LineageRef[] elements, TValue[] values, int k, bool fromLargest)
+/// <param name="run">Ends the sorting when it is cancelled.</param>
+internal sealed class OrderProblem<TValue>(LineageRef[] elements, TValue[] values, int k, bool fromLargest, QueryRun run)
     : AggregateProblem<TValue>(elements)
 {
-    private readonly Ranking<TValue> _ranking = new(values);
+    private readonly Ranking<TValue> _ranking = new(values, run);
 
     private IEnumerable<int> Passed => fromLargest ? _ranking.Order.Reverse() : _ranking.Order;
 

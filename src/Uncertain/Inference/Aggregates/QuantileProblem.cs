@@ -16,10 +16,11 @@ namespace Uncertain.Inference.Aggregates;
 /// <param name="values">Their values.</param>
 /// <param name="numerator">Positive, at most the denominator.</param>
 /// <param name="denominator">At most 10^9.</param>
-internal sealed class QuantileProblem<TValue>(LineageRef[] elements, TValue[] values, long numerator, long denominator)
+/// <param name="run">Ends the sorting when it is cancelled.</param>
+internal sealed class QuantileProblem<TValue>(LineageRef[] elements, TValue[] values, long numerator, long denominator, QueryRun run)
     : AggregateProblem<TValue>(elements)
 {
-    private readonly Ranking<TValue> _ranking = new(values);
+    private readonly Ranking<TValue> _ranking = new(values, run);
 
     public override TValue Decode(long key) => _ranking.Distinct[(int)key];
 
