@@ -2,6 +2,7 @@ using Uncertain.Execution;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
+using Uncertain.Worlds;
 
 namespace Uncertain.Operators;
 
@@ -13,15 +14,14 @@ internal sealed class BothNode(PlanNode<bool> left, PlanNode<bool> right, bool i
 
     public override string Describe() => isEither ? "either" : "both";
 
-    public override IEnumerable<Batch<bool>> Run(QueryRun run)
+    public override Flow<bool> Start(QueryRun run)
     {
         LineageRef left = Yes(_left);
         LineageRef right = Yes(_right);
-        var output = new Batch<bool>();
-        output.Add(true, isEither ? run.Arena.Or(left, right) : run.Arena.And(left, right));
-        yield return output;
+        LineageRef yes = isEither ? run.Arena.Or(left, right) : run.Arena.And(left, right);
+        return new RecordList<bool>([true], LineageColumn.Given([yes])).Flow(run);
 
-        LineageRef Yes(PlanNode<bool> input) => Merge<bool>.All(input, run).ByValue(run).GetValueOrDefault(new(true), LineageRef.False);
+        LineageRef Yes(PlanNode<bool> input) => Merge<bool>.All(input, run).Lookup().Find(true);
     }
 
     public override Conjunction Translate() => throw new NoSafePlanException("two questions at once have no safe plan");

@@ -2,6 +2,7 @@ using Uncertain.Execution;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
+using Uncertain.Worlds;
 
 namespace Uncertain.Operators;
 
@@ -14,22 +15,16 @@ internal sealed class DerivedNode<T>(LineageArena arena, T[] values, LineageRef[
 {
     public override string Describe() => name;
 
-    public override IEnumerable<Batch<T>> Run(QueryRun run)
+    public override Flow<T> Start(QueryRun run)
     {
-        var output = new Batch<T>();
-        for (int i = 0; i < values.Length; i++)
+        LineageRef[] own = lineages;
+        if (!ReferenceEquals(arena, run.Arena))
         {
-            run.Step();
-            output.Add(values[i], ReferenceEquals(arena, run.Arena) ? lineages[i] : run.Take(arena, lineages[i]));
-            if (output.IsFull)
-            {
-                run.Checkpoint(output.Count);
-                yield return output;
-                output.Count = 0;
-            }
+            var import = new LineageImport(arena, run.Arena);
+            own = Array.ConvertAll(lineages, import.Copy);
         }
 
-        yield return output;
+        return new RecordList<T>(values, LineageColumn.Given(own)).Flow(run);
     }
 
     public override Conjunction Translate() => throw new NoSafePlanException("a group is a set of its own, which has no safe plan");

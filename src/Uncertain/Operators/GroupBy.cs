@@ -4,6 +4,7 @@ using Uncertain.Lineages;
 using Uncertain.Operators;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
+using Uncertain.Worlds;
 
 namespace Uncertain;
 
@@ -38,12 +39,21 @@ public partial class UncertainSet<T>
 
         public override string Describe() => $"group by {PlanText.Lambda(_keySelector.Tree)}";
 
-        public override IEnumerable<Batch<UncertainGroup<TKey, T>>> Run(QueryRun run)
+        public override Flow<UncertainGroup<TKey, T>> Start(QueryRun run)
         {
             var places = new Dictionary<ValueTuple<TKey>, int>(new KeyComparer<TKey>(comparer));
             var groups = new List<(TKey Key, List<T> Values, List<LineageRef> Lineages)>();
-            foreach ((T value, LineageRef lineage) in Merge<T>.All(_input, run).Records(run))
+            Merge<T> merge = Merge<T>.All(_input, run);
+            LineageRef[] merged = merge.Shared();
+            for (int i = 0; i < merged.Length; i++)
             {
+                run.Cancellation.ThrowIfCancellationRequested();
+                (T value, LineageRef lineage) = (merge.Values[i], merged[i]);
+                if (lineage == LineageRef.False)
+                {
+                    continue;
+                }
+
                 TKey key = _keySelector.Invoke(value);
                 if (!places.TryGetValue(new(key), out int place))
                 {
@@ -55,24 +65,18 @@ public partial class UncertainSet<T>
                 groups[place].Lineages.Add(lineage);
             }
 
-            var output = new Batch<UncertainGroup<TKey, T>>();
-            foreach ((TKey key, List<T> values, List<LineageRef> lineages) in groups)
+            var result = new UncertainGroup<TKey, T>[groups.Count];
+            var there = new LineageRef[groups.Count];
+            for (int i = 0; i < result.Length; i++)
             {
+                (TKey key, List<T> values, List<LineageRef> lineages) = groups[i];
                 LineageRef[] members = [.. lineages];
-                string name = $"group '{key}'";
-                output.Add(
-                    new UncertainGroup<TKey, T>(key, this, new DerivedNode<T>(run.Arena, [.. values], members, name)),
-                    run.Arena.Or(members));
-                if (output.IsFull)
-                {
-                    run.Checkpoint(output.Count);
-                    yield return output;
-                    output.Count = 0;
-                }
+                result[i] = new UncertainGroup<TKey, T>(
+                    key, this, new DerivedNode<T>(run.Arena, [.. values], members, $"group '{key}'"));
+                there[i] = run.Arena.Or(members);
             }
 
-            run.Checkpoint(output.Count);
-            yield return output;
+            return new RecordList<UncertainGroup<TKey, T>>(result, LineageColumn.Given(there)).Flow(run);
         }
 
         public override Conjunction Translate() => throw new NoSafePlanException("a group is a set of its own, which has no safe plan");

@@ -3,6 +3,7 @@ using Uncertain.Execution;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
+using Uncertain.Worlds;
 
 namespace Uncertain;
 
@@ -26,24 +27,20 @@ public partial class UncertainSet<T>
 
         public override string Describe() => $"where {PlanText.Lambda(_question.Tree)}";
 
-        public override IEnumerable<Batch<T>> Run(QueryRun run)
+        public override Flow<T> Start(QueryRun run)
         {
-            var output = new Batch<T>();
-            foreach (Batch<T> batch in _input.Run(run))
+            Merge<T> merge = Merge<T>.All(_input, run);
+            LineageRef[] lineages = merge.Shared();
+            for (int i = 0; i < lineages.Length; i++)
             {
-                output.Count = 0;
-                for (int i = 0; i < batch.Count; i++)
+                run.Cancellation.ThrowIfCancellationRequested();
+                if (lineages[i] != LineageRef.False)
                 {
-                    run.Step();
-                    LineageRef lineage = run.Arena.And(batch.Lineages[i], Yes(batch.Values[i], run));
-                    if (lineage != LineageRef.False)
-                    {
-                        output.Add(batch.Values[i], lineage);
-                    }
+                    lineages[i] = run.Arena.And(lineages[i], Yes(merge.Values[i], run));
                 }
-
-                yield return output;
             }
+
+            return new RecordList<T>(merge.Values, LineageColumn.Given(lineages)).Flow(run);
         }
 
         public override Conjunction Translate() => throw new NoSafePlanException("a question about each element has no safe plan");
@@ -53,7 +50,7 @@ public partial class UncertainSet<T>
             YesNoQuestion question = _question.Invoke(element) ?? throw new InvalidInputException(
                 $"The lambda '{PlanText.Lambda(_question.Tree)}' of Where gave null for '{element}'. Give a question for every element.");
             return ReferenceEquals(question.Worlds, Worlds)
-                ? Merge<bool>.All(question.Node, run).ByValue(run).GetValueOrDefault(new(true), LineageRef.False)
+                ? Merge<bool>.All(question.Node, run).Lookup().Find(true)
                 : throw new WorldSpaceMismatchException($"The question of Where about '{element}'");
         }
     }

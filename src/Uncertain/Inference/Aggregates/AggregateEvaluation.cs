@@ -20,6 +20,7 @@ internal static class AggregateEvaluation
     public static Distribution<TValue> Evaluate<TValue>(
         AggregateDefinition<TValue> aggregate, EvaluationOptions options, CancellationToken cancellationToken)
     {
+        RefuseEvidence(options);
         long start = options.Clock.GetTimestamp();
         var run = new QueryRun(aggregate.Worlds, options, cancellationToken);
         AggregateProblem<TValue> problem = aggregate.Prepare(run);
@@ -68,6 +69,7 @@ internal static class AggregateEvaluation
     public static Moments Moments<TValue>(
         AggregateDefinition<TValue> aggregate, bool withVariance, EvaluationOptions options, CancellationToken cancellationToken)
     {
+        RefuseEvidence(options);
         long start = options.Clock.GetTimestamp();
         var run = new QueryRun(aggregate.Worlds, options, cancellationToken);
         AggregateProblem<TValue> problem = aggregate.Prepare(run);
@@ -86,6 +88,16 @@ internal static class AggregateEvaluation
         {
             throw new EvaluationRefusedException(
                 exception.Message + " The estimate of a sampled distribution is Evaluate(Evaluators.Sampling).Expectation.");
+        }
+    }
+
+    private static void RefuseEvidence(EvaluationOptions options)
+    {
+        if (options.Given is not null)
+        {
+            throw new EvaluationRefusedException(
+                "The distribution of an aggregate given evidence is not available. Ask the probability of a condition on it, such as "
+                + "AtLeast(...).Evaluate, which takes EvaluationOptions.Given.");
         }
     }
 

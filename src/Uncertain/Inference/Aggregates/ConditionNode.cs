@@ -2,6 +2,7 @@ using Uncertain.Execution;
 using Uncertain.Lineages;
 using Uncertain.Planning;
 using Uncertain.Planning.Calculus;
+using Uncertain.Worlds;
 
 namespace Uncertain.Inference.Aggregates;
 
@@ -15,13 +16,8 @@ internal sealed class ConditionNode<TValue>(
 {
     public override string Describe() => $"is {aggregate.Describe()} {words}";
 
-    public override IEnumerable<Batch<bool>> Run(QueryRun run)
-    {
-        var output = new Batch<bool>();
-        output.Add(true, condition(aggregate.Prepare(run), run));
-        run.Checkpoint(1);
-        yield return output;
-    }
+    public override Flow<bool> Start(QueryRun run) =>
+        new RecordList<bool>([true], LineageColumn.Given([condition(aggregate.Prepare(run), run)])).Flow(run);
 
     public override Conjunction Translate() => throw new NoSafePlanException("a condition on an aggregate has no safe plan");
 }

@@ -21,8 +21,17 @@ internal sealed class ElementAggregate<T, TField, TValue>(
     {
         var lineages = new List<LineageRef>();
         var fields = new List<TField>();
-        foreach ((T value, LineageRef lineage) in Merge<T>.All(_input, run).Records(run))
+        Merge<T> merge = Merge<T>.All(_input, run);
+        LineageRef[] merged = merge.Shared();
+        for (int i = 0; i < merged.Length; i++)
         {
+            run.Cancellation.ThrowIfCancellationRequested();
+            (T value, LineageRef lineage) = (merge.Values[i], merged[i]);
+            if (lineage == LineageRef.False)
+            {
+                continue;
+            }
+
             TField? own = field is null ? default : field.Invoke(value);
 
             // As in System.Linq, what has no value of the field does not count.

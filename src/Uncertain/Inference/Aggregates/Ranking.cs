@@ -55,7 +55,7 @@ internal sealed class Ranking<TValue>
         {
             Array.Sort(order, (left, right) =>
             {
-                run.Step();
+                run.Cancellation.ThrowIfCancellationRequested();
                 int result = Comparer<TValue>.Default.Compare(values[left], values[right]);
                 return result == 0 ? left.CompareTo(right) : result;
             });

@@ -57,7 +57,7 @@ internal static class ThresholdLineage
             var next = new SortedSet<long>();
             foreach (long state in states[i])
             {
-                run.Step();
+                run.Cancellation.ThrowIfCancellationRequested();
                 foreach (long after in (ReadOnlySpan<long>)[state, state - weights[i]])
                 {
                     if (End(after, rest[i + 1]) is null)
@@ -67,6 +67,7 @@ internal static class ThresholdLineage
                 }
             }
 
+            run.Checkpoint(0);
             count += next.Count;
             if (count > MostStates)
             {
@@ -84,7 +85,7 @@ internal static class ThresholdLineage
             var current = new LineageRef[states[i].Length];
             for (int j = 0; j < current.Length; j++)
             {
-                run.Step();
+                run.Cancellation.ThrowIfCancellationRequested();
                 LineageRef with = After(states[i][j] - weights[i], i + 1, later);
                 LineageRef without = After(states[i][j], i + 1, later);
                 current[j] = with == without
@@ -92,6 +93,7 @@ internal static class ThresholdLineage
                     : run.Arena.Or(run.Arena.And(lineages[i], with), run.Arena.And(!lineages[i], without));
             }
 
+            run.Checkpoint(0);
             later = current;
         }
 
