@@ -41,39 +41,34 @@ public partial class UncertainSet<T>
 
         public override Flow<UncertainGroup<TKey, T>> Start(QueryRun run)
         {
-            var places = new Dictionary<ValueTuple<TKey>, int>(new KeyComparer<TKey>(comparer));
-            var groups = new List<(TKey Key, List<T> Values, List<LineageRef> Lineages)>();
             Merge<T> merge = Merge<T>.All(_input, run);
             LineageRef[] merged = merge.Shared();
+            var keys = new TKey[merged.Length];
+            _keySelector.InvokeAll(merge.Values, null, 0, keys, run.Cancellation);
+            KeyTable<TKey> table = KeyTable<TKey>.Create(comparer);
+            var places = new int[keys.Length];
+            table.Add(keys, places);
+            var groups = new (List<T> Values, List<LineageRef> Lineages)[table.Count];
             for (int i = 0; i < merged.Length; i++)
             {
                 run.Cancellation.ThrowIfCancellationRequested();
-                (T value, LineageRef lineage) = (merge.Values[i], merged[i]);
-                if (lineage == LineageRef.False)
+                if (merged[i] != LineageRef.False)
                 {
-                    continue;
+                    ref (List<T> Values, List<LineageRef> Lineages) group = ref groups[places[i]];
+                    (group.Values ??= []).Add(merge.Values[i]);
+                    (group.Lineages ??= []).Add(merged[i]);
                 }
-
-                TKey key = _keySelector.Invoke(value);
-                if (!places.TryGetValue(new(key), out int place))
-                {
-                    places.Add(new(key), place = groups.Count);
-                    groups.Add((key, [], []));
-                }
-
-                groups[place].Values.Add(value);
-                groups[place].Lineages.Add(lineage);
             }
 
-            var result = new UncertainGroup<TKey, T>[groups.Count];
-            var there = new LineageRef[groups.Count];
+            var result = new UncertainGroup<TKey, T>[groups.Length];
+            var there = new LineageRef[groups.Length];
             for (int i = 0; i < result.Length; i++)
             {
-                (TKey key, List<T> values, List<LineageRef> lineages) = groups[i];
-                LineageRef[] members = [.. lineages];
+                TKey key = table.Keys[i];
+                LineageRef[] members = [.. groups[i].Lineages ?? []];
                 result[i] = new UncertainGroup<TKey, T>(
-                    key, this, new DerivedNode<T>(run.Arena, [.. values], members, $"group '{key}'"));
-                there[i] = run.Arena.Or(members);
+                    key, this, new DerivedNode<T>(run.Arena, [.. groups[i].Values ?? []], members, $"group '{key}'"));
+                there[i] = members.Length == 0 ? LineageRef.False : run.Arena.Or(members);
             }
 
             return new RecordList<UncertainGroup<TKey, T>>(result, LineageColumn.Given(there)).Flow(run);

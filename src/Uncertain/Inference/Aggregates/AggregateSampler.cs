@@ -11,8 +11,7 @@ namespace Uncertain.Inference.Aggregates;
 /// </remarks>
 internal sealed class AggregateSampler<TValue>(AggregateProblem<TValue> problem, LineageArena arena, EvaluationOptions options)
 {
-    private const int Width = 32;
-    private const int WorldsPerTile = 64 * Width;
+    private const int WorldsPerTile = 64 * WorldBlock.Words;
 
     /// <summary>Worlds that make the distance of all distribution functions at most epsilon.</summary>
     public static long WorldsFor(Accuracy accuracy) =>
@@ -47,7 +46,7 @@ internal sealed class AggregateSampler<TValue>(AggregateProblem<TValue> problem,
         long next = -1;
         Parallel.For(0, threads, new ParallelOptions { MaxDegreeOfParallelism = threads }, number =>
         {
-            var worker = workers[number] = new WorldWorker<TValue>(problem, program, edges, Width, budget);
+            var worker = workers[number] = new WorldWorker<TValue>(problem, program, edges, budget);
             for (long tile; (tile = Interlocked.Increment(ref next)) < tiles && !budget.HasEnded;)
             {
                 worker.Run(tile * WorldsPerTile, Math.Min(worlds, (tile + 1) * WorldsPerTile));
@@ -67,7 +66,7 @@ internal sealed class AggregateSampler<TValue>(AggregateProblem<TValue> problem,
 
     private int Threads(WorldProgram program)
     {
-        long bytes = (long)program.RowCount * Width * sizeof(ulong);
+        long bytes = (long)program.RowCount * WorldBlock.Words * sizeof(ulong);
         if (bytes > Math.Min(options.MemoryBudget ?? long.MaxValue, (long)Array.MaxLength * sizeof(ulong)))
         {
             throw new EvaluationRefusedException(

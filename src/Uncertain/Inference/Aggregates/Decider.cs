@@ -47,7 +47,8 @@ internal sealed class Decider(LineageArena arena, AggregateBudget budget)
     private ExtendedDouble[] Chances(int variable, int[] slots)
     {
         int first = _variables.FirstSlot(variable);
-        ReadOnlySpan<double> all = _variables.Chances(first, _variables.OutcomeCount(variable));
+        var all = new double[_variables.OutcomeCount(variable)];
+        _variables.Chances(first, all);
         var chances = new ExtendedDouble[slots.Length + 1];
         ExtendedDouble rest = VariableTable.Remainder(all);
         int next = 0;

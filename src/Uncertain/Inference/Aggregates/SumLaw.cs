@@ -149,7 +149,8 @@ internal sealed class SumLaw
         }
 
         int first = _variables.FirstSlot(variable);
-        ReadOnlySpan<double> chances = _variables.Chances(first, _variables.OutcomeCount(variable));
+        var chances = new double[_variables.OutcomeCount(variable)];
+        _variables.Chances(first, chances);
         var masses = new Dictionary<long, ExtendedDouble> { [0] = VariableTable.Remainder(chances) };
         for (int i = 0; i < chances.Length; i++)
         {
