@@ -3,7 +3,7 @@ using Uncertain.Inference.Maintenance;
 namespace Uncertain;
 
 /// <content>Answers that are kept up to date.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// Evaluates the query and keeps the compiled form of every answer, so that changed chances and confirmed or refuted records cost only

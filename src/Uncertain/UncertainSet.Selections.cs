@@ -3,7 +3,7 @@ using Uncertain.Inference.Ranking;
 namespace Uncertain;
 
 /// <content>Answers by their probability.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// The most probable answers, evaluated only as far as it takes to know them: cheap bounds for all answers, tighter ones around the

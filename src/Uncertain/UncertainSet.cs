@@ -12,19 +12,19 @@ namespace Uncertain;
 /// build a plan, <c>Evaluate</c>, <c>EvaluateAsync</c> and <c>Derive</c> run it.
 /// </summary>
 /// <remarks>
-/// <para>C# query syntax binds to it: <c>from</c>, several <c>from</c>, <c>where</c>, <c>let</c>, <c>join</c> and <c>select</c>.
-/// <c>orderby</c>, <c>join into</c> and <c>group by</c> do not compile: a set has no order, and a group's content differs
-/// from world to world.</para>
+/// <para>C# query syntax binds to it: <c>from</c>, several <c>from</c>, <c>where</c>, <c>let</c>, <c>join</c>, <c>group by</c> and
+/// <c>select</c>. <c>orderby</c> and <c>join into</c> do not compile: a set has no order.</para>
 /// <para>The meaning is that of possible worlds: in each world the query is an ordinary one over the records that are there;
 /// an answer's lineage says in which worlds it comes out, its probability is their total chance.</para>
 /// <para>Variables that a lambda captures are read when the query is evaluated, at every record, not when it is written: an evaluation
 /// after a change sees the new value. A set that is evaluated again is planned once; lambdas are compiled once for each text in the
 /// process, so that building a small query anew each time costs little.</para>
+/// <para>Only the library derives from it: <see cref="UncertainGroup{TKey, T}"/>.</para>
 /// <para>Thread safety: sets may be used from any thread.</para>
 /// </remarks>
 /// <typeparam name="T">Type of the values: class, struct, record, tuple or anonymous type. Equal values are one element.</typeparam>
 [DebuggerDisplay("{ToString(),nq}")]
-public sealed partial class UncertainSet<T> : IPlanned
+public partial class UncertainSet<T> : IPlanned
 {
     // Made when first asked for; it keeps what planning found, so that a query that is evaluated again is not planned again.
     private QueryPlan? _plan;

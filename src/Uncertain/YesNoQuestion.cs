@@ -21,12 +21,22 @@ public sealed class YesNoQuestion
     /// <summary>The plan: steps in words, and which evaluators can take it. Touches no data.</summary>
     public QueryPlan Plan => _yes.Plan;
 
+    internal PlanNode<bool> Node => _yes.Node;
+
     /// <summary>The question whose answer is yes where this one's is no.</summary>
     public static YesNoQuestion operator !(YesNoQuestion question)
     {
         ArgumentNullException.ThrowIfNull(question);
         return new YesNoQuestion(new NotNode(question._yes.Node));
     }
+
+    /// <summary>The question whose answer is yes where both answers are.</summary>
+    /// <exception cref="WorldSpaceMismatchException">The questions belong to different world spaces.</exception>
+    public static YesNoQuestion operator &(YesNoQuestion left, YesNoQuestion right) => Combine(left, right, isEither: false);
+
+    /// <summary>The question whose answer is yes where at least one answer is.</summary>
+    /// <exception cref="WorldSpaceMismatchException">The questions belong to different world spaces.</exception>
+    public static YesNoQuestion operator |(YesNoQuestion left, YesNoQuestion right) => Combine(left, right, isEither: true);
 
     /// <summary>The answer 'yes' with its lineage and its probability; a probability of 0 where it is no in every world.</summary>
     /// <param name="options">What is asked and what it may cost; default: exact by the cheapest evaluator.</param>
@@ -60,4 +70,11 @@ public sealed class YesNoQuestion
 
     /// <summary>One line; runs nothing.</summary>
     public override string ToString() => $"yes or no: {_yes.Node.Describe()}";
+
+    private static YesNoQuestion Combine(YesNoQuestion left, YesNoQuestion right, bool isEither)
+    {
+        ArgumentNullException.ThrowIfNull(left);
+        ArgumentNullException.ThrowIfNull(right);
+        return new YesNoQuestion(new BothNode(left.Node, right.Node, isEither));
+    }
 }

@@ -48,6 +48,9 @@ internal readonly struct ExtendedDouble :
 
     public static ExtendedDouble From(double value) => Normalize(value, 0, 0);
 
+    /// <summary>The sum of a double and a much smaller one, without rounding.</summary>
+    public static ExtendedDouble From(double high, double low) => Normalize(high, low, 0);
+
     /// <summary>1 - value without rounding, for a value in [0, 1].</summary>
     public static ExtendedDouble OneMinus(double value)
     {

@@ -3,7 +3,7 @@ using System.Linq.Expressions;
 namespace Uncertain;
 
 /// <content>Universal questions.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>Do all elements that are there satisfy a condition? Yes where none is there, as in System.Linq.</summary>
     /// <param name="predicate">The condition.</param>

@@ -7,7 +7,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Anti-join.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// The elements of this set in the worlds where no element of the other set has the same key. Null keys never match, so an

@@ -4,7 +4,7 @@ using Uncertain.Operators;
 namespace Uncertain;
 
 /// <content>Existence.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>Is any element there?</summary>
     public YesNoQuestion Any() => new(new AnyNode<T>(Node));

@@ -4,7 +4,7 @@ using System.Reflection;
 namespace Uncertain;
 
 /// <content>Membership.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     private static readonly MethodInfo s_equals =
         typeof(EqualityComparer<T>).GetMethod(nameof(EqualityComparer<>.Equals), [typeof(T), typeof(T)])!;

@@ -5,7 +5,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Merging of equal elements.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// The same set, with equal elements merged at this step. A set has no repeats anyway; merging before a join saves derivations

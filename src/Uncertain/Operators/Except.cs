@@ -6,7 +6,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Difference.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>The elements of this set in the worlds where they are not in the other one. Linear.</summary>
     /// <param name="other">The other set, of the same world space.</param>

@@ -6,7 +6,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Intersection.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>The elements that are in this set and in the other one, in the worlds of both. Linear.</summary>
     /// <param name="other">The other set, of the same world space.</param>

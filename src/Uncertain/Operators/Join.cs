@@ -7,7 +7,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Inner join.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// Pairs of elements with equal keys; a pair is there where both elements are. Null keys never match, as in System.Linq.

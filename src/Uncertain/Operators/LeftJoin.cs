@@ -7,7 +7,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Left outer join.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// Pairs of elements with equal keys, as <see cref="Join"/>, and each element of this set once with <c>default</c> in the worlds

@@ -6,7 +6,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Projection.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// A value computed from each element. Equal results are one element, which is there where any of its origins is. Linear;

@@ -7,7 +7,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Products: several <c>from</c> clauses.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// For each element all elements of a set that may depend on it; a result is there where both are. A set that depends on the element

@@ -6,7 +6,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Elements of collections inside the elements.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>For each element the items of an ordinary collection, which are there where the element is. Linear.</summary>
     /// <param name="collectionSelector">The collection for an element, for example one of its fields; not null.</param>

@@ -7,7 +7,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Semi-join.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// The elements of this set in the worlds where at least one element of the other set has the same key. Null keys never match.

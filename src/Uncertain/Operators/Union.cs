@@ -5,7 +5,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Union.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>The elements that are in this set or in the other one, in the worlds of either. Linear.</summary>
     /// <param name="other">The other set, of the same world space.</param>

@@ -6,7 +6,7 @@ using Uncertain.Planning.Calculus;
 namespace Uncertain;
 
 /// <content>Selection.</content>
-public sealed partial class UncertainSet<T>
+public partial class UncertainSet<T>
 {
     /// <summary>
     /// The elements that satisfy a condition, with the lineages they had. Linear. On a product, an equality between the two sides is run

@@ -40,6 +40,14 @@ internal sealed class Cone(LineageArena arena)
     /// <summary>The nodes by index, which is an order of evaluation: operands have smaller indices than their users.</summary>
     public int[] Nodes(WorkBudget budget) => Ascending.Distinct(_nodes, budget);
 
+    /// <summary>The same without a budget, for formulas of moderate size.</summary>
+    public int[] Nodes()
+    {
+        int[] nodes = [.. _nodes];
+        Array.Sort(nodes);
+        return nodes;
+    }
+
     private void Visit(LineageRef formula)
     {
         if (formula.IsLiteral)

@@ -27,7 +27,8 @@ internal static class DependentSet
         {
             if (set is not MethodCallExpression { Method.Name: nameof(UncertainSet<>.Where), Object: { } receiver } call
                 || receiver.Type != typeof(UncertainSet<TCollection>)
-                || call.Arguments is not [UnaryExpression { Operand: LambdaExpression filter }])
+                || call.Arguments is not [UnaryExpression { Operand: LambdaExpression { ReturnType: var type } filter }]
+                || type != typeof(bool))
             {
                 return null;
             }
@@ -76,7 +77,7 @@ internal static class DependentSet
         Expression body = inner.Apply(lambda);
         return call.Method.Name switch
         {
-            nameof(UncertainSet<int>.Where) => inner.Where(body),
+            nameof(UncertainSet<int>.Where) when body.Type == typeof(bool) => inner.Where(body),
             nameof(UncertainSet<int>.Select) => inner with { Value = body },
             _ => throw Refusal(set),
         };

@@ -65,7 +65,7 @@ public sealed class CorrelatedStep(Step outer, Step inner, PairLambda condition,
     }
 
     private static MethodCallExpression Call(Expression set, string method, params Expression[] arguments) =>
-        Expression.Call(set, set.Type.GetMethod(method)!, arguments);
+        Expression.Call(set, set.Type.GetMethod(method, [.. arguments.Select(argument => argument.Type)])!, arguments);
 
     private IEnumerable<Row> InnerOf(Row x, IEnumerable<Row> rows)
     {
