@@ -115,9 +115,11 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
         }
 
         int count = 0;
-        foreach (CodeTable<TNumber> part in parts)
+        var firsts = new int[parts.Length];
+        for (int part = 0; part < parts.Length; part++)
         {
-            count = checked(count + part.Count);
+            firsts[part] = count;
+            count = checked(count + parts[part].Count);
         }
 
         var answers = new Answer<T>[count];
@@ -126,10 +128,14 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
         var lineages = new LineageSource<T>(query);
         Func<Encoder[], int[], T> valueOf = plan.ValueOf<T>();
         Encoder[] encoders = input.EncodersOf(plan.Root.Variables);
-        var codes = new int[encoders.Length];
-        int answer = 0;
-        foreach (CodeTable<TNumber> part in parts)
+
+        // A value may need the caller's code, such as a constructor, which runs on one thread only.
+        int threads = plan.Value.IsPlain ? input.Control.Threads : 1;
+        Workers.Run(threads, parts.Length, (_, number) =>
         {
+            CodeTable<TNumber> part = parts[number];
+            var codes = new int[encoders.Length];
+            int answer = firsts[number];
             for (int row = 0; row < part.Count; row++)
             {
                 input.Control.Cancellation.ThrowIfCancellationRequested();
@@ -141,8 +147,7 @@ internal sealed class SafePlanEvaluator : IEvidenceEvaluator
                 answers[answer++] = new Answer<T>(
                     valueOf(encoders, codes), lineages, exact(part.Tails[row].NegateIf(plan.IsComplement), Name, cost));
             }
-        }
-
+        });
         return answers;
     }
 

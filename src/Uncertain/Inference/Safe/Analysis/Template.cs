@@ -10,6 +10,9 @@ internal sealed record Template(Expression Body, IReadOnlyList<(ParameterExpress
 {
     public IEnumerable<Field> Variables => Fields.Select(use => use.Field.Representative).Distinct();
 
+    /// <summary>Whether it runs no code of the caller's.</summary>
+    public bool IsPlain => PlainExpression.Is(Body);
+
     /// <summary>A function of the encoders and codes of the given variables, each in their order.</summary>
     public Func<Encoder[], int[], TResult> Compile<TResult>(IReadOnlyList<Field> variables)
     {

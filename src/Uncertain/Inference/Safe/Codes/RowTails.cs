@@ -24,6 +24,9 @@ internal readonly struct RowTails<TNumber>
 
     public RowTails(Tails<TNumber>[] tails) => _tails = tails;
 
+    /// <summary>Whether the rows are one chance each.</summary>
+    public bool AreChances => _chances is not null;
+
     public Tails<TNumber> this[int row]
     {
         [MethodImpl(MethodImplOptions.AggressiveInlining)]
@@ -61,6 +64,18 @@ internal readonly struct RowTails<TNumber>
     public RowTails<TNumber> Gather(ReadOnlySpan<int> rows, Workspace workspace) => _chances is null
         ? new RowTails<TNumber>(Kernels.Gather<Tails<TNumber>>(_tails, rows, workspace))
         : new RowTails<TNumber>(Kernels.Gather<double>(_chances, rows, workspace));
+
+    /// <summary>The chances at chosen places, where the rows are one chance each.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
+    public void GatherChances(ReadOnlySpan<int> rows, Span<double> result)
+    {
+        ReadOnlySpan<double> chances = _chances;
+        result = result[..rows.Length];
+        for (int i = 0; i < rows.Length; i++)
+        {
+            result[i] = chances[rows[i]];
+        }
+    }
 
     /// <summary>The same in an array of its own, of just the given length.</summary>
     public RowTails<TNumber> Copy(int count) => _chances is null

@@ -39,33 +39,22 @@ internal sealed class JoinStep(SafeStep left, SafeStep right)
         int[][] keys = probing.ColumnsOf(_common);
         int[][] columns = probing.Columns;
         Tails<TNumber>[] tails = run.Workspace.Rent<Tails<TNumber>>(probing.Count);
-        RowTails<TNumber> own = probing.Tails;
-        RowTails<TNumber> others = indexed.Tails;
-        int[] matches = run.Workspace.Rent<int>(Math.Min(probing.Count, Kernels.Slice));
+        var found = new Batch<TNumber>(probing.Count, run.Workspace);
         int count = 0;
-        for (int start = 0; start < probing.Count; start += Kernels.Slice)
+        for (int start = 0; start < probing.Count; start += Batch<TNumber>.Size)
         {
             run.Control.Checkpoint();
-            int rows = Math.Min(Kernels.Slice, probing.Count - start);
-            index.FirstOf(keys, start, matches.AsSpan(0, rows));
-            int kept = 0;
-            for (int i = 0; i < rows; i++)
-            {
-                int match = matches[i];
-                if (match >= 0)
-                {
-                    tails[count + kept] = own[start + i] & others[match];
-                    matches[kept++] = start + i;
-                }
-            }
-
+            int rows = Math.Min(Batch<TNumber>.Size, probing.Count - start);
+            index.FirstOf(keys, start, found.Matches.AsSpan(0, rows));
+            int kept = found.Keep(rows);
+            found.Multiply(probing.Tails, start, indexed.Tails, tails.AsSpan(count, kept));
             if (count < start || kept < rows)
             {
                 foreach (int[] column in columns)
                 {
                     for (int i = 0; i < kept; i++)
                     {
-                        column[count + i] = column[matches[i]];
+                        column[count + i] = column[start + found.Rows[i]];
                     }
                 }
             }

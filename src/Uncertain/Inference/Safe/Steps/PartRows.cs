@@ -1,5 +1,6 @@
 using System.Buffers;
 using System.Runtime.CompilerServices;
+using System.Runtime.InteropServices;
 using Uncertain.Execution;
 using Uncertain.Inference.Safe.Analysis;
 using Uncertain.Inference.Safe.Codes;
@@ -149,12 +150,10 @@ internal sealed class PartRows : IDisposable
                 Span<int> first = rows.Columns[0].AsSpan(at, length);
                 Span<int> second = rows.Columns[1].AsSpan(at, length);
                 Span<double> chances = rows.Chances.AsSpan(at, length);
-                for (int i = 0; i < first.Length; i++)
+                ReadOnlySpan<Pair> pairs = MemoryMarshal.Cast<int, Pair>(values);
+                for (int i = 0; i < pairs.Length; i++)
                 {
-                    ReadOnlySpan<int> row = values.Slice(i * 4, 4);
-                    first[i] = row[0];
-                    second[i] = row[1];
-                    chances[i] = ChanceOf(row[2], row[3]);
+                    (first[i], second[i], chances[i]) = pairs[i];
                 }
 
                 return;
@@ -227,16 +226,13 @@ internal sealed class PartRows : IDisposable
             if (_columns == 2 && chances.Length > 0)
             {
                 // The most frequent form: a row is 16 bytes.
-                int[] first = columns[0];
-                int[] second = columns[1];
+                ReadOnlySpan<int> first = columns[0].AsSpan(0, places.Length);
+                ReadOnlySpan<int> second = columns[1].AsSpan(0, places.Length);
+                ReadOnlySpan<double> chance = chances.AsSpan(0, places.Length);
+                Span<Pair> pairs = MemoryMarshal.Cast<int, Pair>(rows.AsSpan());
                 for (int i = 0; i < places.Length; i++)
                 {
-                    Span<int> row = rows.AsSpan(places[i] * 4, 4);
-                    long chance = BitConverter.DoubleToInt64Bits(chances[i]);
-                    row[0] = first[i];
-                    row[1] = second[i];
-                    row[2] = (int)chance;
-                    row[3] = (int)(chance >> 32);
+                    pairs[places[i]] = new Pair(first[i], second[i], chance[i]);
                 }
 
                 return;
@@ -263,5 +259,8 @@ internal sealed class PartRows : IDisposable
                 }
             }
         }
+
+        // A row of the most frequent form, as it lies in a block.
+        private readonly record struct Pair(int First, int Second, double Chance);
     }
 }
