@@ -23,7 +23,7 @@ internal sealed class OutcomeChances(VariableTable table)
         }
 
         Tails<ExtendedDouble> tails = _setting.Alternative(slot);
-        return Between(tails.True, tails.False).NegateIf(literal.IsNegated);
+        return Between(tails.True, tails.False, Slack(table.VariableOf(slot))).NegateIf(literal.IsNegated);
     }
 
     /// <summary>That a variable has one of the outcomes, given by their slots in ascending order.</summary>
@@ -36,13 +36,21 @@ internal sealed class OutcomeChances(VariableTable table)
             listed += weight;
         }
 
-        return Between(listed, weights[^1]);
+        return Between(listed, weights[^1], Slack(variable));
     }
 
-    private static TailBounds Between(ExtendedDouble yes, ExtendedDouble no)
+    // Chances that make up 1 but for rounding count as 1: what they lack is shared out among the outcomes, so that bounds which add
+    // up chances do not find it as the chance of 'none of them'.
+    private double Slack(int variable)
+    {
+        double lack = 1 - _setting.ChancesOf(variable).Sum();
+        return lack is > 0 and <= VariableTable.SumTolerance ? 1 + (4 * lack) : 1;
+    }
+
+    private static TailBounds Between(ExtendedDouble yes, ExtendedDouble no, double slack)
     {
         (double t, double f) = (yes.ToDouble(), no.ToDouble());
-        return new TailBounds(new(Below(t), Above(f, no.IsZero)), new(Above(t, yes.IsZero), Below(f)));
+        return new TailBounds(new(Below(t), Above(f * slack, no.IsZero)), new(Above(t * slack, yes.IsZero), Below(f)));
 
         static double Below(double value) => value == 0 ? 0 : Math.BitDecrement(value);
 
